@@ -32,6 +32,7 @@ const darkStyles = `
   .soft, .soft a { color: ${dark.soft} !important; }
   .link { color: ${dark.primary} !important; }
   .serious { color: ${dark.serious} !important; }
+  .head { border-color: ${dark.line} !important; }
   .line { border-color: ${dark.line} !important; }
   .serious-line { border-color: ${dark.serious} !important; }
   .button { background-color: ${dark.primary} !important; color: ${dark.onPrimary} !important; }
@@ -66,7 +67,13 @@ export function EmailLayout(props: {
         <Preview>{props.preview}</Preview>
         <Container style={{ maxWidth: "560px", margin: "0 auto" }}>
           <Section
-            style={{ backgroundColor: head.ground, borderRadius: "6px 6px 0 0", padding: "16px 24px" }}
+            className="head"
+            style={{
+              backgroundColor: head.ground,
+              borderBottom: `1.5px solid ${head.ground}`,
+              borderRadius: "6px 6px 0 0",
+              padding: "16px 24px",
+            }}
           >
             <Mark />
             <Text style={{ color: head.text, fontSize: "17px", lineHeight: 1.3, fontWeight: 600, margin: 0 }}>
@@ -159,7 +166,7 @@ export function EmailCallout(props: { serious: boolean; children: ReactNode }) {
 /** A phone number to press, large enough for a thumb. */
 export function EmailPhone(props: { phone: string }) {
   return (
-    <Text style={{ fontSize: "25px", lineHeight: "44px", fontWeight: 600, margin: "0 0 4px" }}>
+    <Text style={{ fontSize: "25px", lineHeight: "44px", fontWeight: 600, margin: "-8px 0 10px" }}>
       <Link
         className="link"
         href={toPhoneLink(props.phone)}
@@ -209,11 +216,21 @@ export function EmailSmallPrint(props: { children: ReactNode }) {
 /** A link within the small print. */
 export function EmailSmallLink(props: { href: string; children: string }) {
   return (
-    <Link href={requireWebLink(props.href)} style={{ color: light.soft, textDecoration: "underline" }}>
+    <Link
+      href={requireWebLink(props.href)}
+      style={{ color: light.soft, textDecoration: "underline", display: "inline-block", padding: "10px 0" }}
+    >
       {props.children}
     </Link>
   );
 }
+
+// What we use of html-to-text, whose package brings no types.
+type LinkNode = { children: unknown; attribs: { href: string } };
+type TextBuilder = {
+  addInline(text: string, options?: { noWordTransform: boolean }): void;
+  addLineBreak(): void;
+};
 
 /**
  * Renders a template to both parts. The text part is derived from the HTML part, so the two never say
@@ -222,10 +239,23 @@ export function EmailSmallLink(props: { href: string; children: string }) {
 export async function renderMail(subject: string, element: ReactElement): Promise<ComposedMail> {
   const html = await render(element);
   const text = toPlainText(html, {
+    formatters: {
+      // An address alone on its line is pressed, copied and read aloud more easily.
+      linkBelowWords: (
+        element: LinkNode,
+        walk: (nodes: unknown, builder: TextBuilder) => void,
+        builder: TextBuilder,
+      ) => {
+        walk(element.children, builder);
+        builder.addInline(":");
+        builder.addLineBreak();
+        builder.addInline(element.attribs.href, { noWordTransform: true });
+      },
+    },
     selectors: [
       { selector: "h1", options: { uppercase: false } },
-      { selector: "a", options: { linkBrackets: false, hideLinkHrefIfSameAsText: true } },
-      { selector: "a[data-phone]", options: { ignoreHref: true } },
+      { selector: "a", format: "linkBelowWords" },
+      { selector: "a[data-phone]", format: "anchor", options: { ignoreHref: true } },
     ],
   });
   return { subject: toOneLine(subject), html, text: `${text.trim()}\n` };

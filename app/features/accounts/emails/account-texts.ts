@@ -63,15 +63,14 @@ export const accountTexts: MailTexts<AccountTexts> = {
       preview: (inviter) => `${inviter} asks you to join.`,
       heading: (organisation) => `Join ${organisation}`,
       lead: (inviter, organisation) =>
-        `${inviter} asks you to join ${organisation} on Haleside. It is where the club keeps its teams fit and safe to play.`,
+        `${inviter} asks you to join ${organisation} on Haleside. It is how we look after the health of our athletes.`,
       role: (roles) => `Your role will be: ${roles}.`,
       allTeams: "You will work with all teams.",
       listedTeams: (teams) => `Your teams: ${teams}.`,
       accept: "See the invitation",
-      ends: (until) => `The link works until ${until}. After that, ask the club to send it again.`,
+      ends: (until) => `The link works until ${until}. After that, ask us to send it again.`,
       sameAddress: (email) => `Please join with this e-mail address: ${email}.`,
-      notExpected:
-        "Do you not know the club? Then you can leave this e-mail. Nothing happens until you say yes.",
+      notExpected: "Do you not know us? Then you can ignore this e-mail. Nothing happens until you say yes.",
     },
     verification: {
       subject: "Confirm your e-mail address for Haleside",
@@ -80,7 +79,7 @@ export const accountTexts: MailTexts<AccountTexts> = {
       lead: (email) => `Someone used ${email} to join Haleside. If it was you, please confirm it.`,
       confirm: "Confirm my address",
       ends: (duration) => `The link works for ${duration}.`,
-      notYou: "Was it not you? Then do not press the button. You can leave this e-mail.",
+      notYou: "Was it not you? Then do not press the button. You can ignore this e-mail.",
     },
     passwordReset: {
       subject: "Choose a new password for Haleside",

@@ -78,7 +78,7 @@ export const noticeTexts: MailTexts<NoticeTexts> = {
       lead: (organisation) => `You asked for a new link to read the news from ${organisation}.`,
       oldLink: "The old link no longer works.",
       notAsked:
-        "Did you not ask for it? Then you can leave this e-mail. No one can read the news with it alone.",
+        "Did you not ask for it? Then you can ignore this e-mail. No one can read the news with it alone.",
     },
   },
 };

@@ -127,7 +127,7 @@ describe("a table written in any dialect comes back identical", () => {
           const written = Papa.unparse([header, ...rows], { delimiter, newline, quotes });
           fc.pre(encoding !== "windows-1252" || isWindows1252(written));
           // A lone surrogate cannot be written in any encoding.
-          fc.pre(written.isWellFormed());
+          fc.pre(!/\p{Surrogate}/u.test(written));
           const marked = bom || encoding.startsWith("utf-16");
           const bytes = encode(written, encoding, marked);
           const read = await readBytes(bytes, {

@@ -106,7 +106,7 @@ class TableReader {
     const filled = trimTrailing(cells);
     if (filled.length > this.width) return tooManyCells(lineNumber, filled, this.width);
     const padded = Math.max(0, this.width - cells.length);
-    return { kind: "row", lineNumber, cells: fit(cells, this.width), padded };
+    return { kind: "row", lineNumber, cells: padTo(cells, this.width), padded };
   }
 
   private refuseTooManyRows(lineNumber: number): never {
@@ -119,7 +119,7 @@ class TableReader {
   }
 }
 
-function fit(cells: string[], width: number) {
+function padTo(cells: string[], width: number) {
   return cells.length < width
     ? [...cells, ...Array.from({ length: width - cells.length }, () => "")]
     : cells.slice(0, width);

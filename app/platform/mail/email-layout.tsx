@@ -29,7 +29,7 @@ const darkStyles = `
   .page, .page > table > tbody > tr > td { background-color: ${dark.page} !important; }
   .paper { background-color: ${dark.paper} !important; }
   .text { color: ${dark.text} !important; }
-  .soft, .soft a { color: ${dark.soft} !important; }
+  .soft { color: ${dark.soft} !important; }
   .link { color: ${dark.primary} !important; }
   .serious { color: ${dark.serious} !important; }
   .head { border-color: ${dark.line} !important; }
@@ -213,15 +213,18 @@ export function EmailSmallPrint(props: { children: ReactNode }) {
   );
 }
 
-/** A link within the small print. */
+/** A link of the small print, on a line of its own so that a thumb finds it. */
 export function EmailSmallLink(props: { href: string; children: string }) {
   return (
-    <Link
-      href={requireWebLink(props.href)}
-      style={{ color: light.soft, textDecoration: "underline", display: "inline-block", padding: "10px 0" }}
-    >
-      {props.children}
-    </Link>
+    <Text style={{ fontSize: "15px", lineHeight: "44px", margin: 0 }}>
+      <Link
+        className="link"
+        href={requireWebLink(props.href)}
+        style={{ color: light.primary, textDecoration: "underline", display: "inline-block" }}
+      >
+        {props.children}
+      </Link>
+    </Text>
   );
 }
 

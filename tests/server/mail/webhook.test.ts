@@ -141,9 +141,8 @@ describe("the webhooks of the local stand-in", () => {
       response.writeHead(503).end();
       return;
     }
-    const headers = new Headers(
-      Object.entries(request.headers).map(([name, value]) => [name, String(value)]),
-    );
+    const headers = new Headers();
+    for (const [name, value] of Object.entries(request.headers)) headers.set(name, String(value));
     events.push(verifyMailWebhook(Buffer.concat(chunks).toString("utf8"), headers, secret));
     response.writeHead(204).end();
   });

@@ -33,9 +33,8 @@ export async function composeFreshLink(props: FreshLinkEmailProps) {
         <>
           <EmailSmallPrint>{texts.freshLink.notAsked}</EmailSmallPrint>
           <EmailSmallPrint>{texts.notFromUs}</EmailSmallPrint>
-          <EmailSmallPrint>
-            {texts.stop} <EmailSmallLink href={props.stopUrl}>{texts.stopLink}</EmailSmallLink>
-          </EmailSmallPrint>
+          <EmailSmallPrint>{texts.stop}</EmailSmallPrint>
+          <EmailSmallLink href={props.stopUrl}>{texts.stopLink}</EmailSmallLink>
         </>
       }
     >

@@ -58,9 +58,8 @@ export async function composeNotice(props: NoticeEmailProps) {
         <>
           <EmailSmallPrint>{texts.notFromUs}</EmailSmallPrint>
           <EmailSmallPrint>{texts.notForYou}</EmailSmallPrint>
-          <EmailSmallPrint>
-            {texts.stop} <EmailSmallLink href={props.stopUrl}>{texts.stopLink}</EmailSmallLink>
-          </EmailSmallPrint>
+          <EmailSmallPrint>{texts.stop}</EmailSmallPrint>
+          <EmailSmallLink href={props.stopUrl}>{texts.stopLink}</EmailSmallLink>
         </>
       }
     >

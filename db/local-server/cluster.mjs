@@ -126,6 +126,15 @@ export async function stopCluster(name) {
  */
 export async function dropCluster(name) {
   await stopCluster(name);
+  deleteCluster(name);
+}
+
+/**
+ * Delete a cluster that does not run.
+ *
+ * @param {string} name
+ */
+export function deleteCluster(name) {
   rmSync(clusterHome(name), { recursive: true, force: true });
   rmSync(`${clusterHome(name)}.lock`, { force: true });
 }
@@ -268,11 +277,22 @@ async function stop(binaries, home) {
   }
 }
 
-/** @param {import("./binaries.mjs").Binaries} binaries @param {string} home */
-async function leaveCluster(binaries, home) {
-  rmSync(join(home, "users", String(process.pid)), { force: true });
-  if (usersOf(home).length > 0 || !isRunning(join(home, "data"))) return;
-  await stop(binaries, home);
+/**
+ * Runs while a stop is under way too, perhaps while the server is still starting: the lock orders the two.
+ *
+ * @param {import("./binaries.mjs").Binaries} binaries
+ * @param {string} home
+ */
+function leaveCluster(binaries, home) {
+  return withLock(
+    `${home}.lock`,
+    "stopping the local database",
+    () => {},
+    async () => {
+      rmSync(join(home, "users", String(process.pid)), { force: true });
+      if (usersOf(home).length === 0 && isRunning(join(home, "data"))) await stop(binaries, home);
+    },
+  );
 }
 
 /** @param {string} home @param {boolean} keep */

@@ -92,6 +92,7 @@ export function localEnvironment(cluster, mailPort) {
   const { secrets } = cluster;
   return {
     HALESIDE_LOCAL: "1",
+    APP_ORIGIN: "http://localhost:3000",
     DATABASE_URL: urls.app,
     DATABASE_OWNER_URL: urls.owner,
     DATABASE_AUTH_URL: urls.auth,

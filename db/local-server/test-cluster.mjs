@@ -1,5 +1,5 @@
 import { bornOf } from "../../app/platform/machine/lock.mjs";
-import { clusterNames, clusterUrls, dropCluster, openCluster } from "./cluster.mjs";
+import { clusterNames, clusterUrls, deleteCluster, dropCluster, openCluster } from "./cluster.mjs";
 import { localEnvironment } from "./environment.mjs";
 import { findFreePort } from "./ports.mjs";
 
@@ -10,15 +10,26 @@ const PREFIX = "run-";
 /**
  * A fresh cluster for this run. Those that killed runs left behind are deleted first.
  *
- * @param {(drop: () => Promise<void>) => void} onStart told how to delete it, before its server starts
+ * @param {(drop: () => Promise<void>) => void} onMake told how to delete it, before anything is made
  */
-export async function openTestCluster(onStart) {
+export async function openTestCluster(onMake) {
   for (const name of clusterNames(PREFIX)) {
     if (bornOf(Number(name.slice(PREFIX.length))) === "") await dropCluster(name);
   }
   const name = `${PREFIX}${process.pid}`;
-  await dropCluster(name);
-  return openCluster({ name, lasting: false, onStart: () => onStart(() => dropCluster(name)) });
+  /** @type {() => Promise<void>} */
+  let leave = async () => {};
+  onMake(async () => {
+    await leave();
+    deleteCluster(name);
+  });
+  return openCluster({
+    name,
+    lasting: false,
+    onStart: (way) => {
+      leave = way;
+    },
+  });
 }
 
 /**

@@ -12,6 +12,12 @@ import { Failure } from "./failure.mjs";
  * @typedef {{ pid: number, born: string, what: string, note?: string }} Holder
  */
 
+/** What this process holds: let go of at its end, however that comes about. @type {Set<string>} */
+const held = new Set();
+process.on("exit", () => {
+  for (const file of held) unlock(file);
+});
+
 /**
  * When a process was started, in clock ticks since boot: with the id it names one process for good.
  *
@@ -63,6 +69,7 @@ export function tryLock(file, what, note) {
   try {
     for (let attempt = 0; attempt < 3; attempt++) {
       try {
+        held.add(file);
         // A link is made whole or not at all: nobody ever reads a half-written lock.
         linkSync(draft, file);
         return undefined;
@@ -85,6 +92,7 @@ export function tryLock(file, what, note) {
  * @param {string} file
  */
 export function unlock(file) {
+  held.delete(file);
   if (holderOf(file)?.pid === process.pid) rmSync(file, { force: true });
 }
 

@@ -194,7 +194,6 @@ export const rosterColumns: readonly ColumnDefinition<RosterColumn>[] = [
     aliases: [
       "team name",
       "squad",
-      "side",
       "group",
       "Mannschaft",
       "Team-Name",

@@ -12,7 +12,7 @@ import { nameLanguage, parseEmail, parseLanguage, parsePhone } from "~/features/
 import { type KnownDayOrder, parseDayCell } from "~/features/imports/values/days";
 import { parseIdentifier } from "~/features/imports/values/identifiers";
 import { type NameOrder, parseNamePart, parsePersonName } from "~/features/imports/values/names";
-import { accept, quoteCell } from "~/features/imports/values/parsed";
+import { quoteCell } from "~/features/imports/values/parsed";
 import { foldText } from "~/platform/fold-text";
 import { languages, legs, relations, sexes } from "~db/schema/codes";
 import { type RosterColumn, rosterColumns } from "./columns";
@@ -152,9 +152,9 @@ function readLanguage(reader: Reader) {
   const written = languages.find((language) => language === code);
   if (written) return written;
   const name = nameLanguage(code);
-  reader.take(
+  reader.warn(
     "guardianLanguage",
-    accept(code, `Notices are not written in ${name} yet: the guardian’s language is left as it is.`),
+    `Notices are not written in ${name} yet: the guardian’s language is left as it is.`,
   );
   return undefined;
 }

@@ -8,7 +8,12 @@ import type { Athlete, Day, Guardian, Guardianship, RosterEntry } from "./types.
  * Guardians of everyone who was a minor on joining; siblings of one household share them. Afterwards the
  * special families: one action alert, one guardian with legal limits, one safeguarding hold.
  */
-export function buildFamilies(seed: string, organisation: string, members: readonly Member[], contacts: ContactBook) {
+export function buildFamilies(
+  seed: string,
+  organisation: string,
+  members: readonly Member[],
+  contacts: ContactBook,
+) {
   const random = openStream(seed, `families ${organisation}`);
   const guardians: Guardian[] = [];
   const guardianships: Guardianship[] = [];
@@ -47,7 +52,12 @@ function drawHome(random: Random, organisation: string, member: Member, contacts
     [["carer"], 3],
   ]);
   return relations.map((relation, index) => {
-    const sounds = relation === "mother" ? "female" : relation === "father" ? "male" : random.pick(["female", "male"] as const);
+    const sounds =
+      relation === "mother"
+        ? "female"
+        : relation === "father"
+          ? "male"
+          : random.pick(["female", "male"] as const);
     const givenName = drawGivenName(random, member.household, sounds);
     const { familyName, language } = member.household;
     const hasEmail = random.chance(index === 0 ? 0.98 : 0.92);
@@ -77,7 +87,9 @@ type Special = {
 /** Marks the special families, in place, before anything else reads them. */
 export function markSpecialFamilies(seed: string, organisation: string, special: Special): void {
   const random = openStream(seed, `special families ${organisation}`);
-  const current = new Set(special.roster.filter((each) => each.from >= special.seasonFrom).map((each) => each.athlete));
+  const current = new Set(
+    special.roster.filter((each) => each.from >= special.seasonFrom).map((each) => each.athlete),
+  );
   const minors = random.shuffle(
     special.athletes.filter(
       (athlete) => current.has(athlete.key) && ageOnDay(athlete.dateOfBirth, special.seasonFrom) < 16,
@@ -89,19 +101,22 @@ export function markSpecialFamilies(seed: string, organisation: string, special:
   const [alerted] = minors;
   if (alerted) alerted.actionAlerts = ["Carries adrenaline: use it, call an ambulance"];
   const [limited, held] = twoGuardians.filter((athlete) => athlete !== alerted);
-  const limitedTo = special.guardianships.find((each) => each.athlete === limited?.key && each.phoneOrder === 2);
+  const limitedTo = special.guardianships.find(
+    (each) => each.athlete === limited?.key && each.phoneOrder === 2,
+  );
   if (limitedTo) {
     limitedTo.mayBeTold = false;
     limitedTo.mayDecide = false;
     limitedTo.legalLimit = {
-      words: "Court order: may not be told where the athlete trains or plays, and takes no part in decisions.",
+      words:
+        "Court order: may not be told where the athlete trains or plays, and takes no part in decisions.",
       document: "court-order-family-division.pdf",
       reviewOn: addDays(special.seasonFrom, 300),
     };
   }
   if (held) {
     held.safeguardingHold = {
-      from: addDays(special.seasonFrom, 12),
+      from: special.seasonFrom,
       by: special.clinician,
       reason: "Safeguarding officer asks that nobody at home is written to until she has met the family.",
     };

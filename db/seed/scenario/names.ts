@@ -20,8 +20,12 @@ const GROUPS: readonly NameGroup[] = [
   {
     languages: ENGLISH_ONLY,
     share: 34,
-    female: words("Amelia Isla Freya Poppy Martha Edith Rosie Thea Harriet Nell Imogen Beatrix Orla Tess Flora"),
-    male: words("Alfie Rowan Toby Jasper Wilfred Hugo Ellis Frank Reuben Barnaby Callum Dexter Jude Otto Miles"),
+    female: words(
+      "Amelia Isla Freya Poppy Martha Edith Rosie Thea Harriet Nell Imogen Beatrix Orla Tess Flora",
+    ),
+    male: words(
+      "Alfie Rowan Toby Jasper Wilfred Hugo Ellis Frank Reuben Barnaby Callum Dexter Jude Otto Miles",
+    ),
     family: words(
       "Saltmere Tidewell Marrowby Fennacre Gullsworth Dunelock Reedhaven Shinglefoot Brackenmoor Wrackford Sandlecombe Otterby Creekwain Harrowtide Pebblesham Lanternby Windlecroft Sloebridge Kelpworth Foamleigh",
     ),

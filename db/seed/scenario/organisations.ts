@@ -29,15 +29,19 @@ export function listTeams(years: readonly [number, number, number]): Team[] {
     sport: plan.sport,
     sexCategory: plan.sexCategory,
     ageGroup: plan.ageGroup,
-    programmeFrom: dayInSeason(
-      years[plan.programmeStart.season] ?? years[2],
-      plan.programmeStart.monthDay,
-    ),
+    programmeFrom: dayInSeason(years[plan.programmeStart.season] ?? years[2], plan.programmeStart.monthDay),
     weeklyTarget: plan.strengthEveryWeeks === null ? 1 : 2,
   }));
 }
 
-type VenueRow = readonly [organisation: string, key: string, name: string, address: string, access: string, defibrillator: string];
+type VenueRow = readonly [
+  organisation: string,
+  key: string,
+  name: string,
+  address: string,
+  access: string,
+  defibrillator: string,
+];
 
 const VENUE_ROWS: readonly VenueRow[] = [
   [
@@ -131,7 +135,13 @@ const STAFF_ROWS: readonly StaffRow[] = [
     "Priya",
     "Samudrani",
     "trainer",
-    ["basketball-girls-u16", "basketball-boys-u16", "basketball-boys-u18", "volleyball-mixed-u14", "volleyball-girls-u18"],
+    [
+      "basketball-girls-u16",
+      "basketball-boys-u16",
+      "basketball-boys-u18",
+      "volleyball-mixed-u14",
+      "volleyball-girls-u18",
+    ],
   ],
   [MARRAM_BAY, "Carys", "Morfarwel", "coach", ["soccer-girls-u16", "soccer-girls-u14"]],
   [MARRAM_BAY, "Denzil", "Wrackford", "coach", ["soccer-men"]],
@@ -170,7 +180,9 @@ export function listStaff(contacts: ContactBook): { people: Person[]; membership
 /** Who looks after a team: its coach, and the athletic trainer who covers all teams. */
 export function staffOf(memberships: readonly Membership[], organisation: string, team: string) {
   const own = memberships.filter((each) => each.organisation === organisation);
-  const coach = own.find((each) => each.role === "coach" && each.teams !== "all" && each.teams.includes(team));
+  const coach = own.find(
+    (each) => each.role === "coach" && each.teams !== "all" && each.teams.includes(team),
+  );
   const trainer = own.find((each) => each.role === "trainer" && each.teams === "all");
   if (!coach || !trainer) throw new RangeError(`staffOf: ${team} needs a coach and an athletic trainer`);
   return { coach: coach.person, trainer: trainer.person };

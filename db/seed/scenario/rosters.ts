@@ -11,6 +11,8 @@ export type Member = {
   household: Household;
   householdKey: string;
   joinedOn: Day;
+  /** The team a visitor trains with for a fortnight; null for athletes with a roster. */
+  visits: string | null;
 };
 
 type Place = { member: Member; plan: TeamPlan };
@@ -19,7 +21,8 @@ type Place = { member: Member; plan: TeamPlan };
 export function isEligible(plan: TeamPlan, member: Pick<Member, "plays" | "athlete">, year: number): boolean {
   const age = ageOnFirstSeptember(member.athlete.dateOfBirth, year);
   const wanted = plan.sexCategory;
-  const fits = wanted === "mixed" || (wanted === "girls" || wanted === "women") === (member.plays === "female");
+  const fits =
+    wanted === "mixed" || (wanted === "girls" || wanted === "women") === (member.plays === "female");
   return fits && age >= plan.ageGroup.minAge && age <= plan.ageGroup.maxAge;
 }
 
@@ -55,7 +58,12 @@ export function buildRosters(seed: string, organisation: string, years: readonly
 }
 
 /** Who stays on into a season, and where. */
-function keepPlaces(random: Random, plans: readonly TeamPlan[], before: readonly Place[], year: number): Place[] {
+function keepPlaces(
+  random: Random,
+  plans: readonly TeamPlan[],
+  before: readonly Place[],
+  year: number,
+): Place[] {
   const kept: Place[] = [];
   const hasRoom = (plan: TeamPlan, spare: number) =>
     kept.filter((place) => place.plan === plan).length < plan.size + spare;
@@ -95,7 +103,9 @@ function listEntries(random: Random, plans: readonly TeamPlan[], places: readonl
       entries.push(entry(member, plan, from, addDays(newYear, -1)), entry(member, other, newYear, season.to));
       continue;
     }
-    entries.push(entry(member, plan, from, random.chance(0.012) ? addDays(newYear, random.int(0, 60)) : season.to));
+    entries.push(
+      entry(member, plan, from, random.chance(0.012) ? addDays(newYear, random.int(0, 60)) : season.to),
+    );
     if (other && secondTeams > 0) {
       secondTeams -= 1;
       entries.push(entry(member, other, addDays(season.from, 35), season.to));
@@ -119,8 +129,14 @@ function drawMember(
 ): Member {
   const { minAge, maxAge, label } = plan.ageGroup;
   // After the first season most newcomers are young: a team fills from below.
-  const span = label === "senior" ? (isFirstSeason ? maxAge - minAge : 9) : isFirstSeason ? maxAge - minAge : 1;
-  const age = minAge + Math.min(maxAge - minAge, Math.floor((label === "senior" ? random.next() ** 1.7 : random.next()) * (span + 1)));
+  const span =
+    label === "senior" ? (isFirstSeason ? maxAge - minAge : 9) : isFirstSeason ? maxAge - minAge : 1;
+  const age =
+    minAge +
+    Math.min(
+      maxAge - minAge,
+      Math.floor((label === "senior" ? random.next() ** 1.7 : random.next()) * (span + 1)),
+    );
   const birthday = dayOf(dayNumber(`${year - age - 1}-09-02`) + random.int(0, 364));
   const late = !isFirstSeason && random.chance(0.2);
   const plays = plan.sexCategory === "mixed" ? random.pick(["female", "male"] as const) : sideOf(plan);
@@ -132,6 +148,7 @@ function drawMember(
     dateOfBirth: birthday,
     sibling,
     joinedOn: late ? dayInSeason(year, "01-06") : dayInSeason(year, "08-01"),
+    visits: null,
     taken: before,
   });
 }
@@ -156,6 +173,7 @@ type MemberFacts = {
   dateOfBirth: Day;
   sibling: Member | null;
   joinedOn: Day;
+  visits: string | null;
   taken: readonly Member[];
 };
 
@@ -201,6 +219,7 @@ function makeMember(random: Random, facts: MemberFacts): Member {
     household,
     householdKey: facts.sibling?.householdKey ?? key,
     joinedOn: facts.joinedOn,
+    visits: facts.visits,
   };
 }
 
@@ -212,10 +231,22 @@ function drawEarlierInjuries(random: Random, facts: MemberFacts): EarlierInjury[
   const side = random.pick(["left", "right"] as const);
   if (age >= 15 && random.chance(facts.plays === "female" ? 0.09 : 0.03)) {
     const year = joined - random.int(1, Math.min(4, age - 13));
-    injuries.push({ area: "knee", side, pathology: "sprain", words: "Anterior cruciate ligament tear, reconstructed", year });
+    injuries.push({
+      area: "knee",
+      side,
+      pathology: "sprain",
+      words: "Anterior cruciate ligament tear, reconstructed",
+      year,
+    });
     if (random.chance(0.1) && year < joined) {
       const again = random.chance(0.5) ? side : side === "left" ? "right" : "left";
-      injuries.push({ area: "knee", side: again, pathology: "sprain", words: "Anterior cruciate ligament tear", year: joined });
+      injuries.push({
+        area: "knee",
+        side: again,
+        pathology: "sprain",
+        words: "Anterior cruciate ligament tear",
+        year: joined,
+      });
     }
   }
   if (age >= 12 && random.chance(0.1)) {
@@ -245,7 +276,8 @@ function drawVisitors(
         plays: plan.sexCategory === "mixed" ? "female" : sideOf(plan),
         dateOfBirth: dayOf(dayNumber(`${year - age - 1}-09-02`) + random.int(0, 364)),
         sibling: null,
-        joinedOn: dayInSeason(year, "09-01"),
+        joinedOn: dayInSeason(year, "09-20"),
+        visits: plan.key,
         taken: [...members, ...visitors],
       }),
     );

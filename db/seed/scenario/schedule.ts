@@ -1,8 +1,7 @@
 import { addDays } from "./days.ts";
-import { isBreak, playingWeeks, type TeamPlan } from "./plan.ts";
+import { isBreak, playingWeeks, sportRuleOf, type TeamPlan } from "./plan.ts";
 import { openStream } from "./random.ts";
 import type { Day, SessionKind, Surface } from "./types.ts";
-import { sportRuleOf } from "./plan.ts";
 
 /** One entry of a team's calendar, before anyone has played it. */
 export type Fixture = {
@@ -18,6 +17,8 @@ export type Fixture = {
   surface: Surface;
   venue: string | null;
   isSilent: boolean;
+  /** Day on which the team began the warm-up programme. */
+  programmeFrom: Day;
 };
 
 /** The team that reported nothing for six weeks in the second season: its coach was away and nobody stood in. */
@@ -25,7 +26,13 @@ const SILENT_TEAM = "handball-boys-u18";
 const SILENT_WEEKS = { season: 1, first: 9, last: 14 };
 
 /** A team's calendar for one season, in order of day; `season` is its place (0 to 2) among the scenario's three. */
-export function buildFixtures(seed: string, plan: TeamPlan, year: number, season: number): Fixture[] {
+export function buildFixtures(
+  seed: string,
+  plan: TeamPlan,
+  year: number,
+  season: number,
+  programmeFrom: Day,
+): Fixture[] {
   const random = openStream(seed, `fixtures ${plan.key} ${year}`);
   const { first, last } = playingWeeks(plan, year);
   const rule = sportRuleOf(plan.sport, plan.ageGroup.label);
@@ -33,13 +40,23 @@ export function buildFixtures(seed: string, plan: TeamPlan, year: number, season
   const fixtures: Fixture[] = [];
   for (let monday = first, week = 0; addDays(monday, 6) <= last; monday = addDays(monday, 7), week += 1) {
     const isSilent =
-      plan.key === SILENT_TEAM && season === SILENT_WEEKS.season && week >= SILENT_WEEKS.first && week <= SILENT_WEEKS.last;
-    const add = (weekday: number, kind: SessionKind, start: string, plannedMinutes: number, more?: Partial<Fixture>) => {
+      plan.key === SILENT_TEAM &&
+      season === SILENT_WEEKS.season &&
+      week >= SILENT_WEEKS.first &&
+      week <= SILENT_WEEKS.last;
+    const add = (
+      weekday: number,
+      kind: SessionKind,
+      start: string,
+      plannedMinutes: number,
+      more?: Partial<Fixture>,
+    ) => {
       const day = addDays(monday, weekday);
       if (isBreak(plan, day)) return;
       const { surface, venue } = plan;
       const key = `${plan.key}/${day}/${kind}`;
-      fixtures.push({ key, plan, day, monday, week, start, kind, plannedMinutes, surface, venue, isSilent, ...more });
+      const fixture = { key, plan, day, monday, week, start, kind, plannedMinutes, surface, venue };
+      fixtures.push({ ...fixture, isSilent, programmeFrom, ...more });
     };
     add(plan.trainingWeekday, "training", plan.trainingStart, plan.trainingMinutes);
     if (plan.strengthEveryWeeks !== null && week % plan.strengthEveryWeeks === 0) {
@@ -48,7 +65,8 @@ export function buildFixtures(seed: string, plan: TeamPlan, year: number, season
     }
     if (week >= 2 && week % plan.matchEveryWeeks === matchPhase) {
       const away = (week / plan.matchEveryWeeks) % 2 >= 1;
-      const start = plan.matchWeekday < 5 ? "15:45" : random.pick(["10:00", "10:30", "11:00", "13:30", "14:00"]);
+      const start =
+        plan.matchWeekday < 5 ? "15:45" : random.pick(["10:00", "10:30", "11:00", "13:30", "14:00"]);
       add(plan.matchWeekday, "match", start, rule.regulationMinutes, away ? { venue: null } : {});
     }
     if (week === 0 && plan.ageGroup.label === "senior") {

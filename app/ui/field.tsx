@@ -35,7 +35,7 @@ export function Field({ name, label, help, errors, optional = false, children }:
 
   return (
     <div className={invalid ? "mb-6 border-0 border-l-[6px] border-berry pl-4" : "mb-6"}>
-      <label htmlFor={id} className="mb-1 block font-medium">
+      <label id={`${id}-label`} htmlFor={id} className="mb-1 block font-medium">
         {label}
         {optional ? <span className="font-normal text-soft"> (optional)</span> : null}
       </label>

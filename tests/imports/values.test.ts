@@ -12,7 +12,12 @@ import {
 import { parseEmail, parseLanguage, parsePhone } from "~/features/imports/values/contacts";
 import { DayOrderDetector, detectDayOrder, parseDayCell } from "~/features/imports/values/days";
 import { parseIdentifier } from "~/features/imports/values/identifiers";
-import { needsNameOrder, normaliseName, parseNamePart, parsePersonName } from "~/features/imports/values/names";
+import {
+  needsNameOrder,
+  normaliseName,
+  parseNamePart,
+  parsePersonName,
+} from "~/features/imports/values/names";
 import type { Parsed } from "~/features/imports/values/parsed";
 import { parseTimeCell } from "~/features/imports/values/times";
 
@@ -89,13 +94,16 @@ describe("days", () => {
 
   it("reads back every day of the calendar in the order it was written", () => {
     fc.assert(
-      fc.property(fc.date({ min: new Date("1900-01-01"), max: new Date("2100-12-31"), noInvalidDate: true }), (date) => {
-        const iso = date.toISOString().slice(0, 10);
-        const [year, month, day] = iso.split("-");
-        expect(outcome(parseDayCell(`${day}/${month}/${year}`, "day-first"))).toBe(iso);
-        expect(outcome(parseDayCell(`${month}/${day}/${year}`, "month-first"))).toBe(iso);
-        expect(outcome(parseDayCell(iso, undefined))).toBe(iso);
-      }),
+      fc.property(
+        fc.date({ min: new Date("1900-01-01"), max: new Date("2100-12-31"), noInvalidDate: true }),
+        (date) => {
+          const iso = date.toISOString().slice(0, 10);
+          const [year, month, day] = iso.split("-");
+          expect(outcome(parseDayCell(`${day}/${month}/${year}`, "day-first"))).toBe(iso);
+          expect(outcome(parseDayCell(`${month}/${day}/${year}`, "month-first"))).toBe(iso);
+          expect(outcome(parseDayCell(iso, undefined))).toBe(iso);
+        },
+      ),
     );
   });
 
@@ -167,7 +175,11 @@ describe("minutes and players", () => {
   });
 
   it("warns of a part of a minute, which may have been hours", () => {
-    expect(parseMinutes("1,5")).toMatchObject({ ok: true, value: 1.5, warning: expect.stringContaining("hours") });
+    expect(parseMinutes("1,5")).toMatchObject({
+      ok: true,
+      value: 1.5,
+      warning: expect.stringContaining("hours"),
+    });
   });
 
   it.each([
@@ -330,12 +342,20 @@ describe("names", () => {
     expect(parseNamePart(name)).toEqual({ ok: true, value: name, warning });
   });
 
-  it.each(["Nguyễn", "Žižka", "Þórsdóttir", "Åkesson", "D'Arcy-Wray", "’t Hooft", "李", "Ægir", "Łukaszewska", "=cmd"])(
-    "keeps %s without a warning",
-    (name) => {
-      expect(parseNamePart(name)).toEqual({ ok: true, value: name });
-    },
-  );
+  it.each([
+    "Nguyễn",
+    "Žižka",
+    "Þórsdóttir",
+    "Åkesson",
+    "D'Arcy-Wray",
+    "’t Hooft",
+    "李",
+    "Ægir",
+    "Łukaszewska",
+    "=cmd",
+  ])("keeps %s without a warning", (name) => {
+    expect(parseNamePart(name)).toEqual({ ok: true, value: name });
+  });
 
   it("refuses what no name is", () => {
     expect(outcome(parseNamePart("a\u0007b"))).toBe("refused: name.control");
@@ -404,18 +424,29 @@ describe("anything typed at all", () => {
 
   it("gives a value or a whole sentence with a mend, and never throws", () => {
     fc.assert(
-      fc.property(fc.string({ unit: "binary", maxLength: 60 }), fc.constantFrom(...parsers), (text, parse) => {
-        const parsed = parse(text);
-        if (parsed.ok) return;
-        expect(parsed.reason).toMatch(/\.$/);
-        expect(parsed.mend).toMatch(/^[A-Z].*\.$/);
-      }),
+      fc.property(
+        fc.string({ unit: "binary", maxLength: 60 }),
+        fc.constantFrom(...parsers),
+        (text, parse) => {
+          const parsed = parse(text);
+          if (parsed.ok) return;
+          expect(parsed.reason).toMatch(/\.$/);
+          expect(parsed.mend).toMatch(/^[A-Z].*\.$/);
+        },
+      ),
       { numRuns: 3000 },
     );
   });
 
   it("does not hang on long cells", () => {
-    const long = ["1".repeat(32_000), "a ".repeat(16_000), "1:".repeat(16_000), "a@".repeat(16_000), " ".repeat(32_000), "a.".repeat(16_000)];
+    const long = [
+      "1".repeat(32_000),
+      "a ".repeat(16_000),
+      "1:".repeat(16_000),
+      "a@".repeat(16_000),
+      " ".repeat(32_000),
+      "a.".repeat(16_000),
+    ];
     const start = performance.now();
     for (const text of long) for (const parse of parsers) parse(text);
     expect(performance.now() - start).toBeLessThan(2000);

@@ -8,7 +8,8 @@ export type TargetSize = "regular" | "large";
 
 const shape =
   "inline-flex items-center justify-center gap-2 rounded-md border text-center font-medium no-underline " +
-  "transition-colors disabled:cursor-not-allowed disabled:opacity-60 aria-disabled:opacity-60";
+  "transition-colors aria-busy:cursor-progress disabled:cursor-not-allowed disabled:border-dashed " +
+  "disabled:border-edge disabled:bg-chalk disabled:text-soft";
 
 const looks: Record<ButtonLook, string> = {
   primary: "border-lagoon bg-lagoon text-on-lagoon hover:border-lagoon-deep hover:bg-lagoon-deep",

@@ -25,14 +25,9 @@ export function ChalkStatus({ line, children }: Props) {
         />
       </div>
       {children ? (
-        <p
-          className={joinClasses(
-            "px-4 py-2.5 sm:px-6",
-            line === "broken" ? "bg-ember-wash text-ink" : "bg-paper text-soft",
-          )}
-        >
-          {children}
-        </p>
+        <div className={line === "broken" ? "bg-ember-wash text-ink" : "bg-paper text-soft"}>
+          <p className="mx-auto max-w-page px-4 py-2.5 sm:px-6 xl:px-0">{children}</p>
+        </div>
       ) : null}
     </div>
   );

@@ -59,53 +59,50 @@ export function ChoiceButtons({ mode = "single", layout = "chips", size = "regul
   const describedBy = [help ? `${id}-help` : "", invalid ? `${id}-error` : ""].filter(Boolean).join(" ");
 
   return (
-    <fieldset
-      aria-describedby={describedBy || undefined}
-      className={joinClasses(
-        "mb-6 min-w-0",
-        invalid ? "border-0 border-l-[6px] border-berry pl-4" : "border-0",
-      )}
-    >
-      <legend className="mb-1 font-medium">
-        {legend}
-        {optional ? <span className="font-normal text-soft"> (optional)</span> : null}
-      </legend>
-      {help ? (
-        <p id={`${id}-help`} className="mb-1.5 max-w-prose text-soft">
-          {help}
-        </p>
-      ) : null}
-      <FieldError id={`${id}-error`} messages={messages} />
-      <div
-        className={
-          layout === "segments" ? "grid max-w-[36rem] auto-cols-fr grid-flow-col" : "flex flex-wrap gap-2.5"
-        }
-      >
-        {choices.map(({ value, label, detail, disabled }, index) => {
-          const inputId = index === 0 ? id : `${id}-${index + 1}`;
-          return (
-            <div key={value} className="group relative">
-              <input
-                id={inputId}
-                type={mode === "single" ? "radio" : "checkbox"}
-                name={name}
-                value={value}
-                disabled={disabled}
-                defaultChecked={chosen.includes(value)}
-                aria-invalid={invalid || undefined}
-                onChange={onChange ? (event) => onChange(value, event.currentTarget.checked) : undefined}
-                className="peer sr-only"
-              />
-              <label htmlFor={inputId} className={joinClasses(face, shapes[layout], heights[size])}>
-                <span>
-                  {label}
-                  {detail ? <span className="block text-sm opacity-85">{detail}</span> : null}
-                </span>
-              </label>
-            </div>
-          );
-        })}
-      </div>
-    </fieldset>
+    // The bar stands on a box around the group: a legend would push it down from the group's own border.
+    <div className={joinClasses("mb-6", invalid && "border-0 border-l-[6px] border-berry pl-4")}>
+      <fieldset aria-describedby={describedBy || undefined} className="min-w-0 border-0">
+        <legend className="mb-1 font-medium">
+          {legend}
+          {optional ? <span className="font-normal text-soft"> (optional)</span> : null}
+        </legend>
+        {help ? (
+          <p id={`${id}-help`} className="mb-1.5 max-w-prose text-soft">
+            {help}
+          </p>
+        ) : null}
+        <FieldError id={`${id}-error`} messages={messages} />
+        <div
+          className={
+            layout === "segments" ? "grid max-w-[36rem] auto-cols-fr grid-flow-col" : "flex flex-wrap gap-2.5"
+          }
+        >
+          {choices.map(({ value, label, detail, disabled }, index) => {
+            const inputId = index === 0 ? id : `${id}-${index + 1}`;
+            return (
+              <div key={value} className="group relative">
+                <input
+                  id={inputId}
+                  type={mode === "single" ? "radio" : "checkbox"}
+                  name={name}
+                  value={value}
+                  disabled={disabled}
+                  defaultChecked={chosen.includes(value)}
+                  aria-invalid={invalid || undefined}
+                  onChange={onChange ? (event) => onChange(value, event.currentTarget.checked) : undefined}
+                  className="peer sr-only"
+                />
+                <label htmlFor={inputId} className={joinClasses(face, shapes[layout], heights[size])}>
+                  <span>
+                    {label}
+                    {detail ? <span className="block text-sm opacity-85">{detail}</span> : null}
+                  </span>
+                </label>
+              </div>
+            );
+          })}
+        </div>
+      </fieldset>
+    </div>
   );
 }

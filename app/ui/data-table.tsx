@@ -141,7 +141,7 @@ export function DataTable<Row extends object>({ sortParam = "sort", ...props }: 
             id={captionId}
             className={props.captionHidden ? "sr-only" : "pb-1 text-left font-semibold text-pretty"}
           >
-            {caption}
+            <span className="sticky left-0 inline-block max-w-[calc(100vw-2.5rem)]">{caption}</span>
           </caption>
           <thead className="sticky top-0 z-10 bg-chalk">
             <tr className="border-0 border-b border-edge">
@@ -214,7 +214,7 @@ function BodyCell<Row>({ column, row }: { column: Column<Row>; row: Row }) {
       scope="row"
       className={joinClasses(
         classes,
-        "sticky left-0 max-w-[46vw] bg-chalk font-normal lg:static lg:max-w-none",
+        "sticky left-0 max-w-[46vw] min-w-[8.5rem] bg-chalk font-normal lg:static lg:max-w-none",
       )}
     >
       {content}

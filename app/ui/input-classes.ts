@@ -13,7 +13,7 @@ const widths: Record<InputWidth, string> = {
 export function inputClasses(width: InputWidth = "full", size: TargetSize = "regular") {
   return joinClasses(
     "block rounded-md border border-edge bg-paper px-3 py-2 text-ink",
-    "disabled:bg-chalk disabled:text-soft read-only:bg-chalk",
+    "disabled:bg-chalk disabled:text-soft [&[readonly]]:bg-chalk",
     "aria-invalid:border-berry aria-invalid:border-[3px]",
     size === "large" ? "min-h-target-large" : "min-h-target",
     widths[width],

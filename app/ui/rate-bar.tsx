@@ -20,6 +20,9 @@ type Props = {
   unit?: string;
 };
 
+/** The axis lines reach through the padding of the cells, so that they join from row to row. */
+const cellPadding = 11;
+
 const place = (value: number, max: number) =>
   `${Math.min(100, Math.max(0, (value / max) * 100)).toFixed(2)}%`;
 
@@ -48,6 +51,7 @@ export function RateBar({
   const { colour, textColour, shape, dash } = seriesLook(series);
   const words = [estimate, lower, upper].map((value) => value.toFixed(decimals));
   const label = `${words[0]} (${words[1]} to ${words[2]}) ${unit}`.trim() + (unstable ? ", unstable" : "");
+  const height = unstable ? 38 : 24;
   const word = wordAnchor(estimate / scale.max);
 
   return (
@@ -55,7 +59,7 @@ export function RateBar({
       role="img"
       aria-label={label}
       className="block w-full overflow-visible"
-      height={unstable ? 38 : 24}
+      height={height}
       style={{ fontVariantNumeric: "normal" }}
     >
       {scale.ticks.map((tick) => (
@@ -63,8 +67,8 @@ export function RateBar({
           key={tick}
           x1={place(tick, scale.max)}
           x2={place(tick, scale.max)}
-          y1="0"
-          y2="100%"
+          y1={-cellPadding}
+          y2={height + cellPadding}
           stroke="var(--color-line)"
         />
       ))}
@@ -124,7 +128,7 @@ export function RateAxis({ scale, label }: { scale: NiceScale; label: string }) 
   return (
     <>
       <span className="sr-only">{label}</span>
-      <svg aria-hidden="true" className="block w-full overflow-visible" height="20">
+      <svg aria-hidden="true" className="mb-2 block w-full overflow-visible" height="20">
         {shown.map((tick, index) => (
           <text
             key={tick}

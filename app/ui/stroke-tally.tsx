@@ -28,7 +28,7 @@ export function StrokeTally({ done, label, size = "inline", showCount = size ===
   const stroke = (isDone: boolean) =>
     isDone
       ? { className: size === "large" ? "text-lagoon" : "text-ink", strokeWidth: 11 }
-      : { className: "text-line", strokeWidth: size === "large" ? 10 : 7 };
+      : { className: "text-line", strokeWidth: 6 };
 
   const strokes = done.map((isDone, index) => {
     if (index === uprights) return { key: "across", isDone, ...across };

@@ -21,8 +21,8 @@ function FieldLines() {
       className="pointer-events-none absolute inset-y-0 right-0 hidden h-full w-[390px] text-bar-line md:block"
     >
       <g fill="none" stroke="currentColor" strokeWidth="2">
-        <circle cx="210" cy="37" r="92" />
-        <path d="M0 37H390M210 -60V140" />
+        <circle cx="210" cy="53" r="92" />
+        <path d="M0 53H390M210 -60V140" />
       </g>
     </svg>
   );

@@ -25,11 +25,15 @@ type Datum = { x: number; y: number };
 type LayerProps = ScatterPlotLayerProps<Datum>;
 
 const axisRoom = 34;
+/** A narrow axis carries its unit on a line of its own. */
+const unitRoom = 22;
+/** Room above the lines for the words of the reference. */
+const headRoom = 26;
 
 function IntervalLine({ row, place, right, narrow }: LineProps) {
   const { rate, series, unstable = false } = row.point;
   const { colour, textColour, shape, dash } = seriesLook(series);
-  const outline = { stroke: "var(--color-chalk)", strokeWidth: 4, paintOrder: "stroke" } as const;
+  const outline = { stroke: "var(--color-chalk)", strokeWidth: 6, paintOrder: "stroke" } as const;
   if (!rate) {
     return (
       <text
@@ -86,7 +90,7 @@ function Reference({ x, width, height, label }: { x: number; width: number; heig
       <line
         x1={x}
         x2={x}
-        y1={0}
+        y1={-headRoom + 6}
         y2={height}
         stroke="var(--color-ink)"
         strokeWidth={2}
@@ -94,7 +98,7 @@ function Reference({ x, width, height, label }: { x: number; width: number; heig
       />
       <text
         x={fits ? x + 6 : x - 6}
-        y={6}
+        y={-10}
         textAnchor={fits ? "start" : "end"}
         fontSize={14}
         fill="var(--color-ink)"
@@ -108,6 +112,7 @@ function Reference({ x, width, height, label }: { x: number; width: number; heig
 type DrawingProps = LayerProps &
   Pick<ReturnType<typeof layoutRows>, "headings" | "rows"> & {
     reference?: { value: number; label: string };
+    unit: string;
     narrow: boolean;
     margin: { left: number; right: number };
     end: number;
@@ -132,6 +137,11 @@ function Drawing({
     <g>
       {reference ? (
         <Reference x={place(reference.value)} width={right} height={innerHeight} label={reference.label} />
+      ) : null}
+      {narrow ? (
+        <text x={0} y={innerHeight + axisRoom + 12} fontSize={15} fill="var(--color-soft)">
+          {unit}
+        </text>
       ) : null}
       {headings.map(({ key, y, label }) => (
         <text
@@ -174,14 +184,14 @@ export function IntervalChart({ groups, unit, title, caption, reference, decimal
   return (
     <ChartFrame
       caption={caption}
-      wideHeight={layouts.wide.height + axisRoom}
-      narrowHeight={layouts.narrow.height + axisRoom}
+      wideHeight={layouts.wide.height + axisRoom + headRoom}
+      narrowHeight={layouts.narrow.height + axisRoom + headRoom + unitRoom}
     >
       {({ width, height, narrow }) => {
         const { headings, rows } = narrow ? layouts.narrow : layouts.wide;
         const margin = narrow
-          ? { top: 0, right: 36, bottom: axisRoom, left: 8 }
-          : { top: 0, right: 150, bottom: axisRoom, left: labelRoom };
+          ? { top: headRoom, right: 36, bottom: axisRoom + unitRoom, left: 8 }
+          : { top: headRoom, right: 150, bottom: axisRoom, left: labelRoom };
         return (
           <ScatterPlot
             width={width}
@@ -214,7 +224,7 @@ export function IntervalChart({ groups, unit, title, caption, reference, decimal
               (layer) => (
                 <Drawing
                   {...layer}
-                  {...{ headings, rows, reference, narrow }}
+                  {...{ headings, rows, reference, unit, narrow }}
                   margin={margin}
                   end={scale.max}
                 />

@@ -19,8 +19,8 @@ export type IntervalGroup = { label: string; points: IntervalPoint[] };
 export type IntervalRow = { key: string; y: number; point: IntervalPoint; text: string };
 export type IntervalHeading = { key: string; y: number; label: string };
 
-const wide = { line: 22, gap: 28, top: 30 };
-const narrow = { heading: 26, line: 50, gap: 10, top: 34 };
+const wide = { line: 22, gap: 28, top: 14 };
+const narrow = { heading: 26, line: 50, gap: 10, top: 8 };
 
 /** The label of a point, with its figures and their interval unless a note stands for them. */
 export function describePoint({ label, rate, note, unstable }: IntervalPoint, decimals: number): string {

@@ -5,6 +5,7 @@ import type { RateEstimate } from "../rate-bar";
 import { formatTick, niceScale } from "../scale";
 import { type SeriesNumber, seriesLook } from "../series";
 import { ChartFrame, chartTheme, textWidth } from "./chart-frame";
+import { spreadLabels, wrapWords } from "./end-labels";
 
 export type BandPoint = (RateEstimate & { unstable?: boolean }) | null;
 export type BandSeries = {
@@ -40,18 +41,6 @@ export function splitAtGaps<Point>(points: (Point | null)[]): Point[][] {
     }
   }
   return runs;
-}
-
-/** Moves labels apart until each has `room` px, keeping their order and staying as near as it goes. */
-export function spreadLabels(positions: number[], room: number): number[] {
-  const order = positions.map((y, index) => ({ y, index })).sort((a, b) => a.y - b.y);
-  const spread = [...positions];
-  let previous = Number.NEGATIVE_INFINITY;
-  for (const { y, index } of order) {
-    previous = Math.max(y, previous + room);
-    spread[index] = previous;
-  }
-  return spread;
 }
 
 const path = (points: { x: number; y: number }[]) =>
@@ -97,59 +86,93 @@ type DrawingProps = Pick<Props, "periods" | "series" | "unit" | "reference"> & {
   x: (period: string) => number;
   y: (value: number) => number;
   innerWidth: number;
+  innerHeight: number;
   left: number;
+  /** Width of the labels behind the last period. */
+  room: number;
 };
 
+const lineHeight = 18;
+
+/** The words at the end of every line, the reference's among them, spread so that none covers another. */
+function EndLabels({
+  labels,
+  x,
+  room,
+  limit,
+}: {
+  labels: EndLabel[];
+  x: number;
+  room: number;
+  limit: number;
+}) {
+  const wrapped = labels.map((label) => ({ ...label, lines: wrapWords(label.text, room) }));
+  const places = spreadLabels(
+    wrapped.map(({ y, lines }) => ({ y, height: lines.length * lineHeight + 2 })),
+    limit,
+  );
+  return wrapped.map(({ text, lines, colour }, index) => (
+    <text key={text} y={(places[index] ?? 0) + 5} fontSize={15} fontWeight={500} fill={colour}>
+      {lines.map((line, at) => (
+        <tspan key={line} x={x} dy={at === 0 ? 0 : lineHeight}>
+          {line}
+        </tspan>
+      ))}
+    </text>
+  ));
+}
+
+type EndLabel = { text: string; y: number; colour: string };
+
 /** What lies on nivo's grid and axes. */
-function Drawing({ periods, series, unit, reference, x, y, innerWidth, left }: DrawingProps) {
-  const placed = series.map(({ points }) =>
-    periods.map((period, index): Placed | null => {
+function Drawing({
+  periods,
+  series,
+  unit,
+  reference,
+  x,
+  y,
+  innerWidth,
+  innerHeight,
+  left,
+  room,
+}: DrawingProps) {
+  const drawn = series.map(({ series: number, label, points }) => {
+    const placed = periods.map((period, index): Placed | null => {
       const point = points[index];
       if (!point) return null;
       const { estimate, lower, upper, unstable = false } = point;
       return { x: x(period), estimate: y(estimate), lower: y(lower), upper: y(upper), unstable };
-    }),
-  );
-  const ends = placed.map((points) => points.findLast((point) => point !== null)?.estimate ?? 0);
-  const labelYs = spreadLabels(ends, 19);
+    });
+    return { number, label, look: seriesLook(number), placed };
+  });
+  const labels = drawn.flatMap(({ label, look, placed }): EndLabel[] => {
+    const end = placed.findLast((point) => point !== null);
+    return end ? [{ text: label, y: end.estimate, colour: look.textColour }] : [];
+  });
+  const level = reference ? y(reference.value) : 0;
+  if (reference) labels.push({ text: reference.label, y: level, colour: "var(--color-ink)" });
+
   return (
     <g>
       <text x={left} y={-20} fontSize={15} fill="var(--color-soft)">
         {unit}
       </text>
+      {drawn.map(({ number, look, placed }) => (
+        <Series key={number} look={look} runs={splitAtGaps(placed)} />
+      ))}
       {reference ? (
-        <g>
-          <line
-            x1={0}
-            x2={innerWidth}
-            y1={y(reference.value)}
-            y2={y(reference.value)}
-            stroke="var(--color-ink)"
-            strokeWidth={2}
-            strokeDasharray="2 4"
-          />
-          <text x={4} y={y(reference.value) - 6} fontSize={14} fill="var(--color-ink)">
-            {reference.label}
-          </text>
-        </g>
+        <line
+          x1={0}
+          x2={innerWidth}
+          y1={level}
+          y2={level}
+          stroke="var(--color-ink)"
+          strokeWidth={2}
+          strokeDasharray="2 4"
+        />
       ) : null}
-      {series.map(({ series: number, label }, index) => {
-        const look = seriesLook(number);
-        return (
-          <g key={number}>
-            <Series look={look} runs={splitAtGaps(placed[index] ?? [])} />
-            <text
-              x={innerWidth + 12}
-              y={(labelYs[index] ?? 0) + 5}
-              fontSize={15}
-              fontWeight={500}
-              fill={look.textColour}
-            >
-              {label}
-            </text>
-          </g>
-        );
-      })}
+      <EndLabels labels={labels} x={innerWidth + 12} room={room} limit={innerHeight + 24} />
     </g>
   );
 }
@@ -165,7 +188,8 @@ export function LineWithBand({ periods, series, unit, title, caption, reference 
     id: String(number),
     data: periods.map((x, index) => ({ x, y: points[index]?.estimate ?? null })),
   }));
-  const labelRoom = Math.min(170, Math.max(24, ...series.map(({ label }) => textWidth(label) + 16)));
+  const ends = [...series, ...(reference ? [reference] : [])];
+  const labelRoom = Math.min(170, Math.max(24, ...ends.map(({ label }) => textWidth(label) + 16)));
 
   return (
     <ChartFrame caption={caption} wideHeight={340} narrowHeight={320}>
@@ -201,13 +225,14 @@ export function LineWithBand({ periods, series, unit, title, caption, reference 
             layers={[
               "grid",
               "axes",
-              ({ xScale, yScale, innerWidth }) => (
+              ({ xScale, yScale, innerWidth, innerHeight }) => (
                 <Drawing
-                  {...{ periods, series, unit, reference, innerWidth }}
+                  {...{ periods, series, unit, reference, innerWidth, innerHeight }}
                   // A point scale and a linear one, as set above; nivo's own type allows for others as well.
                   x={xScale as (period: string) => number}
                   y={yScale as (value: number) => number}
                   left={-margin.left}
+                  room={margin.right - 14}
                 />
               ),
             ]}

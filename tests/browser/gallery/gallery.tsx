@@ -319,7 +319,7 @@ function Words() {
       >
         Training, artificial turf
       </PageHeading>
-      <div className="flex flex-wrap gap-3">
+      <div className="flex flex-wrap items-start gap-3">
         <Button look="primary">Save</Button>
         <Button>Not done today</Button>
         <Button look="quiet">Leave it</Button>
@@ -336,9 +336,9 @@ function Words() {
       <div className="my-6 flex flex-wrap items-center gap-8">
         <StrokeTally size="large" done={[true, true, true, false, false]} />
         <StrokeTally size="large" done={[true, true, true, true, true]} />
-        <span className="flex gap-4">
-          {[5, 4, 2, 0, 5, 3].map((count, index) => (
-            <StrokeTally key={`${count}-${index + 1}`} done={[0, 1, 2, 3, 4].map((n) => n < count)} />
+        <span className="flex flex-wrap gap-4">
+          {Object.entries({ a: 5, b: 4, c: 2, d: 0, e: 5, f: 3 }).map(([week, count]) => (
+            <StrokeTally key={week} done={[0, 1, 2, 3, 4].map((n) => n < count)} />
           ))}
         </span>
       </div>

@@ -9,7 +9,9 @@ const OLDEST = { major: 20, minor: 19 };
 
 const [major = 0, minor = 0] = process.versions.node.split(".").map(Number);
 if (major < OLDEST.major || (major === OLDEST.major && minor < OLDEST.minor)) {
-  console.error(`Haleside needs Node ${OLDEST.major}.${OLDEST.minor} or newer; this is Node ${process.versions.node}.`);
+  console.error(
+    `Haleside needs Node ${OLDEST.major}.${OLDEST.minor} or newer; this is Node ${process.versions.node}.`,
+  );
   console.error("Install Node 20 (Debian's, or with a version manager) and run it again.");
   process.exit(1);
 }

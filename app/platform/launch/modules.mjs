@@ -16,10 +16,7 @@ const INSTALLED = join(ROOT, "node_modules/.package-lock.json");
  * @returns {Promise<"up to date" | "installed">}
  */
 export async function ensureModules() {
-  const hash = hashOf(
-    ["package-lock.json", "package.json", ".npmrc"],
-    [process.versions.modules, process.arch],
-  );
+  const hash = hashOf(["package-lock.json", ".npmrc"], [process.versions.modules, process.arch]);
   const stamp = readStamp("modules");
   if (existsSync(INSTALLED) && (stamp === hash || (stamp === undefined && isWhatLockSays()))) {
     writeStamp("modules", hash);

@@ -52,8 +52,9 @@ export function listenForStop(onSignal) {
     });
   }
   if (!process.env.npm_execpath) return;
-  const parent = process.ppid;
+  // The scripts in package.json say `exec`, so the parent is npm itself and not a shell that keeps signals back.
+  const npm = process.ppid;
   setInterval(() => {
-    if (process.ppid !== parent && !stopping) void stopAll(onSignal("SIGHUP"));
+    if (!stopping && process.ppid !== npm) void stopAll(onSignal("SIGHUP"));
   }, 500).unref();
 }

@@ -1,5 +1,5 @@
 import { spawn } from "node:child_process";
-import { appendFileSync } from "node:fs";
+import { appendFileSync, existsSync } from "node:fs";
 
 /**
  * Running other programs, so that a stop reaches every one of them.
@@ -12,6 +12,8 @@ import { appendFileSync } from "node:fs";
 const KEPT_OUTPUT = 400_000;
 /** How long a child may take to end after SIGTERM before it is killed, in milliseconds. */
 const PATIENCE = 10_000;
+
+const diesWithUs = existsSync("/usr/bin/setpriv");
 
 /** @type {Set<import("node:child_process").ChildProcess>} */
 const children = new Set();
@@ -57,7 +59,8 @@ export function run(command, args, options = {}) {
  */
 export function launch(command, args, options = {}) {
   const show = options.show ? "inherit" : "pipe";
-  const child = spawn(command, args, {
+  const [program, words] = diesWithUs && !options.untouched ? mortal(command, args) : [command, args];
+  const child = spawn(program, words, {
     cwd: options.cwd,
     env: options.env ?? process.env,
     stdio: [options.input === undefined ? "ignore" : "pipe", show, show],
@@ -82,6 +85,17 @@ export function launch(command, args, options = {}) {
     child.on("error", () => children.delete(child));
   }
   return { child, output };
+}
+
+/**
+ * The words that start a program so that it gets SIGTERM when this process is killed: nobody else would stop it.
+ *
+ * @param {string} command
+ * @param {readonly string[]} args
+ * @returns {[string, string[]]}
+ */
+function mortal(command, args) {
+  return ["/usr/bin/setpriv", ["--pdeathsig", "TERM", "--", command, ...args]];
 }
 
 /**

@@ -62,14 +62,12 @@ describe("files of an export", () => {
   });
 
   it("are read back identical", () => {
-    const table = fc
-      .integer({ min: 1, max: 5 })
-      .chain((width) =>
-        fc.array(fc.array(fc.string({ unit: "grapheme" }), { minLength: width, maxLength: width }), {
-          minLength: 1,
-          maxLength: 8,
-        }),
-      );
+    const table = fc.integer({ min: 1, max: 5 }).chain((width) =>
+      fc.array(fc.array(fc.string({ unit: "grapheme" }), { minLength: width, maxLength: width }), {
+        minLength: 1,
+        maxLength: 8,
+      }),
+    );
     fc.assert(
       fc.property(
         table,

@@ -384,6 +384,26 @@ describe("what is refused as a whole, each with a sentence and a mend", () => {
   });
 });
 
+describe("a file larger than its head", () => {
+  it.each(["utf-8", "utf-16le", "utf-16be", "windows-1252"] as const)(
+    "is read whole in %s",
+    async (encoding) => {
+      const row = (index: number) => `${index},"Nuñez, ""Zeb"" é\r\nsecond line",Žižka\r\n`;
+      const content = `Marram Bay Athletic\r\nnumber,name,other\r\n${Array.from({ length: 5000 }, (_, index) => row(index)).join("")}`;
+      const { dialect, rows } = await readBytes(encode(content, encoding, encoding.startsWith("utf-16")), {
+        chunkSize: 4097,
+      });
+      expect(dialect).toMatchObject({ delimiter: ",", headerLine: 2, newline: "\r\n" });
+      const read = dataRows(rows);
+      expect(read).toHaveLength(5000);
+      expect(read[4999]).toMatchObject({
+        lineNumber: 10_001,
+        cells: ["4999", 'Nuñez, "Zeb" é\r\nsecond line', "Žižka"],
+      });
+    },
+  );
+});
+
 describe("memory", () => {
   it("stays flat over 150,000 rows", async () => {
     const block = "2026-09-07,17:30,Girls U15 Soccer,training,MB-1001,75,artificial turf\r\n".repeat(1000);

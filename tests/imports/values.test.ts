@@ -449,6 +449,6 @@ describe("anything typed at all", () => {
     ];
     const start = performance.now();
     for (const text of long) for (const parse of parsers) parse(text);
-    expect(performance.now() - start).toBeLessThan(2000);
+    expect(performance.now() - start).toBeLessThan(5000);
   });
 });

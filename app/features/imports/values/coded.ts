@@ -38,7 +38,9 @@ function makeReader<Code extends string>(
   for (const code of codes) for (const word of [code, ...words[code]]) known.set(foldText(word), code);
   const choices = codes.map((code) => code.replaceAll("_", " ")).join(", ");
   return (text) => {
-    const code = known.get(foldText(tidyCell(text)));
+    const cell = tidyCell(text);
+    // Most cells are written as the code itself: folding is for the others.
+    const code = known.get(cell) ?? known.get(foldText(cell));
     if (code !== undefined) return accept(code);
     return refuse(
       `${name}.unknown`,

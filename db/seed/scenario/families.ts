@@ -78,8 +78,9 @@ function drawHome(random: Random, organisation: string, member: Member, contacts
 type Special = {
   athletes: Athlete[];
   guardianships: Guardianship[];
+  /** Entries that begin with the current season: the special families are among these. */
   roster: readonly RosterEntry[];
-  /** First day of the current season: the special families are among those on its rosters. */
+  /** First day of the current season. */
   seasonFrom: Day;
   clinician: string;
 };
@@ -87,9 +88,7 @@ type Special = {
 /** Marks the special families, in place, before anything else reads them. */
 export function markSpecialFamilies(seed: string, organisation: string, special: Special): void {
   const random = openStream(seed, `special families ${organisation}`);
-  const current = new Set(
-    special.roster.filter((each) => each.from >= special.seasonFrom).map((each) => each.athlete),
-  );
+  const current = new Set(special.roster.map((each) => each.athlete));
   const minors = random.shuffle(
     special.athletes.filter(
       (athlete) => current.has(athlete.key) && ageOnDay(athlete.dateOfBirth, special.seasonFrom) < 16,

@@ -15,12 +15,12 @@ import { type ContactBook, createContactBook } from "./names.ts";
 import { listOrganisations, listStaff, listTeams, listVenues, staffOf } from "./organisations.ts";
 import { listSeasonYears, MARRAM_BAY, OTTERWICK, seasonOf, TEAM_PLANS } from "./plan.ts";
 import { openStream, type Random } from "./random.ts";
-import { buildRosters, compareText, type Member } from "./rosters.ts";
+import { buildRosters, compareText, type Member, shareAthletes } from "./rosters.ts";
 import { buildFixtures } from "./schedule.ts";
 import { drawOutsideInjuries, playFixtures } from "./simulate.ts";
 import type { Day, Membership, RosterEntry, Scenario, Team } from "./types.ts";
 
-export const DEMO_SEED = "marram bay";
+export const DEMO_SEED = "foghorn";
 
 /** The demo's default day: today in the organisations' time zone. The only place that reads a clock. */
 export function todayInMarramBay(): Day {
@@ -62,6 +62,7 @@ export function buildScenario({
     contacts,
     memberships,
     teams,
+    sharesWith: club.members,
   });
   const both = [club, school] as const;
   return {
@@ -102,17 +103,12 @@ type OrganisationInput = {
   contacts: ContactBook;
   memberships: readonly Membership[];
   teams: readonly Team[];
+  /** Members of the other organisation, two of whom are athletes of this one too. */
+  sharesWith?: readonly Member[];
 };
 
-function buildOrganisation({
-  seed,
-  today,
-  organisation,
-  years,
-  contacts,
-  memberships,
-  teams,
-}: OrganisationInput) {
+function buildOrganisation(input: OrganisationInput) {
+  const { seed, today, organisation, years, contacts, memberships, teams, sharesWith } = input;
   const current = years.at(-1) ?? Number(today.slice(0, 4));
   const seasons = years.map((year) => seasonOf(organisation, year));
   const staff = (team: string) => staffOf(memberships, organisation, team);
@@ -122,14 +118,22 @@ function buildOrganisation({
   const members = wholeRosters.members.filter((member) =>
     member.visits === null ? rostered.has(member.athlete.key) : member.joinedOn < today,
   );
+  const seasonFrom = `${current}-08-01`;
+  const atStart = wholeRosters.roster.filter((entry) => entry.from === seasonFrom);
+  if (sharesWith) shareAthletes(wholeRosters.members, atStart, sharesWith, current);
   const athletes = members.map((member) => member.athlete);
-  const families = buildFamilies(seed, organisation, members, contacts);
+  // Drawn for everyone who will ever join, then cut: a newcomer must not change another family's names.
+  const families = buildFamilies(seed, organisation, wholeRosters.members, contacts);
+  const isKnown = new Set(athletes.map((athlete) => athlete.key));
+  const guardianships = families.guardianships.filter((link) => isKnown.has(link.athlete));
+  const told = new Set(guardianships.map((link) => link.guardian));
+  const guardians = families.guardians.filter((guardian) => told.has(guardian.key));
   const clinician = staff(TEAM_PLANS.find((plan) => plan.organisation === organisation)?.key ?? "").trainer;
   markSpecialFamilies(seed, organisation, {
     athletes,
-    guardianships: families.guardianships,
-    roster,
-    seasonFrom: `${current}-08-01`,
+    guardianships,
+    roster: atStart,
+    seasonFrom,
     clinician,
   });
 
@@ -176,8 +180,10 @@ function buildOrganisation({
   const weeks = listWeeks(fixtures);
   return {
     seasons,
+    members: members.filter((member) => member.joinedOn <= seasonFrom),
     athletes,
-    ...families,
+    guardians,
+    guardianships,
     roster,
     sessions: played.sessions,
     participations: played.participations,
@@ -187,11 +193,11 @@ function buildOrganisation({
       each.injury === null ? rostered.has(each.athlete) : known.has(each.injury),
     ),
     coachReports: [
-      ...drawCoachReports(inOrganisation, sessionsByKey, injuries, families.guardianships),
+      ...drawCoachReports(inOrganisation, sessionsByKey, injuries, guardianships),
       ...drawWaitingReports(inOrganisation, played.sessions, played.participations),
     ],
     encounters: drawEncounters(inOrganisation, played.sessions, played.participations),
-    notices: drawNotices(inOrganisation, athletes, families.guardians, families.guardianships, injuries),
+    notices: drawNotices(inOrganisation, athletes, guardians, guardianships, injuries),
     confirmedWeeks: drawConfirmedWeeks(
       inOrganisation,
       weeks,

@@ -179,16 +179,20 @@ export function drawEncounters(
   sessions: readonly Session[],
   participations: readonly Participation[],
 ): Encounter[] {
-  const teams = new Map(sessions.map((session) => [session.key, session]));
+  const teams = new Map(
+    sessions.map((session) => [
+      session.key,
+      { session, random: openStream(people.seed, `encounters ${session.key}`) },
+    ]),
+  );
   const encounters: Encounter[] = [];
-  for (const participation of participations) {
-    const session = teams.get(participation.session);
-    if (!session || participation.presence === "absent") continue;
-    const random = openStream(people.seed, `encounter ${participation.session} ${participation.athlete}`);
+  for (const { organisation, athlete, session: key, presence } of participations) {
+    const found = teams.get(key);
+    if (!found || presence === "absent") continue;
+    const { session, random } = found;
     if (!random.chance(0.012)) continue;
-    const { organisation, athlete } = participation;
     const kind =
-      participation.presence === "present_only"
+      presence === "present_only"
         ? "rehabilitation"
         : random.pick(["assessment", "taping", "taping"] as const);
     const area = random.weighted<BodyArea>([

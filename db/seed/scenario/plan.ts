@@ -99,42 +99,47 @@ const court = (weekday: number, start: string, minutes: number): Habits => ({
 });
 
 export const TEAM_PLANS: readonly TeamPlan[] = [
-  plan(MARRAM_BAY, "soccer", "girls", UNDER_12, 16, { ...grass(1, "17:15", 60), warmUpHabit: 0.86 }),
-  plan(MARRAM_BAY, "soccer", "girls", UNDER_14, 17, { ...turf(2, "17:30", 75), warmUpHabit: 0.9 }),
-  plan(MARRAM_BAY, "soccer", "girls", UNDER_16, 18, {
+  plan(MARRAM_BAY, "soccer", "girls", UNDER_12, 14, {
+    ...grass(1, "17:15", 60),
+    matchEveryWeeks: 3,
+    warmUpHabit: 0.86,
+  }),
+  plan(MARRAM_BAY, "soccer", "girls", UNDER_14, 16, { ...turf(2, "17:30", 75), warmUpHabit: 0.9 }),
+  plan(MARRAM_BAY, "soccer", "girls", UNDER_16, 17, {
     ...turf(3, "18:00", 90),
     warmUpHabit: 0.93,
-    strengthEveryWeeks: 2,
+    strengthEveryWeeks: 3,
   }),
-  plan(MARRAM_BAY, "soccer", "women", SENIOR, 20, {
+  plan(MARRAM_BAY, "soccer", "women", SENIOR, 19, {
     ...grass(1, "19:30", 90),
     warmUpHabit: 0.9,
-    strengthEveryWeeks: 2,
+    strengthEveryWeeks: 3,
     matchWeekday: 6,
   }),
-  plan(MARRAM_BAY, "soccer", "boys", UNDER_12, 15, {
+  plan(MARRAM_BAY, "soccer", "boys", UNDER_12, 14, {
     ...grass(0, "17:15", 60),
+    matchEveryWeeks: 3,
     warmUpHabit: 0.55,
     programmeStart: SECOND_WINTER,
     exposureHabit: "headcount",
   }),
-  plan(MARRAM_BAY, "soccer", "boys", UNDER_14, 17, {
+  plan(MARRAM_BAY, "soccer", "boys", UNDER_14, 16, {
     ...turf(1, "17:30", 75),
     warmUpHabit: 0.62,
     programmeStart: SECOND_SEASON,
   }),
-  plan(MARRAM_BAY, "soccer", "boys", UNDER_16, 18, {
+  plan(MARRAM_BAY, "soccer", "boys", UNDER_16, 17, {
     ...turf(4, "17:45", 90),
     warmUpHabit: 0.7,
     programmeStart: SECOND_SEASON,
     strengthEveryWeeks: 3,
   }),
-  plan(MARRAM_BAY, "soccer", "men", SENIOR, 20, {
+  plan(MARRAM_BAY, "soccer", "men", SENIOR, 19, {
     ...grass(3, "19:30", 90),
     warmUpHabit: 0.5,
     warmUpRecording: 0.8,
     programmeStart: SECOND_WINTER,
-    strengthEveryWeeks: 2,
+    strengthEveryWeeks: 3,
   }),
   plan(MARRAM_BAY, "basketball", "girls", group("under 16", 13, 15), 13, {
     ...hall(0, "17:30", 90),
@@ -149,7 +154,7 @@ export const TEAM_PLANS: readonly TeamPlan[] = [
     ...hall(2, "19:00", 90),
     warmUpHabit: 0.6,
     programmeStart: SECOND_SEASON,
-    strengthEveryWeeks: 3,
+    strengthEveryWeeks: 4,
   }),
   plan(MARRAM_BAY, "handball", "girls", group("under 16", 13, 15), 14, {
     ...court(1, "17:30", 90),
@@ -158,7 +163,7 @@ export const TEAM_PLANS: readonly TeamPlan[] = [
   plan(MARRAM_BAY, "handball", "women", SENIOR, 15, {
     ...court(3, "19:30", 90),
     warmUpHabit: 0.82,
-    strengthEveryWeeks: 2,
+    strengthEveryWeeks: 3,
   }),
   plan(MARRAM_BAY, "handball", "boys", group("under 18", 15, 17), 14, {
     ...court(4, "18:30", 90),
@@ -248,7 +253,7 @@ export function playingWeeks(plan: TeamPlan, year: number): { first: Day; last: 
   const outdoor = plan.sport === "soccer";
   const school = plan.organisation === OTTERWICK;
   const first = dayInSeason(year, school ? "09-07" : outdoor ? "08-14" : "09-04");
-  return { first: addDays(mondayOf(first), 7), last: dayInSeason(year, outdoor ? "05-24" : "05-10") };
+  return { first: addDays(mondayOf(first), 7), last: dayInSeason(year, outdoor ? "05-15" : "05-10") };
 }
 
 /** Christmas for everyone; autumn half-term and Easter for the young. */

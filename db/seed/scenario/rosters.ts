@@ -44,7 +44,9 @@ export function buildRosters(seed: string, organisation: string, years: readonly
   for (const year of years) {
     places = keepPlaces(random, plans, places, year);
     for (const plan of plans) {
-      const missing = plan.size - places.filter((place) => place.plan === plan).length;
+      // A team goes on with two fewer rather than look for somebody.
+      const wanted = years[0] === year ? plan.size : plan.size - 2;
+      const missing = wanted - places.filter((place) => place.plan === plan).length;
       for (let added = 0; added < missing; added += 1) {
         const member = drawMember(random, organisation, plan, year, years[0] === year, members);
         members.push(member);
@@ -68,10 +70,10 @@ function keepPlaces(
   const hasRoom = (plan: TeamPlan, spare: number) =>
     kept.filter((place) => place.plan === plan).length < plan.size + spare;
   for (const { member, plan } of before) {
-    if (random.chance(plan.ageGroup.label === "senior" ? 0.05 : 0.03)) continue;
-    const stays = isEligible(plan, member, year) && plan;
+    if (random.chance(plan.ageGroup.label === "senior" ? 0.06 : 0.01)) continue;
+    const stays = isEligible(plan, member, year) && hasRoom(plan, 3) && plan;
     const sameSport = plans.find(
-      (next) => next.sport === plan.sport && isEligible(next, member, year) && hasRoom(next, 2),
+      (next) => next.sport === plan.sport && isEligible(next, member, year) && hasRoom(next, 1),
     );
     const otherSport = plans.find((next) => isEligible(next, member, year) && hasRoom(next, -1));
     const next = stays || sameSport || otherSport;
@@ -92,12 +94,17 @@ function listEntries(random: Random, plans: readonly TeamPlan[], places: readonl
     to,
   });
   const entries: RosterEntry[] = [];
-  let secondTeams = Math.round(places.length * 0.06);
+  const sizes = new Map(plans.map((plan) => [plan, places.filter((place) => place.plan === plan).length]));
+  let secondTeams = Math.round(places.length * 0.05);
   let transfers = Math.round(places.length * 0.015) + 1;
   for (const { member, plan } of random.shuffle(places)) {
-    const from = member.joinedOn > season.from ? member.joinedOn : season.from;
-    const others = plans.filter((other) => other.sport !== plan.sport && isEligible(other, member, year));
+    const from = [member.joinedOn, season.from].sort(compareText)[1] ?? season.from;
+    const others = plans.filter(
+      (each) =>
+        each.sport !== plan.sport && isEligible(each, member, year) && (sizes.get(each) ?? 0) <= each.size,
+    );
     const other = others.length > 0 && from === season.from ? random.pick(others) : null;
+    if (other && transfers + secondTeams > 0) sizes.set(other, (sizes.get(other) ?? 0) + 1);
     if (other && transfers > 0) {
       transfers -= 1;
       entries.push(entry(member, plan, from, addDays(newYear, -1)), entry(member, other, newYear, season.to));
@@ -283,4 +290,30 @@ function drawVisitors(
     );
   }
   return visitors;
+}
+
+/**
+ * Makes two of the school's athletes the same young people as two of the club's: same name and date of birth in
+ * both organisations, with records that know nothing of each other.
+ */
+export function shareAthletes(
+  school: readonly Member[],
+  roster: readonly RosterEntry[],
+  club: readonly Member[],
+  year: number,
+): void {
+  const taken = new Set<string>();
+  for (const key of ["otterwick-soccer-girls-u16", "otterwick-basketball-boys-u16"]) {
+    const plan = TEAM_PLANS.find((each) => each.key === key);
+    const entry = roster.find((each) => each.team === key);
+    const pupil = school.find((each) => each.athlete.key === entry?.athlete);
+    const member = club.find(
+      (each) => plan && each.visits === null && !taken.has(each.athlete.key) && isEligible(plan, each, year),
+    );
+    if (!pupil || !member) continue;
+    taken.add(member.athlete.key);
+    const { givenName, familyName, dateOfBirth, sex } = member.athlete;
+    Object.assign(pupil.athlete, { givenName, familyName, dateOfBirth, sex });
+    pupil.household = member.household;
+  }
 }

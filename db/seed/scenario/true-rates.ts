@@ -34,22 +34,22 @@ type BandRates = Record<AgeBand, readonly [training: number, match: number]>;
 /** Every sudden injury but the anterior cruciate ligament. */
 export const SUDDEN_RATES: Record<RatedSex, BandRates> = {
   female: {
-    "under 10": [1.5, 5],
-    "10-12": [2.6, 9],
-    "13-14": [4.2, 14],
-    "15-16": [6.0, 19],
-    "17-18": [6.4, 21],
-    "19-25": [6.2, 21],
-    "over 25": [5.8, 19],
+    "under 10": [1.3, 4.5],
+    "10-12": [2.3, 8],
+    "13-14": [3.7, 12.5],
+    "15-16": [5.3, 16.5],
+    "17-18": [5.6, 18.5],
+    "19-25": [5.5, 18.5],
+    "over 25": [5.1, 16.5],
   },
   male: {
-    "under 10": [1.5, 5],
-    "10-12": [2.4, 8],
-    "13-14": [4.0, 14],
-    "15-16": [5.6, 19],
-    "17-18": [6.4, 22],
-    "19-25": [6.4, 23],
-    "over 25": [6.0, 20],
+    "under 10": [1.3, 4.5],
+    "10-12": [2.1, 7],
+    "13-14": [3.5, 12.5],
+    "15-16": [4.9, 16.5],
+    "17-18": [5.6, 19.5],
+    "19-25": [5.6, 20],
+    "over 25": [5.3, 17.5],
   },
 };
 
@@ -172,10 +172,19 @@ export function preventableShareOf(pattern: InjuryPattern): number {
 
 /** The same for all sudden injuries other than the anterior cruciate ligament. */
 export function preventableShare(sex: Sex, group: SportGroup): number {
-  const weights = SUDDEN_PATTERNS.map((each) => [each, patternWeight(each, sex, group)] as const);
-  const total = weights.reduce((sum, [, weight]) => sum + weight, 0);
-  return weights.reduce((sum, [pattern, weight]) => sum + preventableShareOf(pattern) * weight, 0) / total;
+  return PREVENTABLE_SHARES[group][sex];
 }
+
+function sharesOfGroup(group: SportGroup): Record<Sex, number> {
+  const of = (sex: Sex) => {
+    const weights = SUDDEN_PATTERNS.map((each) => [each, patternWeight(each, sex, group)] as const);
+    const total = weights.reduce((sum, [, weight]) => sum + weight, 0);
+    return weights.reduce((sum, [pattern, weight]) => sum + preventableShareOf(pattern) * weight, 0) / total;
+  };
+  return { female: of("female"), male: of("male"), not_stated: of("not_stated") };
+}
+
+const PREVENTABLE_SHARES = { soccer: sharesOfGroup("soccer"), court: sharesOfGroup("court") } as const;
 
 export type TrueRate = {
   /** All sudden injuries, per 1000 athlete-exposures. */

@@ -1,0 +1,51 @@
+import { PassThrough } from "node:stream";
+import { createReadableStreamFromReadable } from "@react-router/node";
+import { isbot } from "isbot";
+import { type RenderToPipeableStreamOptions, renderToPipeableStream } from "react-dom/server";
+import type { EntryContext, RouterContextProvider } from "react-router";
+import { ServerRouter } from "react-router";
+import { logFault } from "~/middleware/error-response.server";
+import { requestContext } from "~/middleware/request-context";
+
+export const streamTimeout = 8_000;
+
+/** Renders a page. Signed-in pages are never kept by a shared cache, nor by the browser's after sign-out. */
+export default function handleRequest(
+  request: Request,
+  status: number,
+  headers: Headers,
+  entry: EntryContext,
+  context: RouterContextProvider,
+) {
+  if (request.method === "HEAD") return new Response(null, { status, headers });
+  const nonce = process.env.NODE_ENV === "production" ? context.get(requestContext).nonce : undefined;
+  return new Promise((resolve, reject) => {
+    let shellRendered = false;
+    const ready: keyof RenderToPipeableStreamOptions =
+      isbot(request.headers.get("user-agent") ?? "") || entry.isSpaMode ? "onAllReady" : "onShellReady";
+    const { pipe, abort } = renderToPipeableStream(
+      <ServerRouter context={entry} url={request.url} nonce={nonce} />,
+      {
+        nonce,
+        [ready]() {
+          shellRendered = true;
+          const body = new PassThrough();
+          headers.set("Content-Type", "text/html; charset=utf-8");
+          headers.set("Cache-Control", "no-store");
+          resolve(new Response(createReadableStreamFromReadable(body), { headers, status }));
+          pipe(body);
+        },
+        onShellError: reject,
+        onError(error: unknown) {
+          status = 500;
+          if (shellRendered) logFault(error);
+        },
+      },
+    );
+    setTimeout(abort, streamTimeout + 1000).unref();
+  });
+}
+
+export function handleError(error: unknown, { request }: { request: Request }) {
+  if (!request.signal.aborted) logFault(error);
+}

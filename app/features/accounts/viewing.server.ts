@@ -1,0 +1,56 @@
+import { and, asc, desc, eq, inArray, isNull } from "drizzle-orm";
+import { notFound } from "~/platform/errors";
+import type { Scope, Tx } from "~db/client.server";
+import { seasons, teams } from "~db/schema";
+
+export type Season = { id: string; name: string; startsOn: string; endsOn: string };
+export type TeamChoice = { id: string; name: string; sport: string; sex: string; underAge: number | null };
+
+/** What the sentence of scope in the bar says: the season, and one team or all that the person covers. */
+export type Viewing = {
+  seasons: Season[];
+  /** Null only while the organisation has no season at all. */
+  season: Season | null;
+  teams: TeamChoice[];
+  team: TeamChoice | null;
+};
+
+/** The teams a member covers, archived ones left out. */
+export async function findOwnTeams(tx: Tx, scope: Scope): Promise<TeamChoice[]> {
+  if (scope.teams !== "all" && scope.teams.length === 0) return [];
+  return tx
+    .select({ id: teams.id, name: teams.name, sport: teams.sport, sex: teams.sex, underAge: teams.underAge })
+    .from(teams)
+    .where(
+      and(
+        eq(teams.organisationId, scope.organisationId),
+        isNull(teams.archivedAt),
+        scope.teams === "all" ? undefined : inArray(teams.id, [...scope.teams]),
+      ),
+    )
+    .orderBy(asc(teams.name));
+}
+
+/**
+ * Season and team from the address (`?season=ID&team=ID`); the current season and all own teams when it names none.
+ * @throws DomainError not_found for a season or team that is not the person's
+ */
+export async function resolveViewing(tx: Tx, url: URL): Promise<Viewing> {
+  const { scope } = tx;
+  const seasonRows = await tx
+    .select({ id: seasons.id, name: seasons.name, startsOn: seasons.startsOn, endsOn: seasons.endsOn })
+    .from(seasons)
+    .where(eq(seasons.organisationId, scope.organisationId))
+    .orderBy(desc(seasons.startsOn));
+  const ownTeams = await findOwnTeams(tx, scope);
+  const seasonId = url.searchParams.get("season");
+  const teamId = url.searchParams.get("team");
+  const current = seasonRows.find(({ startsOn }) => startsOn <= scope.today) ?? seasonRows.at(-1) ?? null;
+  const season = seasonId ? seasonRows.find(({ id }) => id === seasonId) : current;
+  const team = teamId ? ownTeams.find(({ id }) => id === teamId) : null;
+  if (season === undefined || team === undefined) throw notFound("That season or team");
+  return { seasons: seasonRows, season, teams: ownTeams, team };
+}
+
+/** Team ids of a viewing, for queries: the one chosen, or all that the person covers. */
+export const viewedTeamIds = ({ team, teams: own }: Viewing) => (team ? [team.id] : own.map(({ id }) => id));

@@ -1,0 +1,38 @@
+import { env } from "~/platform/env.server";
+import { schedule, stopQueue, work } from "~/platform/jobs/queue.server";
+import { type FakeResend, startFakeResend } from "~/platform/mail/fake-resend.server";
+import { composeInvitationDelivery } from "./accounts/invitations.server";
+import { type Composer, deliver, sweepOutbox, type Template } from "./outbox/outbox.server";
+
+const composers: Record<Template, Composer> = {
+  invitation: async (tx, scope, { invitationId }) =>
+    (invitationId ? await composeInvitationDelivery(tx, scope, invitationId) : undefined) ?? {
+      stopped: "invitation no longer open",
+    },
+  notice: async () => ({ stopped: "not here yet" }),
+  "fresh-link": async () => ({ stopped: "not here yet" }),
+};
+
+let fake: FakeResend | undefined;
+
+/** Starts what runs beside the requests: the local mail service where configured, and the workers of the queues. */
+export async function startWorkers() {
+  const { MAIL_FAKE_PORT, RESEND_API_KEY, RESEND_WEBHOOK_SECRET, APP_ORIGIN } = env();
+  if (MAIL_FAKE_PORT)
+    fake = await startFakeResend({
+      port: MAIL_FAKE_PORT,
+      apiKey: RESEND_API_KEY,
+      webhookUrl: `${APP_ORIGIN}/webhooks/mail`,
+      webhookSecret: RESEND_WEBHOOK_SECRET,
+    });
+  await work("deliver", async ({ organisationId, deliveryId }) => {
+    if (organisationId && deliveryId) await deliver(organisationId, deliveryId, composers);
+  });
+  await work("sweep", sweepOutbox);
+  await schedule("sweep", "* * * * *");
+}
+
+export async function stopWorkers() {
+  await stopQueue();
+  await fake?.close();
+}

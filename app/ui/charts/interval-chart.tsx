@@ -126,6 +126,7 @@ function Drawing({
   headings,
   rows,
   reference,
+  unit,
   narrow,
   margin,
   end,

@@ -44,8 +44,8 @@ export function buildRosters(seed: string, organisation: string, years: readonly
   for (const year of years) {
     places = keepPlaces(random, plans, places, year);
     for (const plan of plans) {
-      // A team goes on with two fewer rather than look for somebody.
-      const wanted = years[0] === year ? plan.size : plan.size - 2;
+      // A team goes on with one fewer rather than look for somebody.
+      const wanted = years[0] === year ? plan.size : plan.size - 1;
       const missing = wanted - places.filter((place) => place.plan === plan).length;
       for (let added = 0; added < missing; added += 1) {
         const member = drawMember(random, organisation, plan, year, years[0] === year, members);
@@ -145,7 +145,7 @@ function drawMember(
       Math.floor((label === "senior" ? random.next() ** 1.7 : random.next()) * (span + 1)),
     );
   const birthday = dayOf(dayNumber(`${year - age - 1}-09-02`) + random.int(0, 364));
-  const late = !isFirstSeason && random.chance(0.2);
+  const late = !isFirstSeason && random.chance(0.1);
   const plays = plan.sexCategory === "mixed" ? random.pick(["female", "male"] as const) : sideOf(plan);
   const sibling = label !== "senior" && random.chance(0.08) ? findSibling(random, before, birthday) : null;
   return makeMember(random, {

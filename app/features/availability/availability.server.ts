@@ -1,0 +1,171 @@
+import { randomUUID } from "node:crypto";
+import { may } from "~/features/accounts/permissions";
+import { audit } from "~/platform/audit.server";
+import { DomainError, forbidden, notFound } from "~/platform/errors";
+import type { Scope, Tx } from "~db/client.server";
+import type { availabilityCauses } from "~db/schema/codes";
+import { type Contribution, type DayState, fullState, stateFromContributions } from "./availability";
+import {
+  findContributionsOn,
+  findInjuryContributions,
+  findLimitedAthletes,
+  findReason,
+  findReasonOf,
+  findTeamsOn,
+  insertChange,
+  insertReason,
+  takeNextSeq,
+} from "./availability.queries.server";
+import type { AvailabilityChange } from "./availability.schema";
+
+export type AvailabilityCause = (typeof availabilityCauses)[number];
+
+/** The state of a day and the instant of the newest entry behind it; null when nothing was ever entered. */
+export type AthleteDayState = DayState & { asOf: Date | null };
+
+export type NotFullyAvailable = AthleteDayState & {
+  athleteId: string;
+  givenName: string;
+  familyName: string;
+  teams: { id: string; name: string }[];
+};
+
+/** Restrictions and the expected day are for those who act on them. */
+const seesDetail = (scope: Scope) =>
+  scope.actors.includes("job") || may(scope.roles, "availability.restrictions");
+
+/**
+ * The state of each athlete on a day, without any reason. Every id asked for is in the answer: "full" when nothing
+ * limits them. Ask only for athletes that are visible to the scope.
+ */
+export async function stateOfDay(
+  tx: Tx,
+  athleteIds: readonly string[],
+  day: string,
+): Promise<Map<string, AthleteDayState>> {
+  const rows = athleteIds.length > 0 ? await findContributionsOn(tx, athleteIds, day) : [];
+  const detailed = seesDetail(tx.scope);
+  return new Map(
+    athleteIds.map((id) => {
+      const parts = rows.filter(({ athleteId }) => athleteId === id);
+      const state = stateFromContributions(parts, day);
+      const asOf = parts.reduce<Date | null>((at, { setAt }) => (!at || setAt > at ? setAt : at), null);
+      return [id, { ...(detailed ? state : { ...fullState(), state: state.state }), asOf }];
+    }),
+  );
+}
+
+/** Who of the visible athletes is not fully available on a day, with the teams they belong to that day. */
+export async function listNotFullyAvailable(
+  tx: Tx,
+  _scope: Scope,
+  day: string,
+): Promise<NotFullyAvailable[]> {
+  const limited = await findLimitedAthletes(tx, day);
+  const ids = limited.map(({ athleteId }) => athleteId);
+  const states = await stateOfDay(tx, ids, day);
+  const teamRows = await findTeamsOn(tx, ids, day);
+  return limited.map((athlete) => ({
+    ...athlete,
+    ...(states.get(athlete.athleteId) ?? { ...fullState(), asOf: null }),
+    teams: teamRows
+      .filter(({ athleteId }) => athleteId === athlete.athleteId)
+      .map(({ id, name }) => ({ id, name })),
+  }));
+}
+
+/**
+ * Opens a reason with its first dated change. A coach may open only a coach's report's "unavailable".
+ * @returns the reason's id
+ */
+export async function openReason(
+  tx: Tx,
+  input: {
+    athleteId: string;
+    cause: AvailabilityCause;
+    injuryId?: string;
+    reportId?: string;
+    change: AvailabilityChange;
+  },
+): Promise<string> {
+  const id = randomUUID();
+  await insertReason(tx, {
+    id,
+    athleteId: input.athleteId,
+    cause: input.cause,
+    injuryId: input.injuryId ?? null,
+    reportId: input.reportId ?? null,
+  });
+  await insertChange(tx, { reasonId: id, athleteId: input.athleteId, seq: 1, ...input.change });
+  await audit(tx, {
+    action: "availability.change",
+    subjectId: id,
+    athleteId: input.athleteId,
+    fields: { state: input.change.state, from: input.change.fromDay, cause: input.cause },
+  });
+  return id;
+}
+
+/**
+ * Adds a dated change to a reason. It sets aside what was entered before for that day or later; nothing is deleted.
+ * Only a clinical role lifts or changes availability.
+ * @throws DomainError forbidden, not_found
+ */
+export async function changeAvailability(
+  tx: Tx,
+  reasonId: string,
+  change: AvailabilityChange,
+): Promise<void> {
+  if (!tx.scope.actors.includes("job") && !may(tx.scope.roles, "availability.write")) throw forbidden();
+  const reason = await findReason(tx, reasonId);
+  if (!reason) throw notFound("That reason");
+  const seq = await takeNextSeq(tx, reasonId);
+  await insertChange(tx, { reasonId, athleteId: reason.athleteId, seq, ...change });
+  await audit(tx, {
+    action: "availability.change",
+    subjectId: reasonId,
+    athleteId: reason.athleteId,
+    fields: { state: change.state, from: change.fromDay },
+  });
+}
+
+/** Contributions of each injury in order of their days, for time loss. Clinical scopes only (row-level security). */
+export async function contributionsOfInjuries(
+  tx: Tx,
+  injuryIds: readonly string[],
+): Promise<Map<string, (Contribution & { setAt: Date })[]>> {
+  const rows = await findInjuryContributions(tx, injuryIds);
+  return new Map(
+    injuryIds.map((id) => [
+      id,
+      rows.filter(({ injuryId }) => injuryId === id).map(({ injuryId: _injury, ...part }) => part),
+    ]),
+  );
+}
+
+/** The reason that an injury or a coach's report owns; undefined while it has none. */
+export const reasonOf = findReasonOf;
+
+export const unavailableFrom = (fromDay: string): AvailabilityChange => ({
+  state: "unavailable",
+  restrictions: [],
+  minutesLimit: null,
+  fromDay,
+  expectedOn: null,
+});
+
+export const fullFrom = (fromDay: string): AvailabilityChange => ({
+  state: "full",
+  restrictions: [],
+  minutesLimit: null,
+  fromDay,
+  expectedOn: null,
+});
+
+/** A change cannot be dated before the onset of the injury it belongs to. */
+export function requireFrom(change: AvailabilityChange, onsetDay: string) {
+  if (change.fromDay < onsetDay)
+    throw new DomainError("invalid", "", {
+      fields: { fromDay: ["This day lies before the onset. Choose the day of the onset or a later one."] },
+    });
+}

@@ -40,3 +40,8 @@ export function daysBetween(from: string, to: string): number {
 export function weekStart(day: string): string {
   return DateTime.fromISO(day, { zone: "utc" }).startOf("week").toISODate() ?? "";
 }
+
+/** The same date some months on; the last of the month where that date does not exist (31 January: 28 February). */
+export function addMonths(day: string, count: number): string {
+  return DateTime.fromISO(day, { zone: "utc" }).plus({ months: count }).toISODate() ?? "";
+}

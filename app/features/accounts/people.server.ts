@@ -189,3 +189,6 @@ async function refuseLast(
       );
   }
 }
+
+/** Names of members by person id, ended ones included: an actor keeps their name. */
+export { findDisplayNames } from "./people.queries.server";

@@ -34,7 +34,6 @@ export default [
     route("roster/new", "routes/roster/new.tsx"),
     route("roster/:athlete", "routes/roster/athlete.tsx"),
     route("roster/:athlete/edit", "routes/roster/edit.tsx"),
-    route("roster/:athlete/teams", "routes/roster/teams.ts"),
     route("roster/:athlete/guardians", "routes/roster/guardians.tsx"),
     route("roster/:athlete/availability", "routes/roster/availability.tsx"),
 

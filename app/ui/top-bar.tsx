@@ -18,7 +18,7 @@ function FieldLines() {
       aria-hidden="true"
       viewBox="0 0 390 64"
       preserveAspectRatio="xMaxYMid slice"
-      className="pointer-events-none absolute inset-y-0 right-0 hidden h-full w-[390px] text-bar-line md:block"
+      className="pointer-events-none absolute inset-y-0 right-0 hidden h-full w-[390px] overflow-hidden text-bar-line md:block"
     >
       <g fill="none" stroke="currentColor" strokeWidth="2">
         <circle cx="210" cy="53" r="92" />
@@ -31,8 +31,11 @@ function FieldLines() {
 /** The one bar at the top of every page. */
 export function TopBar({ name, home, scope, person }: Props) {
   return (
-    <header data-furniture className="on-dark relative overflow-hidden bg-bar text-on-bar">
-      <FieldLines />
+    <header data-furniture className="on-dark relative bg-bar text-on-bar">
+      {/* Clipped here and not by the bar, so that its menus can open below it. */}
+      <div aria-hidden="true" className="pointer-events-none absolute inset-0 overflow-hidden">
+        <FieldLines />
+      </div>
       <div className="relative mx-auto flex min-h-14 max-w-page flex-wrap items-center gap-x-5 gap-y-0 px-4 sm:px-6 md:min-h-16 xl:px-0">
         <Link
           to={home}

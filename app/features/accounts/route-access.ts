@@ -29,7 +29,6 @@ export const routeAccess: Record<string, RouteAccess> = {
   "/:organisation/roster/new": { get: "roster.write", post: "roster.write" },
   "/:organisation/roster/:athlete": { get: "roster.read", post: "roster.write" },
   "/:organisation/roster/:athlete/edit": { get: "roster.write", post: "roster.write" },
-  "/:organisation/roster/:athlete/teams": { post: "roster.write" },
   "/:organisation/roster/:athlete/guardians": { get: "roster.contacts", post: "roster.write" },
   "/:organisation/roster/:athlete/availability": { get: "availability.write", post: "availability.write" },
   "/:organisation/sessions": { get: "sessions.read" },

@@ -1,10 +1,88 @@
-import { notFound } from "~/platform/errors";
+import { redirect, useSearchParams } from "react-router";
+import { formObject } from "~/features/accounts/accounts.schema";
+import { GuardianFields } from "~/features/roster/components/guardian-fields";
+import { guardianSchema } from "~/features/roster/roster.schema";
+import { addGuardian, editGuardian, endGuardianship, readGuardians } from "~/features/roster/roster.server";
+import { relationWords } from "~/features/vocabulary";
+import { memberAction, memberLoader } from "~/middleware/handlers.server";
+import { Button, ConfirmButton, Disclosure, Form, Note, Page, PageHeading, Region, TextLink } from "~/ui";
+import type { Route } from "./+types/guardians";
 
-// PLACEHOLDER: replaced by the feature's own route.
-export async function loader() {
-  throw notFound();
-}
+export const meta = () => [{ title: "Guardians - Haleside" }];
 
-export default function Placeholder() {
-  return null;
+export const loader = memberLoader(async ({ scope, id }) => ({
+  ...(await readGuardians(scope, id("athlete"))),
+  base: `/${scope.slug}/roster`,
+}));
+
+export const action = memberAction(async ({ scope, form, id }) => {
+  const athleteId = id("athlete");
+  const guardianId = String(form.get("guardian") ?? "");
+  const intent = form.get("intent");
+  if (intent === "end") await endGuardianship(scope, athleteId, guardianId);
+  else if (intent === "edit")
+    await editGuardian(scope, athleteId, guardianId, guardianSchema.parse(formObject(form)));
+  else await addGuardian(scope, athleteId, guardianSchema.parse(formObject(form)));
+  return redirect(`/${scope.slug}/roster/${athleteId}/guardians?done=1`);
+});
+
+export default function Guardians({ loaderData, actionData }: Route.ComponentProps) {
+  const { athlete, guardians, base } = loaderData;
+  const [params] = useSearchParams();
+  const adding = actionData && !actionData.values.guardian ? actionData : undefined;
+  return (
+    <Page width="form">
+      <PageHeading above={<TextLink to={`${base}/${athlete.id}`}>{athlete.name}</TextLink>}>
+        Guardians
+      </PageHeading>
+      {params.get("done") && !actionData ? (
+        <Note kind="settled" role="status">
+          Saved.
+        </Note>
+      ) : null}
+      <p className="mb-4 max-w-prose text-soft">
+        Each guardian is told separately and never sees another&rsquo;s address, answers or limits.
+      </p>
+      {guardians.map((guardian) => {
+        const editing = actionData?.values.guardian === guardian.id ? actionData : undefined;
+        return (
+          <Disclosure
+            key={guardian.id}
+            open={editing !== undefined}
+            summary={`${guardian.name}, ${relationWords[guardian.relation] ?? guardian.relation}`}
+          >
+            {guardian.emailStoppedAt ? (
+              <Note kind="attention" title="E-mail to this address has stopped">
+                It was returned or refused. Phone instead, and enter a corrected address here.
+              </Note>
+            ) : null}
+            <Form {...(editing ?? {})} idPrefix={`guardian-${guardian.id}`}>
+              <input type="hidden" name="guardian" value={guardian.id} />
+              <GuardianFields values={guardian} />
+              <div className="flex flex-wrap gap-3">
+                <Button look="primary" name="intent" value="edit">
+                  Save
+                </Button>
+                <ConfirmButton
+                  label="No longer a guardian"
+                  question={`End the bond between ${guardian.name} and ${athlete.name}? Nothing more is sent. What was sent stays on record.`}
+                  confirmLabel="End it"
+                  name="intent"
+                  value="end"
+                />
+              </div>
+            </Form>
+          </Disclosure>
+        );
+      })}
+      <Region heading="Add a guardian">
+        <Form {...(adding ?? {})} idPrefix="new">
+          <GuardianFields values={{ phoneOrder: guardians.length + 1 }} />
+          <Button look="primary" name="intent" value="add">
+            Add the guardian
+          </Button>
+        </Form>
+      </Region>
+    </Page>
+  );
 }

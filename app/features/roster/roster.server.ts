@@ -1,0 +1,330 @@
+import { randomUUID } from "node:crypto";
+import type { z } from "zod";
+import { audit } from "~/platform/audit.server";
+import { sealer } from "~/platform/crypto/keys.server";
+import { DomainError, forbidden, notFound } from "~/platform/errors";
+import { foldText } from "~/platform/fold-text";
+import { read, type Tx, write } from "~db/client.server";
+import { may, type Permission } from "../accounts/permissions";
+import type { MemberScope } from "../accounts/scope.server";
+import { resolveViewing } from "../accounts/viewing.server";
+import { stateOfDay } from "../availability/availability.server";
+import {
+  closeEntry,
+  endAlert,
+  findAthlete,
+  findAthleteByNumber,
+  findEntry,
+  insertAlert,
+  insertAthlete,
+  insertEntry,
+  insertGuardian,
+  insertGuardianship,
+  listAlerts,
+  listAthletes,
+  listEntries,
+  listGuardians,
+  searchAthletes,
+  sumExposure,
+  updateAthlete,
+  updateGuardian,
+  updateGuardianship,
+} from "./roster.queries.server";
+import type {
+  alertSchema,
+  athleteSchema,
+  guardianSchema,
+  joinTeamSchema,
+  leaveTeamSchema,
+  newAthleteSchema,
+  rosterQuerySchema,
+} from "./roster.schema";
+import { coversTeam } from "./visibility.server";
+
+export const rosterPageSize = 50;
+const searchLimit = 20;
+
+function need(scope: MemberScope, permission: Permission) {
+  if (!may(scope.roles, permission)) throw forbidden();
+}
+
+const searchWords = (text: string) => foldText(text).split(" ").filter(Boolean);
+
+/** Options of the athlete search: a name, with what tells two of one name apart. */
+export function searchOptions(scope: MemberScope, text: string) {
+  need(scope, "roster.read");
+  const contacts = may(scope.roles, "roster.contacts");
+  return read(scope, async (tx) => {
+    const rows = await searchAthletes(tx, searchWords(text), text.trim(), searchLimit);
+    return rows.map(({ id, givenName, familyName, number, visitor, teams }) => ({
+      id,
+      label: `${givenName} ${familyName}`,
+      detail: [teams ?? (visitor ? "visitor" : "no team"), contacts ? number : null]
+        .filter(Boolean)
+        .join(", "),
+    }));
+  });
+}
+
+/** The roster of the season and team in the address. Coaches get names, numbers and teams, nothing of the family. */
+export function listRoster(scope: MemberScope, url: URL, query: z.output<typeof rosterQuerySchema>) {
+  need(scope, "roster.read");
+  return read(scope, async (tx) => {
+    const viewing = await resolveViewing(tx, url);
+    const filter = {
+      words: searchWords(query.q),
+      raw: query.q,
+      show: query.show,
+      teamId: viewing.team?.id ?? null,
+    };
+    const { rows, total } = await listAthletes(tx, filter, query.page, rosterPageSize);
+    const contacts = may(scope.roles, "roster.contacts");
+    return {
+      rows: rows.map((row) => (contacts ? row : { ...row, dateOfBirth: null })),
+      total,
+      team: viewing.team,
+      teams: viewing.teams,
+      contacts,
+    };
+  });
+}
+
+/** An athlete the scope may see, or not_found. For the use cases of other features too. */
+export async function requireAthlete(tx: Tx, id: string) {
+  const athlete = await findAthlete(tx, id);
+  if (!athlete) throw notFound("That athlete");
+  return athlete;
+}
+
+/** The athlete's page. What a coach does not need is not read. */
+export function readAthlete(scope: MemberScope, url: URL, id: string) {
+  need(scope, "roster.read");
+  const contacts = may(scope.roles, "roster.contacts");
+  return read(scope, async (tx) => {
+    const athlete = await requireAthlete(tx, id);
+    const { season, teams } = await resolveViewing(tx, url);
+    const until = season && season.endsOn < scope.today ? season.endsOn : scope.today;
+    return {
+      athlete: contacts
+        ? athlete
+        : { ...athlete, dateOfBirth: null, researchConsent: false, dominantLeg: "unknown" },
+      entries: await listEntries(tx, id),
+      alerts: await listAlerts(tx, id),
+      guardians: contacts
+        ? (await listGuardians(tx, id)).map(({ legalLimits, ...shown }) => ({
+            ...shown,
+            limited: legalLimits !== null,
+          }))
+        : [],
+      exposure: season ? await sumExposure(tx, id, season.startsOn, until) : null,
+      season,
+      teams,
+      state: (await stateOfDay(tx, [id], scope.today)).get(id) ?? null,
+    };
+  });
+}
+
+async function refuseTakenNumber(tx: Tx, number: string | null, ownId?: string) {
+  if (!number) return;
+  const holder = await findAthleteByNumber(tx, number);
+  if (!holder || holder.id === ownId) return;
+  throw new DomainError("conflict", "", {
+    fields: {
+      number: [
+        `${holder.givenName} ${holder.familyName} has the number ${number} already. Give another, or open that athlete.`,
+      ],
+    },
+  });
+}
+
+const nameKeyOf = (input: { givenName: string; familyName: string }) =>
+  foldText(`${input.givenName} ${input.familyName}`);
+
+export function addAthlete(scope: MemberScope, input: z.output<typeof newAthleteSchema>) {
+  need(scope, "roster.write");
+  const { team, fromDay, ...person } = input;
+  if (team && !coversTeam(scope, team)) throw notFound("That team");
+  if (!team && scope.teams !== "all")
+    throw new DomainError("invalid", "", {
+      fields: { team: ["Choose one of your teams: you could not see a visitor without one afterwards."] },
+    });
+  return write(scope, async (tx) => {
+    await refuseTakenNumber(tx, person.number);
+    const id = randomUUID();
+    await insertAthlete(tx, { id, ...person, nameKey: nameKeyOf(person) });
+    if (team && fromDay) await insertEntry(tx, { id: randomUUID(), athleteId: id, teamId: team, fromDay });
+    await audit(tx, { action: "athlete.add", subjectId: id, athleteId: id });
+    return id;
+  });
+}
+
+const changedMeanwhile = () =>
+  new DomainError(
+    "conflict",
+    "Somebody else changed this athlete while you were typing. What you typed is still here: compare it with the athlete's page and save again.",
+  );
+
+export function editAthlete(
+  scope: MemberScope,
+  id: string,
+  version: number,
+  input: z.output<typeof athleteSchema>,
+) {
+  need(scope, "roster.write");
+  return write(scope, async (tx) => {
+    const before = await requireAthlete(tx, id);
+    await refuseTakenNumber(tx, input.number, id);
+    if (!(await updateAthlete(tx, id, version, { ...input, nameKey: nameKeyOf(input) })))
+      throw changedMeanwhile();
+    const fields = (Object.keys(input) as (keyof typeof input)[]).filter((key) => input[key] !== before[key]);
+    await audit(tx, { action: "athlete.edit", subjectId: id, athleteId: id, fields: { fields } });
+  });
+}
+
+export function archiveAthlete(scope: MemberScope, id: string, archived: boolean) {
+  need(scope, "roster.write");
+  return write(scope, async (tx) => {
+    const athlete = await requireAthlete(tx, id);
+    await updateAthlete(tx, id, athlete.version, { archivedAt: archived ? new Date() : null });
+    await audit(tx, {
+      action: archived ? "athlete.archive" : "athlete.restore",
+      subjectId: id,
+      athleteId: id,
+    });
+  });
+}
+
+/** Puts an athlete on a team from a day. Overlaps with the same team are refused by the database. */
+export function joinTeam(scope: MemberScope, athleteId: string, input: z.output<typeof joinTeamSchema>) {
+  need(scope, "roster.write");
+  if (!coversTeam(scope, input.team)) throw notFound("That team");
+  return write(scope, async (tx) => {
+    await requireAthlete(tx, athleteId);
+    const { team, fromDay, toDay } = input;
+    await insertEntry(tx, { id: randomUUID(), athleteId, teamId: team, fromDay, toDay });
+    await audit(tx, { action: "roster.join", subjectId: team, athleteId, fields: { fromDay } });
+  });
+}
+
+/** Ends a membership of a team with its last day. The days before stay as they are. */
+export function leaveTeam(scope: MemberScope, athleteId: string, input: z.output<typeof leaveTeamSchema>) {
+  need(scope, "roster.write");
+  return write(scope, async (tx) => {
+    await requireAthlete(tx, athleteId);
+    const entry = await findEntry(tx, athleteId, input.entry);
+    if (!entry || !coversTeam(scope, entry.teamId)) throw notFound("That membership");
+    if (input.toDay < entry.fromDay)
+      throw new DomainError("invalid", "", {
+        fields: { toDay: ["The last day lies before the first. Enter a later one."] },
+      });
+    await closeEntry(tx, entry.id, input.toDay);
+    await audit(tx, {
+      action: "roster.leave",
+      subjectId: entry.teamId,
+      athleteId,
+      fields: { toDay: input.toDay },
+    });
+  });
+}
+
+/** Where the sealed legal limits of a guardianship belong. */
+export const limitsPlace = (athleteId: string, guardianId: string, version: number) => ({
+  table: "guardianships",
+  column: "legal_limits",
+  row: `${athleteId} ${guardianId}`,
+  version,
+});
+
+/** The guardians with their legal limits in clear, for the roles that keep contacts. */
+export function readGuardians(scope: MemberScope, athleteId: string) {
+  need(scope, "roster.contacts");
+  return write(scope, async (tx) => {
+    const athlete = await requireAthlete(tx, athleteId);
+    const { open } = await sealer(tx);
+    const rows = await listGuardians(tx, athleteId);
+    await audit(tx, { action: "guardians.read", subjectId: athleteId, athleteId });
+    return {
+      athlete: { id: athlete.id, name: `${athlete.givenName} ${athlete.familyName}` },
+      guardians: rows.map(({ legalLimits, ...row }) => ({
+        ...row,
+        legalLimits: open(limitsPlace(athleteId, row.id, 1), legalLimits),
+      })),
+    };
+  });
+}
+
+type GuardianInput = z.output<typeof guardianSchema>;
+
+function splitGuardian(input: GuardianInput) {
+  const { name, email, phone, language, wantsEmail } = input;
+  const { relation, mayBeTold, mayDecide, phoneOrder, limitsReviewOn } = input;
+  return {
+    person: { name, email, phone, language, wantsEmail },
+    bond: { relation, mayBeTold, mayDecide, phoneOrder, limitsReviewOn },
+  };
+}
+
+export function addGuardian(scope: MemberScope, athleteId: string, input: GuardianInput) {
+  need(scope, "roster.write");
+  return write(scope, async (tx) => {
+    await requireAthlete(tx, athleteId);
+    const { seal } = await sealer(tx);
+    const guardianId = randomUUID();
+    const { person, bond } = splitGuardian(input);
+    await insertGuardian(tx, { id: guardianId, ...person });
+    const legalLimits = seal(limitsPlace(athleteId, guardianId, 1), input.legalLimits);
+    await insertGuardianship(tx, { athleteId, guardianId, ...bond, legalLimits });
+    await audit(tx, { action: "guardian.add", subjectId: guardianId, athleteId });
+    return guardianId;
+  });
+}
+
+/** Changes a guardian's contact and bond. A new address starts fresh: an earlier stop was of the old one. */
+export function editGuardian(
+  scope: MemberScope,
+  athleteId: string,
+  guardianId: string,
+  input: GuardianInput,
+) {
+  need(scope, "roster.write");
+  return write(scope, async (tx) => {
+    await requireAthlete(tx, athleteId);
+    const before = (await listGuardians(tx, athleteId)).find(({ id }) => id === guardianId);
+    if (!before) throw notFound("That guardian");
+    const { seal } = await sealer(tx);
+    const { person, bond } = splitGuardian(input);
+    const emailStoppedAt = person.email === before.email ? before.emailStoppedAt : null;
+    await updateGuardian(tx, guardianId, { ...person, emailStoppedAt });
+    const legalLimits = seal(limitsPlace(athleteId, guardianId, 1), input.legalLimits);
+    await updateGuardianship(tx, athleteId, guardianId, { ...bond, legalLimits });
+    await audit(tx, { action: "guardian.edit", subjectId: guardianId, athleteId });
+  });
+}
+
+/** Ends the bond between an athlete and a guardian; what was sent stays on record. */
+export function endGuardianship(scope: MemberScope, athleteId: string, guardianId: string) {
+  need(scope, "roster.write");
+  return write(scope, async (tx) => {
+    await requireAthlete(tx, athleteId);
+    await updateGuardianship(tx, athleteId, guardianId, { endedAt: new Date() });
+    await audit(tx, { action: "guardian.end", subjectId: guardianId, athleteId });
+  });
+}
+
+export function addAlert(scope: MemberScope, athleteId: string, input: z.output<typeof alertSchema>) {
+  need(scope, "roster.write");
+  return write(scope, async (tx) => {
+    await requireAthlete(tx, athleteId);
+    await insertAlert(tx, { id: randomUUID(), athleteId, ...input, setBy: scope.personId });
+    await audit(tx, { action: "alert.add", athleteId });
+  });
+}
+
+export function removeAlert(scope: MemberScope, athleteId: string, id: string) {
+  need(scope, "roster.write");
+  return write(scope, async (tx) => {
+    await requireAthlete(tx, athleteId);
+    await endAlert(tx, athleteId, id);
+    await audit(tx, { action: "alert.end", subjectId: id, athleteId });
+  });
+}

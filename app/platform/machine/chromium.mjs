@@ -21,6 +21,10 @@ const KNOWN = [
 ];
 const PACKAGES = ["chromium", "chromium-common", "fonts-liberation"];
 
+/** Not needed without a screen: drivers of graphics cards and their compiler, themes, the desktop's services. */
+const LEFT_OUT =
+  /llvm|mesa-dri|^mesa-|-icon-theme$|^hicolor|^systemd|^dbus|^dconf|^perl|-perl$|^xdg-|^adduser|^debconf/;
+
 /**
  * A browser that answers, got from Debian if there is none.
  *
@@ -42,7 +46,7 @@ export async function ensureChromium() {
     await installPackages(["chromium", "fonts-liberation"], rights);
     return { path: await answering("/usr/bin/chromium"), how: "installed" };
   }
-  const folder = await unpackPackages({ name: "chromium", packages: PACKAGES });
+  const folder = await unpackPackages({ name: "chromium", packages: PACKAGES, leave: LEFT_OUT });
   return { path: await answering(wrap(folder)), how: "unpacked" };
 }
 

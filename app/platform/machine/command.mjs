@@ -10,13 +10,14 @@ import { appendFileSync, existsSync } from "node:fs";
 
 /** What is kept of a command's output, in characters; the log file has all of it. */
 const KEPT_OUTPUT = 400_000;
-/** How long a child may take to end after SIGTERM before it is killed, in milliseconds. */
-const PATIENCE = 10_000;
+/** How long a tool and a server may take to end after SIGTERM before they are killed, in milliseconds. */
+const TOOL_PATIENCE = 2_000;
+const SERVER_PATIENCE = 15_000;
 
 const diesWithUs = existsSync("/usr/bin/setpriv");
 
-/** @type {Set<import("node:child_process").ChildProcess>} */
-const children = new Set();
+/** The running children, each with its patience. @type {Map<import("node:child_process").ChildProcess, number>} */
+const children = new Map();
 let stopping = false;
 
 /**
@@ -26,6 +27,7 @@ let stopping = false;
  * @property {string} [input] text for standard input
  * @property {string} [log] file that the output is appended to
  * @property {boolean} [show] let the child write to this terminal instead of keeping its output
+ * @property {boolean} [tool] it may be cut off: what it makes counts only when it is whole
  * @property {boolean} [untouched] a stop neither ends this child nor forbids to start it (used to stop things)
  */
 
@@ -40,7 +42,7 @@ let stopping = false;
  */
 export function run(command, args, options = {}) {
   if (stopping && !options.untouched) return new Promise(() => {});
-  const { child, output } = launch(command, args, options);
+  const { child, output } = launch(command, args, { ...options, tool: true });
   return new Promise((resolve) => {
     child.on("error", (error) => resolve({ code: 127, output: `${output.text}${error.message}` }));
     child.on("close", (code, signal) => {
@@ -80,7 +82,7 @@ export function launch(command, args, options = {}) {
     child.stdin.end(options.input);
   }
   if (!options.untouched) {
-    children.add(child);
+    children.set(child, options.tool ? TOOL_PATIENCE : SERVER_PATIENCE);
     child.on("close", () => children.delete(child));
     child.on("error", () => children.delete(child));
   }
@@ -105,20 +107,21 @@ function mortal(command, args) {
  */
 export async function stopChildren() {
   stopping = true;
-  await Promise.all([...children].map(stopChild));
+  await Promise.all([...children].map(([child, patience]) => stopChild(child, patience)));
 }
 
 /**
  * End one child with all that it started, and wait until it is gone.
  *
  * @param {import("node:child_process").ChildProcess} child
+ * @param {number} patience milliseconds
  * @returns {Promise<void>}
  */
-export function stopChild(child) {
+function stopChild(child, patience) {
   if (child.exitCode !== null || child.signalCode !== null || child.pid === undefined)
     return Promise.resolve();
   return new Promise((resolve) => {
-    const hard = setTimeout(() => signalGroup(child, "SIGKILL"), PATIENCE);
+    const hard = setTimeout(() => signalGroup(child, "SIGKILL"), patience);
     child.once("close", () => {
       clearTimeout(hard);
       // What the child left behind in its group goes with it.

@@ -15,6 +15,21 @@ const QUIET_APT = {
   LC_ALL: "C.UTF-8",
 };
 
+/**
+ * Parts of packages that no program here reads. Among the commands is a link to the folder it lies in: tools that
+ * look through the checkout and follow links would walk in a circle.
+ */
+const NOT_TO_RUN = [
+  "bin",
+  "sbin",
+  "var",
+  "usr/bin",
+  "usr/sbin",
+  "usr/share/doc",
+  "usr/share/man",
+  "usr/share/icons",
+];
+
 /** True when this process may do anything on the machine. */
 export const isRoot = process.getuid?.() === 0;
 
@@ -107,7 +122,7 @@ export async function unpackPackages(unpacking) {
     const unpacked = await run("dpkg", ["-x", join(aside, "archives", archive), aside], { log });
     if (unpacked.code !== 0) throw failureFrom(`Unpacking ${archive}`, unpacked.output, log);
   }
-  rmSync(join(aside, "archives"), { recursive: true });
+  for (const name of ["archives", ...NOT_TO_RUN]) rmSync(join(aside, name), { recursive: true, force: true });
   renameSync(aside, target);
   return target;
 }

@@ -33,7 +33,7 @@ export const routeAccess: Record<string, RouteAccess> = {
   "/:organisation/roster/:athlete/availability": { get: "availability.write", post: "availability.write" },
   "/:organisation/sessions": { get: "sessions.read" },
   "/:organisation/sessions/new": { get: "attendance.write", post: "attendance.write" },
-  "/:organisation/sessions/:session": { get: "sessions.read", post: "sessions.write" },
+  "/:organisation/sessions/:session": { get: "sessions.read", post: "attendance.write" },
   "/:organisation/sessions/:session/attendance": { get: "attendance.write", post: "attendance.write" },
   "/:organisation/sessions/:session/warm-up": { get: "warm-ups.read", post: "warm-ups.write" },
   "/:organisation/injuries": { get: "injuries.read" },

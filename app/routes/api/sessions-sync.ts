@@ -1,6 +1,8 @@
-import { notFound } from "~/platform/errors";
+import { syncSchema } from "~/features/sessions/sync.schema";
+import { syncOperations } from "~/features/sessions/sync.server";
+import { apiAction } from "~/middleware/handlers.server";
 
-// PLACEHOLDER: replaced by the feature's own route.
-export async function loader() {
-  throw notFound();
-}
+/** Operations of phones and of the pitch's pages; see sync.schema.ts for their fields. */
+export const action = apiAction(syncSchema, async ({ scope, body }) => ({
+  answers: await syncOperations(scope, body.operations),
+}));

@@ -49,12 +49,12 @@ export function otherServer() {
  *
  * @param {object} [wish]
  * @param {boolean} [wish.keep] leave the cluster running after this process
- * @param {boolean} [wish.serves] a server is about to be started: its mail fake needs a port that is free now
+ * @param {string} [wish.origin] a server is about to be started there: its mail fake needs a port that is free now
  * @param {(leave: () => Promise<void>) => void} [wish.onStart]
  * @param {(line: string) => void} [wish.onNote] told what a person should know
  * @returns {Promise<{ cluster: import("./cluster.mjs").Cluster, env: Record<string, string> }>}
  */
-export async function openLocalServer({ keep = false, serves = false, onStart, onNote } = {}) {
+export async function openLocalServer({ keep = false, origin, onStart, onNote } = {}) {
   const { own, made } = readEnvFile(ENV_FILE);
   const home = clusterHome("dev");
   const hasCluster = existsSync(join(home, "data"));
@@ -75,7 +75,11 @@ export async function openLocalServer({ keep = false, serves = false, onStart, o
     ...(carried ? { secrets: carried } : {}),
     ...(onStart ? { onStart } : {}),
   });
-  const local = localEnvironment(cluster, await mailPort(made.MAIL_FAKE_PORT, serves));
+  const local = localEnvironment(
+    cluster,
+    await mailPort(made.MAIL_FAKE_PORT, origin !== undefined),
+    origin ?? made.APP_ORIGIN,
+  );
   writeEnvFile(ENV_FILE, local);
   return { cluster, env: withOwnWords(local, own) };
 }
@@ -85,14 +89,15 @@ export async function openLocalServer({ keep = false, serves = false, onStart, o
  *
  * @param {Pick<import("./cluster.mjs").Cluster, "port" | "secrets">} cluster
  * @param {number} mailPort
+ * @param {string} [origin] where people reach the application
  * @returns {Record<string, string>}
  */
-export function localEnvironment(cluster, mailPort) {
+export function localEnvironment(cluster, mailPort, origin = "http://localhost:3000") {
   const urls = clusterUrls(cluster);
   const { secrets } = cluster;
   return {
     HALESIDE_LOCAL: "1",
-    APP_ORIGIN: "http://localhost:3000",
+    APP_ORIGIN: origin,
     DATABASE_URL: urls.app,
     DATABASE_OWNER_URL: urls.owner,
     DATABASE_AUTH_URL: urls.auth,

@@ -91,8 +91,8 @@ export function prepareModules(command) {
  */
 export async function prepareDatabase(port) {
   const other = otherServer();
-  const given = other ?? (await localServer());
-  const env = { ...given, PORT: String(port), APP_ORIGIN: givenOrigin() ?? `http://localhost:${port}` };
+  const origin = givenOrigin() ?? `http://localhost:${port}`;
+  const env = { ...(other ?? (await localServer(origin))), PORT: String(port), APP_ORIGIN: origin };
   if (other) {
     const mail = await mailOf(other);
     await upToDate({ ...env, ...mail });
@@ -106,9 +106,10 @@ export async function prepareDatabase(port) {
   return { env, local: true };
 }
 
-async function localServer() {
+/** @param {string} origin */
+async function localServer(origin) {
   return step("database", "starting", async () => {
-    const { cluster, env } = await openLocalServer({ serves: true, onStart: onStop, onNote: note });
+    const { cluster, env } = await openLocalServer({ origin, onStart: onStop, onNote: note });
     const deed = cluster.made ? "made and started" : cluster.started ? "started" : "running";
     return { done: `PostgreSQL ${cluster.major} ${deed} on 127.0.0.1:${cluster.port}`, value: env };
   });

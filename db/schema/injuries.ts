@@ -10,6 +10,7 @@ import {
   time,
   uuid,
 } from "drizzle-orm/pg-core";
+import { teams } from "./accounts";
 import { allOf, oneOf } from "./check";
 import {
   bodyAreas,
@@ -261,5 +262,28 @@ export const encounters = pgTable(
     }),
     index("encounters_day_idx").on(t.organisationId, t.day),
     oneOf("encounters_kind", t.kind, encounterKinds),
+  ],
+);
+
+/**
+ * A team's week in which somebody who knows confirmed that nobody was newly hurt. Without it, a week without an injury
+ * reads "not reported". Insert-only: an injury that is entered later for that week counts all the same.
+ */
+export const noInjuryWeeks = pgTable(
+  "no_injury_weeks",
+  {
+    organisationId: organisationId(),
+    teamId: uuid("team_id").notNull(),
+    /** The Monday (ISO 8601). */
+    weekStart: date("week_start", { mode: "string" }).notNull(),
+    confirmedBy: actor("confirmed_by"),
+    confirmedAt: instant("confirmed_at").notNull().defaultNow(),
+  },
+  (t) => [
+    primaryKey({ columns: [t.organisationId, t.teamId, t.weekStart] }),
+    foreignKey({
+      columns: [t.organisationId, t.teamId],
+      foreignColumns: [teams.organisationId, teams.id],
+    }),
   ],
 );

@@ -150,6 +150,7 @@ export const tenancy: readonly Access[] = [
   { table: injuring.coachReports, allow: { select: clinical, insert: [...clinical, "coach"] } },
   { table: injuring.coachReportOutcomes, allow: { select: clinical, insert: clinical } },
   { table: injuring.encounters, allow: { select: clinical, insert: clinical } },
+  { table: injuring.noInjuryWeeks, allow: { select: everyone, insert: [...clinical, "coach"] } },
   {
     table: availability.availabilityReasons,
     allow: { select: clinical, insert: [...clinical, "coach"] },

@@ -143,6 +143,15 @@ export async function findInjuryContributions(tx: Tx, injuryIds: readonly string
     .orderBy(asc(contributions.fromDay));
 }
 
+/** What a reason says, in order of its days. */
+export function findReasonContributions(tx: Tx, reasonIds: readonly string[]) {
+  return tx
+    .select()
+    .from(contributions)
+    .where(and(eq(contributions.organisationId, org(tx)), inArray(contributions.reasonId, [...reasonIds])))
+    .orderBy(asc(contributions.fromDay));
+}
+
 /** Reasons of an athlete, each with its cause; newest first. */
 export function findReasons(tx: Tx, athleteId: string) {
   return tx

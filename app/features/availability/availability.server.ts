@@ -10,6 +10,7 @@ import {
   findInjuryContributions,
   findLimitedAthletes,
   findReason,
+  findReasonContributions,
   findReasonOf,
   findTeamsOn,
   insertChange,
@@ -141,6 +142,47 @@ export async function contributionsOfInjuries(
       rows.filter(({ injuryId }) => injuryId === id).map(({ injuryId: _injury, ...part }) => part),
     ]),
   );
+}
+
+/**
+ * Moves the first contribution of an injury with its onset. Later changes stay on their days; what the old days said is
+ * set aside, not deleted. Nothing happens when no contribution begins with the onset.
+ */
+export async function moveOnset(tx: Tx, injuryId: string, from: string, to: string): Promise<void> {
+  const reason = await findReasonOf(tx, { injuryId });
+  const parts = (await findInjuryContributions(tx, [injuryId])).filter(
+    ({ reasonId }) => reasonId === reason?.id,
+  );
+  const first = parts.find(({ fromDay }) => fromDay === from);
+  if (!reason || !first || from === to) return;
+  if (to > from) await changeAvailability(tx, reason.id, fullFrom(from));
+  const kept = parts.filter(({ fromDay, toDay }) => fromDay >= from && (toDay === null || toDay >= to));
+  for (const { state, restrictions, minutesLimit, expectedOn, ...part } of kept) {
+    const fromDay = part.fromDay === from || part.fromDay < to ? to : part.fromDay;
+    await changeAvailability(tx, reason.id, { state, restrictions, minutesLimit, expectedOn, fromDay });
+  }
+}
+
+/**
+ * An injury takes over what a coach's report had set: the same changes stand under the injury, and the report's own are
+ * set aside from their first day, so that no day counts twice.
+ * @returns the injury's reason; null when the report had set nothing
+ */
+export async function takeOverReport(
+  tx: Tx,
+  { reportId, injuryId, athleteId }: { reportId: string; injuryId: string; athleteId: string },
+): Promise<string | null> {
+  const reason = await findReasonOf(tx, { reportId });
+  if (!reason) return null;
+  const parts = await findReasonContributions(tx, [reason.id]);
+  let taken: string | null = null;
+  for (const { fromDay, state, restrictions, minutesLimit, expectedOn } of parts) {
+    const change = { fromDay, state, restrictions, minutesLimit, expectedOn };
+    if (taken) await changeAvailability(tx, taken, change);
+    else taken = await openReason(tx, { athleteId, cause: "injury", injuryId, change });
+  }
+  if (parts[0]) await changeAvailability(tx, reason.id, fullFrom(parts[0].fromDay));
+  return taken;
 }
 
 /** The reason that an injury or a coach's report owns; undefined while it has none. */

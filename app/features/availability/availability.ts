@@ -83,6 +83,18 @@ export function timeLossOf(
   return { days, ongoing };
 }
 
+/**
+ * The first day of full availability after an injury: the onset day when it never cost any, null while it still does.
+ */
+export function returnDayOf(
+  onsetDay: string,
+  parts: readonly Pick<Contribution, "fromDay" | "toDay" | "state">[],
+): string | null {
+  const last = runsNotFull(parts).at(-1);
+  if (!last) return onsetDay;
+  return last.toDay === null ? null : addDays(last.toDay, 1);
+}
+
 /** Neighbouring contributions that are not full, joined into runs, in order of their days. */
 function runsNotFull(parts: readonly Pick<Contribution, "fromDay" | "toDay" | "state">[]) {
   const runs: { fromDay: string; toDay: string | null }[] = [];

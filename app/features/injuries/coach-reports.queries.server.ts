@@ -14,6 +14,14 @@ import type { BodyArea, SessionKind, Side, Sign } from "~db/schema/codes";
 
 const org = (tx: Tx) => tx.scope.organisationId;
 
+/** Where the sealed texts of a report belong. */
+export const reportPlace = (column: "phoned" | "note", reportId: string) => ({
+  table: "coach_reports",
+  column,
+  row: reportId,
+  version: 1,
+});
+
 /** Reports of athletes visible today, and those from a session of an own team. */
 function visibleReports(tx: Tx): SQL {
   const { scope } = tx;

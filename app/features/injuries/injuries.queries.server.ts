@@ -113,14 +113,27 @@ function selectCurrent(tx: Tx, ...conditions: (SQL | undefined)[]) {
 type Selected = Awaited<ReturnType<typeof selectCurrent>>[number];
 export type InjuryRow = Omit<Selected, "revision" | "session"> & {
   revision: Revision;
-  session: (Omit<NonNullable<Selected["session"]>, "teamName"> & { teamName: string }) | null;
+  session: {
+    id: string;
+    day: string;
+    startTime: string | null;
+    kind: SessionKind;
+    surface: Surface | null;
+    teamId: string;
+    teamName: string;
+  } | null;
 };
 
-const shaped = (row: Selected): InjuryRow => ({
-  ...row,
-  revision: typed(row.revision),
-  session: row.session?.id ? { ...row.session, teamName: row.session.teamName ?? "" } : null,
-});
+function shaped(row: Selected): InjuryRow {
+  const { session } = row;
+  const { id, day, teamId, teamName } = session ?? {};
+  return {
+    ...row,
+    revision: typed(row.revision),
+    session:
+      session && id && day && teamId ? { ...session, id, day, teamId, teamName: teamName ?? "" } : null,
+  };
+}
 
 export async function findInjuryRow(tx: Tx, id: string): Promise<InjuryRow | undefined> {
   const [row] = await selectCurrent(tx, eq(injuries.id, id));

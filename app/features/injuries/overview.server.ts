@@ -5,6 +5,7 @@ import {
   timeLossOf,
 } from "~/features/availability/availability";
 import { contributionsOfInjuries } from "~/features/availability/availability.server";
+import { daysBetween } from "~/platform/clock";
 import type { Sealer } from "~/platform/crypto/keys.server";
 import { type SeverityBand, severityBand, type TimeLoss } from "~/statistics";
 import type { Tx } from "~db/client.server";
@@ -66,7 +67,7 @@ export async function overviewsOf(tx: Tx, rows: readonly InjuryRow[]): Promise<I
     const { revision } = row;
     const parts = contributions.get(row.id) ?? [];
     // An onset entered for a later day than today by another clock is counted from itself.
-    const asOf = today < revision.onsetDay ? revision.onsetDay : today;
+    const asOf = daysBetween(today, revision.onsetDay) > 0 ? revision.onsetDay : today;
     const loss = timeLossOf(revision.onsetDay, parts, asOf);
     const hasEarlier =
       before.some(({ athleteId }) => athleteId === row.athleteId) ||

@@ -1,0 +1,133 @@
+import { useMemo } from "react";
+import { formatTick, niceScale, RateAxis, RateBar } from "~/ui";
+import { type Column, DataTable } from "~/ui/data-table";
+import { decimalsFor, formatCount } from "../figures";
+import { axisEnd, seriesOf } from "../picture";
+import type { RateRow } from "../rates";
+import type { RateUnit } from "../rates.schema";
+
+type Props = {
+  caption: string;
+  rows: RateRow[];
+  /** Rows that stay below the others in any order: the total, the club. */
+  totals: RateRow[];
+  unit: RateUnit;
+  csvHref?: string;
+  sortParam?: string;
+};
+
+type Line = RateRow & { isTotal: boolean };
+
+const gradeHeads = { recorded: "Recorded", headcount: "From headcounts", estimated: "Estimated" } as const;
+const dash = <span className="text-soft">–</span>;
+
+/** A total sorts last in both directions: it has nothing to sort by. */
+const sorts = (value: (row: RateRow) => string | number | null) => (line: Line) =>
+  line.isTotal ? undefined : value(line);
+
+/** Grades of exposure get columns of their own only where there is more than one. */
+function gradeColumns(lines: readonly Line[], unit: RateUnit): Column<Line>[] {
+  const grades = (["recorded", "headcount", "estimated"] as const).filter((grade) =>
+    lines.some(({ exposure }) => (exposure?.[unit][grade] ?? 0) > 0),
+  );
+  if (grades.length < 2) return [];
+  return grades.map((grade) => ({
+    id: grade,
+    header: gradeHeads[grade],
+    numeric: true,
+    value: sorts(({ exposure }) => exposure?.[unit][grade] ?? null),
+    cell: ({ exposure }) => (exposure ? formatCount(exposure[unit][grade]) : dash),
+  }));
+}
+
+function intervalCell({ rate, reason, unstable }: RateRow, decimals: number) {
+  if (!rate) return <span className="text-soft">{reason}</span>;
+  return `${rate.lower.toFixed(decimals)} to ${rate.upper.toFixed(decimals)}${unstable ? ", unstable" : ""}`;
+}
+
+function columnsOf(lines: readonly Line[], unit: RateUnit): Column<Line>[] {
+  const decimals = decimalsFor(lines.flatMap(({ rate }) => rate?.estimate ?? []));
+  const scale = niceScale(axisEnd(lines), 4);
+  const unitWords = unit === "aes" ? "per 1000 athlete-exposures" : "per 1000 hours";
+  const grades = gradeColumns(lines, unit);
+  const onlyRecorded =
+    grades.length === 0 && lines.some(({ exposure }) => (exposure?.[unit].recorded ?? 0) > 0);
+  const name = unit === "aes" ? "Exposures" : "Hours";
+  return [
+    {
+      id: "group",
+      header: "Group",
+      rowHeader: true,
+      value: sorts(({ label }) => label),
+      cell: ({ label, isTotal }) => (isTotal ? <span className="font-medium">{label}</span> : label),
+    },
+    {
+      id: "injuries",
+      header: "Injuries",
+      numeric: true,
+      value: sorts(({ injuries }) => injuries),
+      cell: ({ injuries }) => (injuries === null ? dash : formatCount(injuries)),
+    },
+    {
+      id: "exposure",
+      header: onlyRecorded ? `${name}, recorded` : name,
+      numeric: true,
+      value: sorts(({ denominator }) => denominator),
+      cell: ({ denominator }) => (denominator ? formatCount(denominator) : dash),
+    },
+    ...grades,
+    {
+      id: "rate",
+      header: "Rate",
+      numeric: true,
+      value: sorts(({ rate }) => rate?.estimate ?? null),
+      cell: ({ rate }) => rate?.estimate.toFixed(decimals) ?? dash,
+    },
+    { id: "interval", header: "95 % interval, exact", cell: (line) => intervalCell(line, decimals) },
+    {
+      id: "bar",
+      header: unitWords,
+      axis: true,
+      headerPicture: (
+        <RateAxis scale={scale} label={`Rates ${unitWords}, from 0 to ${formatTick(scale.max)}`} />
+      ),
+      cell: (line) => (
+        <div className="min-w-[11rem]">
+          {line.rate ? (
+            <RateBar
+              rate={line.rate}
+              scale={scale}
+              series={line.isTotal ? 8 : seriesOf(line)}
+              unstable={line.unstable}
+              decimals={decimals}
+              unit={unitWords}
+            />
+          ) : null}
+        </div>
+      ),
+    },
+  ];
+}
+
+/** The same numbers as the picture, sortable, with their intervals on one axis. */
+export function RatesTable({ caption, rows, totals, unit, csvHref, sortParam }: Props) {
+  const lines = useMemo(
+    () => [
+      ...rows.map((row): Line => ({ ...row, isTotal: false })),
+      ...totals.map((row): Line => ({ ...row, isTotal: true })),
+    ],
+    [rows, totals],
+  );
+  const columns = useMemo(() => columnsOf(lines, unit), [lines, unit]);
+  return (
+    <DataTable
+      caption={caption}
+      columns={columns}
+      rows={lines}
+      rowKey={({ key, isTotal }) => (isTotal ? `total ${key}` : key)}
+      empty="No exposure and no injuries yet."
+      {...(csvHref ? { csvHref } : {})}
+      {...(sortParam ? { sortParam } : {})}
+    />
+  );
+}

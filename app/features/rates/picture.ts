@@ -1,0 +1,54 @@
+import type { IntervalGroup } from "~/ui/charts/interval-chart";
+import type { SeriesNumber } from "~/ui/series";
+import { pictureName } from "./groups";
+import type { RateRow } from "./rates";
+import type { RatesFilters } from "./rates.schema";
+
+/** The series of a row: each sex has its own colour, marker and dash; anything else is of one kind. */
+export function seriesOf({ sex }: RateRow): SeriesNumber {
+  if (sex === "male") return 2;
+  if (sex === "not_stated") return 3;
+  return sex === "unknown" ? 4 : 1;
+}
+
+const injuries = (count: number) => `${count} ${count === 1 ? "injury" : "injuries"}`;
+
+function pointOf(row: RateRow, label: string): IntervalGroup["points"][number] {
+  const series = seriesOf(row);
+  if (!row.rate) return { series, label, rate: null, note: row.reason ?? "no rate" };
+  if (!row.unstable) return { series, label, rate: row.rate };
+  const note = `${injuries(row.injuries ?? 0)}: unstable`;
+  return label
+    ? { series, label, rate: row.rate, unstable: true, note }
+    : { series, label: note, rate: row.rate, unstable: true };
+}
+
+/** The rows as the picture groups them: the sexes side by side in each age band, anything else a line of its own. */
+export function pictureGroups(rows: readonly RateRow[], by: RatesFilters["by"]): IntervalGroup[] {
+  if (by !== "sex-age") {
+    return rows.map((row) => {
+      const point = pointOf(row, "");
+      const figures = row.unstable && row.rate ? { ...point, label: "", note: undefined } : point;
+      return { label: row.label, points: [figures] };
+    });
+  }
+  const bands = [...new Set(rows.flatMap(({ band }) => band ?? []))];
+  return bands.map((band) => ({
+    label: band,
+    points: rows
+      .filter((row) => row.band === band)
+      .map((row) => pointOf(row, row.sex ? pictureName(row.sex, row.label) : "")),
+  }));
+}
+
+/**
+ * The end of the axis. A group of very few injuries has an interval many times longer than the others; it may run
+ * over the edge, so that the rest can be read.
+ */
+export function axisEnd(rows: readonly RateRow[]): number {
+  const upper = (list: readonly RateRow[]) => Math.max(0, ...list.map(({ rate }) => rate?.upper ?? 0));
+  const estimates = Math.max(0, ...rows.map(({ rate }) => rate?.estimate ?? 0));
+  const [all, stable] = [upper(rows), upper(rows.filter(({ unstable }) => !unstable))];
+  if (stable === 0) return all;
+  return Math.min(all, Math.max(stable * 1.5, estimates * 1.1));
+}

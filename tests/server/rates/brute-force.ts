@@ -1,0 +1,145 @@
+import { addDays, weekStart } from "~/platform/clock";
+import type { RatesFilters } from "~/features/rates/rates.schema";
+import type { Plan } from "./generated-club";
+
+/** Counts a plan by walking through it day by day and athlete by athlete, with none of the application's code. */
+
+type Rule = { sport: string; fromAge: number; players: number; minutes: number };
+type Bands = readonly { label: string; from: number; to: number | null }[];
+export type World = { plan: Plan; rules: readonly Rule[]; bands: Bands; today: string };
+type Session = Plan["sessions"][number];
+type Share = { athleteId: string | null; aes: number; hours: number };
+
+/** Age by walking from birthday to birthday; 29 February moves to 1 March in common years. */
+function age(born: string | null, day: string) {
+  if (!born || born > day) return null;
+  let years = -1;
+  for (let year = Number(born.slice(0, 4)); year <= Number(day.slice(0, 4)); year++) {
+    const leap = new Date(Date.UTC(year, 1, 29)).getUTCMonth() === 1;
+    const monthDay = born.slice(5) === "02-29" && !leap ? "03-01" : born.slice(5);
+    if (`${year}-${monthDay}` <= day) years += 1;
+  }
+  return years;
+}
+
+const band = (bands: Bands, years: number | null) =>
+  years === null ? "unknown" : (bands.find(({ from, to }) => years >= from && years <= (to ?? 999))?.label ?? "unknown");
+
+/** The state of one reason on a day: of the changes from that day or earlier, the one entered last. */
+function stateOn(plan: Plan, reasonId: string, day: string) {
+  const known = plan.changes.filter((change) => change.reasonId === reasonId && change.fromDay <= day);
+  return known.sort((a, b) => b.seq - a.seq)[0]?.state ?? "full";
+}
+
+function isUnavailable(plan: Plan, athleteId: string, day: string) {
+  const reasons = new Set(plan.changes.filter((change) => change.athleteId === athleteId).map((c) => c.reasonId));
+  return [...reasons].some((reason) => stateOn(plan, reason, day) === "unavailable");
+}
+
+function sharesOf({ plan, rules }: World, session: Session): { grade: string; shares: Share[] } {
+  const none = { grade: "none", shares: [] };
+  if (session.state !== "held" && session.state !== "abandoned") return none;
+  if (session.kind !== "training" && session.kind !== "match") return none;
+  if (session.day < plan.season.from || session.day > plan.season.to) return none;
+  if (session.exposureGrade === "recorded") {
+    const parts = plan.parts.filter((p) => p.sessionId === session.id && p.presence === "took_part" && p.minutes > 0);
+    return { grade: "recorded", shares: parts.map((p) => ({ athleteId: p.athleteId, aes: 1, hours: p.minutes / 60 })) };
+  }
+  const team = plan.teams.find(({ id }) => id === session.teamId);
+  let [players, minutes] = [session.headcount ?? 0, session.headcountMinutes ?? 0];
+  if (session.exposureGrade === "estimated") {
+    if (session.kind !== "match") return none;
+    const rule = rules
+      .filter((each) => each.sport === team?.sport && each.fromAge <= (team?.underAge ?? 1000))
+      .sort((a, b) => b.fromAge - a.fromAge)[0];
+    players = rule?.players ?? 0;
+    minutes = rule?.minutes ?? 0;
+    if (session.state === "abandoned" && session.abandonedAfter) minutes = Math.min(minutes, session.abandonedAfter);
+  } else if (session.exposureGrade !== "headcount") return none;
+  if (players === 0 || minutes === 0) return none;
+  const there = plan.roster
+    .filter((r) => r.teamId === session.teamId && r.from <= session.day && (r.to ?? "9999") >= session.day)
+    .filter((r) => !isUnavailable(plan, r.athleteId, session.day));
+  const each = there.length === 0 ? 0 : Math.min(players, there.length) / there.length;
+  const aes = session.exposureGrade === "headcount" ? 1 : 0;
+  const shares: Share[] = there.map(({ athleteId }) => ({ athleteId, aes: aes * each, hours: (each * minutes) / 60 }));
+  const excess = players - there.length;
+  if (excess > 0) shares.push({ athleteId: null, aes: aes * excess, hours: (excess * minutes) / 60 });
+  return { grade: session.exposureGrade, shares };
+}
+
+function keyOf(world: World, by: RatesFilters["by"], who: string | null, day: string, teamId: string, kind: string | null) {
+  const athlete = world.plan.athletes.find(({ id }) => id === who);
+  const sex = athlete?.sex ?? "unknown";
+  const years = band(world.bands, age(athlete?.born ?? null, day));
+  const sport = world.plan.teams.find(({ id }) => id === teamId)?.sport ?? "none";
+  return { sex, age: years, "sex-age": `${sex} ${years}`, sport, kind: kind ?? "none", team: teamId }[by];
+}
+
+const inKinds = (filters: RatesFilters, kind: string) =>
+  filters.sessions === "training-and-matches" ? kind === "training" || kind === "match" : kind === filters.sessions;
+
+function daysLost({ plan, today }: World, injuryId: string, onset: string) {
+  const reasons = new Set(plan.changes.filter((change) => change.injuryId === injuryId).map((c) => c.reasonId));
+  let days = 0;
+  for (let day = addDays(onset, 1); day <= today; day = addDays(day, 1))
+    if ([...reasons].some((reason) => stateOn(plan, reason, day) !== "full")) days += 1;
+  return days;
+}
+
+export type Brute = Record<string, { injuries: number; recorded: number; headcount: number; estimated: number }>;
+
+/** Injuries and exposure of each group. */
+export function countByHand(world: World, filters: RatesFilters): Brute {
+  const { plan } = world;
+  const result: Brute = {};
+  const at = (key: string) => {
+    result[key] ??= { injuries: 0, recorded: 0, headcount: 0, estimated: 0 };
+    return result[key];
+  };
+  const held = plan.sessions.map((session) => ({ session, ...sharesOf(world, session) }));
+  for (const { session, grade, shares } of held) {
+    if (!inKinds(filters, session.kind)) continue;
+    for (const share of shares) {
+      const group = at(keyOf(world, filters.by, share.athleteId, session.day, session.teamId, session.kind));
+      group[grade as "recorded" | "headcount" | "estimated"] += filters.per === "aes" ? share.aes : share.hours;
+    }
+  }
+  const amount = (shares: readonly Share[], per = filters.per) =>
+    shares.reduce((sum, share) => sum + (per === "aes" ? share.aes : share.hours), 0);
+  const weekAmount = (teamId: string, day: string, per = filters.per) =>
+    held
+      .filter(({ session }) => session.teamId === teamId && weekStart(session.day) === weekStart(day))
+      .reduce((sum, { shares }) => sum + amount(shares, per), 0);
+
+  for (const injury of plan.injuries) {
+    if (injury.withdrawn || injury.outsideSport || injury.subsequence === "exacerbation") continue;
+    if (filters.injuries === "time-loss" && daysLost(world, injury.injuryId, injury.onsetDay) < 1) continue;
+    const own = held.find(({ session }) => session.id === injury.sessionId);
+    const gradual = injury.onset === "gradual";
+    const day = gradual || !own ? injury.onsetDay : own.session.day;
+    if (day < plan.season.from || day > plan.season.to) continue;
+    if (own && !inKinds(filters, own.session.kind)) continue;
+    let teamId = own?.session.teamId;
+    if (gradual) {
+      if (!own && filters.sessions !== "training-and-matches") continue;
+      if (!own) {
+        const homes = plan.roster
+          .filter((r) => r.athleteId === injury.athleteId && r.from <= day && (r.to ?? "9999") >= day)
+          .map((r) => ({ ...r, aes: weekAmount(r.teamId, day, "aes") > 0, hours: weekAmount(r.teamId, day, "hours") > 0 }))
+          .sort(
+            (a, b) =>
+              Number(b.aes) - Number(a.aes) ||
+              Number(b.hours) - Number(a.hours) ||
+              a.from.localeCompare(b.from) ||
+              a.teamId.localeCompare(b.teamId),
+          );
+        teamId = homes[0]?.teamId;
+      }
+      if (!teamId || weekAmount(teamId, day) <= 0) continue;
+    } else if (!own || amount(own.shares) <= 0) continue;
+    const kind = own?.session.kind ?? null;
+    at(keyOf(world, filters.by, injury.athleteId, injury.onsetDay, teamId ?? "", kind)).injuries += 1;
+  }
+  return result;
+}

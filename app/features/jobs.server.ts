@@ -2,6 +2,7 @@ import { env } from "~/platform/env.server";
 import { schedule, stopQueue, work } from "~/platform/jobs/queue.server";
 import { type FakeResend, startFakeResend } from "~/platform/mail/fake-resend.server";
 import { composeInvitationDelivery } from "./accounts/invitations.server";
+import { runImportJob } from "./imports/imports.server";
 import { type Composer, deliver, sweepOutbox, type Template } from "./outbox/outbox.server";
 
 const composers: Record<Template, Composer> = {
@@ -28,6 +29,7 @@ export async function startWorkers() {
   await work("deliver", async ({ organisationId, deliveryId }) => {
     if (organisationId && deliveryId) await deliver(organisationId, deliveryId, composers);
   });
+  await work("import", runImportJob);
   await work("sweep", sweepOutbox);
   await schedule("sweep", "* * * * *");
 }

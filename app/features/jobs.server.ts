@@ -3,6 +3,7 @@ import { schedule, stopQueue, work } from "~/platform/jobs/queue.server";
 import { type FakeResend, startFakeResend } from "~/platform/mail/fake-resend.server";
 import { composeInvitationDelivery } from "./accounts/invitations.server";
 import { runImportJob } from "./imports/imports.server";
+import { composeFreshLinkDelivery, composeNoticeDelivery } from "./notices/composing.server";
 import { type Composer, deliver, sweepOutbox, type Template } from "./outbox/outbox.server";
 
 const composers: Record<Template, Composer> = {
@@ -10,8 +11,8 @@ const composers: Record<Template, Composer> = {
     (invitationId ? await composeInvitationDelivery(tx, scope, invitationId) : undefined) ?? {
       stopped: "invitation no longer open",
     },
-  notice: async () => ({ stopped: "not here yet" }),
-  "fresh-link": async () => ({ stopped: "not here yet" }),
+  notice: composeNoticeDelivery,
+  "fresh-link": composeFreshLinkDelivery,
 };
 
 let fake: FakeResend | undefined;

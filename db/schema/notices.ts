@@ -90,7 +90,7 @@ export const noticeEvents = pgTable(
     organisationId: organisationId(),
     id: uuid("id").notNull(),
     noticeId: uuid("notice_id").notNull(),
-    /** written, opened, acknowledged, call_requested, phoned, fresh_link_requested, e_mail_stopped, locked */
+    /** written, opened, acknowledged, call_requested, phoned, phone_tried, fresh_link_requested, e_mail_stopped, locked */
     kind: text("kind").notNull(),
     /** Who was told what in a logged call; when a guardian asks to be called. */
     detail: sealed("detail"),

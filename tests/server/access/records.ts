@@ -1,0 +1,77 @@
+import { randomUUID } from "node:crypto";
+import { write } from "~db/client.server";
+import { imports } from "~db/schema";
+import {
+  type makeClub,
+  makeCoachReport,
+  makeGuardian,
+  makeInjury,
+  makeInvitation,
+  makeNotice,
+  makeSession,
+} from "../../harness";
+
+export type Club = Awaited<ReturnType<typeof makeClub>>;
+/** What stands for each parameter of a path. */
+export type Parameters = Record<string, string>;
+
+/** A club with one record of each kind that an address can name, about one athlete of one team. */
+export async function recordsOf(club: Club, team = club.team, athlete = club.athlete): Promise<Parameters> {
+  const { staff, organisation } = club;
+  const session = await makeSession(staff, { teamId: team.id, minutes: { [athlete.id]: 90 } });
+  const injury = await makeInjury(staff, {
+    athleteId: athlete.id,
+    sessionId: session.id,
+    unavailableFrom: staff.today,
+  });
+  const report = await makeCoachReport(staff, { athleteId: athlete.id });
+  const guardian = await makeGuardian(staff, { athleteIds: [athlete.id] });
+  const told = await makeNotice(staff, {
+    injuryId: injury.id,
+    athleteId: athlete.id,
+    guardianId: guardian.id,
+  });
+  const importId = randomUUID();
+  await write(staff, (tx) =>
+    tx.insert(imports).values({
+      organisationId: organisation.id,
+      id: importId,
+      kind: "roster",
+      state: "cancelled",
+      fileName: "roster.csv",
+      fileHash: randomUUID(),
+      fileSize: 1,
+      reading: {},
+      mapping: {},
+      answers: {},
+      questions: [],
+      counts: {},
+    }),
+  );
+  const invitation = await makeInvitation(organisation, { email: "new@example.org", roles: ["coach"] });
+  return {
+    organisation: organisation.slug,
+    organisationId: organisation.id,
+    token: invitation.part,
+    athlete: athlete.id,
+    session: session.id,
+    injury: injury.id,
+    report: report.id,
+    notice: told.notice.id,
+    import: importId,
+    kind: "roster",
+  };
+}
+
+/** A pattern with its parameters filled in. */
+export function fill(pattern: string, parameters: Parameters): string {
+  return pattern.replace(/:(\w+)/g, (_, name: string) => {
+    const value = parameters[name];
+    if (value === undefined) throw new Error(`Nothing stands for :${name} of ${pattern}.`);
+    return value;
+  });
+}
+
+/** The parameters of a pattern that name a record of an organisation. */
+export const recordNames = (pattern: string) =>
+  [...pattern.matchAll(/:(athlete|session|injury|report|notice|import)\b/g)].map((match) => String(match[1]));

@@ -1,11 +1,13 @@
 import { stateOfDay } from "~/features/availability/availability.server";
 import { audit } from "~/platform/audit.server";
+import { dayIn, timeIn } from "~/platform/clock";
+import { formatDay } from "~/platform/days";
 import { DomainError, notFound } from "~/platform/errors";
 import { foldText } from "~/platform/fold-text";
 import { type FieldChange, mergeFields } from "~/platform/merge-fields";
 import { once } from "~/platform/operations.server";
 import { type Scope, type Tx, write } from "~db/client.server";
-import { type ExpectedAthlete, type Part, partField, partValue } from "./attendance";
+import { type ExpectedAthlete, type Part, partField, partValue, stateWords } from "./attendance";
 import {
   deleteParticipation,
   findActionAlerts,
@@ -47,6 +49,26 @@ export async function expectedAthletes(
       part: part ? { presence: part.presence, minutes: part.minutes } : null,
     };
   });
+}
+
+export type ShownAthlete = Omit<ExpectedAthlete, "asOf"> & {
+  /** The state in words; empty for full availability. */
+  words: string;
+};
+
+/** Expected athletes with their state in words; instants become the organisation's local time. */
+export function showAthletes(scope: Scope, athletes: readonly ExpectedAthlete[]): ShownAthlete[] {
+  return athletes.map(({ asOf, ...athlete }) => ({
+    ...athlete,
+    words: stateWords(athlete, asOf && localMoment(scope, asOf)),
+  }));
+}
+
+/** "15:10" today, "27 Nov, 15:10" on another day. */
+export function localMoment(scope: Scope, instant: Date): string {
+  const day = dayIn(scope.timeZone, instant);
+  const time = timeIn(scope.timeZone, instant);
+  return day === scope.today ? time : `${formatDay(day, "day-month")}, ${time}`;
 }
 
 /** Athletes by name who are not expected yet: visitors, try-outs, players of another team. Names only. */

@@ -217,6 +217,10 @@ const editable = ["day", "startTime", "kind", "plannedMinutes", "surface", "venu
 export type EditInput = Omit<NewSessionInput, "teamId">;
 export type EditBase = Partial<Record<keyof EditInput, string | number | null>>;
 
+/** The values a form for editing is opened with. */
+export const editBaseOf = (session: ListedSession): EditBase =>
+  Object.fromEntries(editable.map((field) => [field, session[field]]));
+
 /**
  * Edits what was planned, field by field. Staff only: a coach's word is attendance and whether it took place.
  * @param base the values the form was opened with

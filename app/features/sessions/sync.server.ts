@@ -3,7 +3,7 @@ import { mergeWarmUp } from "~/features/warm-ups/warm-ups.server";
 import { DomainError } from "~/platform/errors";
 import { type FieldChange, mergeFields } from "~/platform/merge-fields";
 import { once } from "~/platform/operations.server";
-import { type Scope, type Tx, write } from "~db/client.server";
+import { type Scope, sqlState, type Tx, write } from "~db/client.server";
 import { mergeAttendance, mergeHeadcount } from "./attendance.server";
 import { conflictOf, conflictsIn } from "./conflict";
 import {
@@ -22,6 +22,8 @@ import {
 } from "./sessions.server";
 import type { OperationAnswer } from "./sync";
 import type { Operation } from "./sync.schema";
+
+const uniqueViolation = "23505";
 
 type Fields = Readonly<Record<string, FieldChange>>;
 type Result = Record<string, unknown> & { agreed: string[] };
@@ -67,6 +69,8 @@ function refusal(id: string, error: unknown): OperationAnswer {
       code: "invalid",
       message: [...new Set(error.issues.map(({ message }) => message))].join(" "),
     };
+  if (sqlState(error) === uniqueViolation)
+    return { id, status: "refused", code: "conflict", message: "A session with this id exists already." };
   if (!(error instanceof DomainError)) throw error;
   if (error.code === "unavailable") throw error;
   const { existing } = error.details;

@@ -6,6 +6,7 @@ import type { Scope, Tx } from "~db/client.server";
 import type { availabilityCauses } from "~db/schema/codes";
 import { type Contribution, type DayState, fullState, stateFromContributions } from "./availability";
 import {
+  findChanges,
   findContributionsOn,
   findInjuryContributions,
   findLimitedAthletes,
@@ -211,3 +212,6 @@ export function requireFrom(change: AvailabilityChange, onsetDay: string) {
       fields: { fromDay: ["This day lies before the onset. Choose the day of the onset or a later one."] },
     });
 }
+
+/** Every change of these reasons in order of entry, those set aside included, with who set it. */
+export const listChanges = findChanges;

@@ -10,6 +10,19 @@ export type World = { plan: Plan; rules: readonly Rule[]; bands: Bands; today: s
 type Session = Plan["sessions"][number];
 type Share = { athleteId: string | null; aes: number; hours: number };
 
+/** What does not depend on the view is walked through once. */
+const walked = new WeakMap<World, { held: Held[]; lost: Map<string, number> }>();
+type Held = { session: Session; grade: string; shares: Share[] };
+
+function walk(world: World) {
+  const known = walked.get(world);
+  if (known) return known;
+  const held = world.plan.sessions.map((session) => ({ session, ...sharesOf(world, session) }));
+  const lost = new Map(world.plan.injuries.map((each) => [each.injuryId, daysLost(world, each.injuryId, each.onsetDay)]));
+  walked.set(world, { held, lost });
+  return { held, lost };
+}
+
 /** Age by walking from birthday to birthday; 29 February moves to 1 March in common years. */
 function age(born: string | null, day: string) {
   if (!born || born > day) return null;
@@ -79,7 +92,7 @@ function keyOf(world: World, by: RatesFilters["by"], who: string | null, day: st
 const inKinds = (filters: RatesFilters, kind: string) =>
   filters.sessions === "training-and-matches" ? kind === "training" || kind === "match" : kind === filters.sessions;
 
-function daysLost({ plan, today }: World, injuryId: string, onset: string) {
+export function daysLost({ plan, today }: World, injuryId: string, onset: string) {
   const reasons = new Set(plan.changes.filter((change) => change.injuryId === injuryId).map((c) => c.reasonId));
   let days = 0;
   for (let day = addDays(onset, 1); day <= today; day = addDays(day, 1))
@@ -97,7 +110,7 @@ export function countByHand(world: World, filters: RatesFilters): Brute {
     result[key] ??= { injuries: 0, recorded: 0, headcount: 0, estimated: 0 };
     return result[key];
   };
-  const held = plan.sessions.map((session) => ({ session, ...sharesOf(world, session) }));
+  const { held, lost } = walk(world);
   for (const { session, grade, shares } of held) {
     if (!inKinds(filters, session.kind)) continue;
     for (const share of shares) {
@@ -114,7 +127,7 @@ export function countByHand(world: World, filters: RatesFilters): Brute {
 
   for (const injury of plan.injuries) {
     if (injury.withdrawn || injury.outsideSport || injury.subsequence === "exacerbation") continue;
-    if (filters.injuries === "time-loss" && daysLost(world, injury.injuryId, injury.onsetDay) < 1) continue;
+    if (filters.injuries === "time-loss" && (lost.get(injury.injuryId) ?? 0) < 1) continue;
     const own = held.find(({ session }) => session.id === injury.sessionId);
     const gradual = injury.onset === "gradual";
     const day = gradual || !own ? injury.onsetDay : own.session.day;

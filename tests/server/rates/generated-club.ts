@@ -70,14 +70,14 @@ export function planClub(seed: number, today: string): Plan {
     return [
       { athleteId: id, teamId: first.id, from: addDays(season.from, -60), to: moves && addDays(moves, -1) },
       ...(moves ? [{ athleteId: id, teamId: second.id, from: moves, to: null }] : []),
-      ...(!moves && first.id !== second.id && random.chance(0.2)
+      ...(!moves && first.id !== second.id && random.chance(0.6)
         ? [{ athleteId: id, teamId: second.id, from: dayIn(), to: null }]
         : []),
     ];
   });
   const plan: Plan = { season, teams: teamRows, athletes: athleteRows, roster, sessions: [], parts: [], injuries: [], changes: [] };
   for (let n = 0; n < 220; n++) addSession(plan, random, dayIn());
-  for (let n = 0; n < 140; n++) addInjury(plan, random, dayIn(), today);
+  for (let n = 0; n < 200; n++) addInjury(plan, random, dayIn(), today);
   return plan;
 }
 
@@ -116,7 +116,7 @@ function addSession(plan: Plan, random: Random, day: string) {
 function addInjury(plan: Plan, random: Random, anyDay: string, today: string) {
   const injuryId = randomUUID();
   const athlete = random.pick(plan.athletes);
-  const session = random.chance(0.75) ? random.pick(plan.sessions) : null;
+  const session = random.chance(0.65) ? random.pick(plan.sessions) : null;
   // A session that ends after midnight injures on the next day.
   const onsetDay = session ? addDays(session.day, random.chance(0.1) ? 1 : 0) : anyDay;
   if (onsetDay > today) return;
@@ -129,7 +129,7 @@ function addInjury(plan: Plan, random: Random, anyDay: string, today: string) {
     outsideSport: !session && random.chance(0.3),
     bodyArea: "knee",
     side: "left",
-    onset: random.pick(["sudden", "sudden", "sudden_repetitive", "gradual", null]),
+    onset: random.pick(["sudden", "sudden", "sudden_repetitive", "gradual", "gradual", null]),
     subsequence: random.pick(["index", "index", "recurrent", "local", "other_site", "exacerbation", null]),
     withdrawn: random.chance(0.06),
     signs: [],

@@ -27,6 +27,8 @@ const USUAL_PORT = 3000;
  * @returns {Promise<number>}
  */
 export async function claimPort(command) {
+  // What is wrong with the settings is said before anything is installed.
+  otherServer();
   const wished = process.env.PORT || readEnvFile(ENV_FILE).own.PORT;
   const port = wished ? Number(wished) : await findFreePort(USUAL_PORT);
   if (!Number.isInteger(port) || port < 1 || port > 65_535) {

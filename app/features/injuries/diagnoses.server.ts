@@ -3,7 +3,8 @@ import type { Tx } from "~db/client.server";
 import { findDiagnoses, insertDiagnoses } from "./injuries.queries.server";
 import { type EditInput, furtherDiagnoses } from "./injuries.schema";
 
-const diagnosisPlace = (injuryId: string, version: number, position: number) => ({
+/** Where the sealed words of a further diagnosis belong. */
+export const diagnosisPlace = (injuryId: string, version: number, position: number) => ({
   table: "injury_diagnoses",
   column: "diagnosis",
   row: `${injuryId}/${position}`,

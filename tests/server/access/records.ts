@@ -1,6 +1,4 @@
-import { randomUUID } from "node:crypto";
-import { write } from "~db/client.server";
-import { imports } from "~db/schema";
+import { upload } from "~/features/imports/imports.server";
 import {
   type makeClub,
   makeCoachReport,
@@ -31,23 +29,8 @@ export async function recordsOf(club: Club, team = club.team, athlete = club.ath
     athleteId: athlete.id,
     guardianId: guardian.id,
   });
-  const importId = randomUUID();
-  await write(staff, (tx) =>
-    tx.insert(imports).values({
-      organisationId: organisation.id,
-      id: importId,
-      kind: "roster",
-      state: "cancelled",
-      fileName: "roster.csv",
-      fileHash: randomUUID(),
-      fileSize: 1,
-      reading: {},
-      mapping: {},
-      answers: {},
-      questions: [],
-      counts: {},
-    }),
-  );
+  const file = new File(["First name,Last name\nIola,Penhaligon\n"], "roster.csv");
+  const imported = await upload(club.scopes.trainer, "roster", file);
   const invitation = await makeInvitation(organisation, { email: "new@example.org", roles: ["coach"] });
   return {
     organisation: organisation.slug,
@@ -58,7 +41,7 @@ export async function recordsOf(club: Club, team = club.team, athlete = club.ath
     injury: injury.id,
     report: report.id,
     notice: told.notice.id,
-    import: importId,
+    import: imported.id,
     kind: "roster",
   };
 }

@@ -76,7 +76,11 @@ module.exports = {
       comment: "What the running product imports is a dependency, not a development dependency.",
       severity: "error",
       from: { path: "^(app|db|imports)/", pathNot: "^app/(serve\\.mjs|routes\\.ts)$" },
-      to: { dependencyTypes: ["npm-dev"], dependencyTypesNot: ["type-only"], pathNot: "node_modules/@types/" },
+      to: {
+        dependencyTypes: ["npm-dev"],
+        dependencyTypesNot: ["type-only"],
+        pathNot: "node_modules/@types/",
+      },
     },
     {
       name: "everything-resolves",

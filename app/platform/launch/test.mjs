@@ -8,8 +8,9 @@ import { prepareModules, whilePreparing } from "./serving.mjs";
 import { onStop } from "./stop.mjs";
 
 /**
- * `npm test`: every check of the project, from a bare clone. Its last line is `N passed, N failed`: the tests, and
- * one each for lint, types, architecture and build.
+ * `npm test`: every check of the project, from a bare clone. Its last line is `N passed, N failed`: the tests (those
+ * of the project `unit` twice, the second time in another time zone), and one each for lint, types, architecture and
+ * build.
  *
  * `npm test -- <pattern>` runs only the tests whose file matches (anything after `--` goes to Vitest), without lint,
  * types and architecture. The build stays, since the tests of the server and the browser run against it.
@@ -50,6 +51,10 @@ export async function main(args) {
   }
   counts.push(await whilePreparing("npm test", () => check("build", complaintOfBuild)));
   const tests = await runVitest(args, env);
+  if (everything) {
+    say("\nThe same once more at the other side of the date line, without the server and the browser:");
+    counts.push(await runVitest(["--project", "unit"], { ...env, TZ: "Pacific/Auckland" }));
+  }
   const passed = sum([...counts, tests], "passed");
   // A run in which no test ran has shown nothing, whatever the checks say.
   const failed = sum([...counts, tests], "failed") + (tests.passed + tests.failed === 0 ? 1 : 0);

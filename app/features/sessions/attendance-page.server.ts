@@ -98,7 +98,8 @@ async function saveAthletes(
     text: (name) => String(form.get(name) ?? ""),
   });
   if ("errors" in answer) return { errors: answer.errors, status: 400 };
-  await recordAttendance(scope, sessionId, operationId.parse(form.get("operationId")), answer.changes);
+  const id = operationId.parse(form.get("operationId"));
+  await recordAttendance(scope, sessionId, id, answer.changes, fullTime.data);
   return { saved: true };
 }
 

@@ -18,7 +18,7 @@ import {
   upsertParticipation,
 } from "./attendance.queries.server";
 import { conflictOf } from "./conflict";
-import { gradeOf } from "./session-state";
+import { fullTimeOf, gradeOf } from "./session-state";
 import { countParticipations, updateSession } from "./sessions.queries.server";
 import { participationSchema } from "./sessions.schema";
 import { holdSession, type ListedSession, needs } from "./sessions.server";
@@ -94,12 +94,14 @@ export type SavedAttendance = { agreed: string[]; tookPart: number };
 /**
  * Records parts of a session inside a transaction, field by field (`athlete:<id>`, a part or null). What becomes
  * recorded replaces a headcount, and shows that a planned session was held.
+ * @param lasted how long the session lasted in minutes, when the person said
  * @throws DomainError conflict with both values; invalid for an unknown athlete or bad minutes
  */
 export async function mergeAttendance(
   tx: Tx,
   sessionId: string,
   changes: Readonly<Record<string, FieldChange>>,
+  lasted: number | null = null,
 ): Promise<SavedAttendance> {
   needs(tx.scope, "attendance.write");
   const session = await holdSession(tx, sessionId);
@@ -118,7 +120,7 @@ export async function mergeAttendance(
     if (part) await upsertParticipation(tx, { sessionId, athleteId, ...part });
     else await deleteParticipation(tx, sessionId, athleteId);
   }
-  const tookPart = await settleAfterAttendance(tx, session);
+  const tookPart = await settleAfterAttendance(tx, session, lasted);
   if (writes.length > 0)
     await audit(tx, {
       action: "attendance.record",
@@ -149,14 +151,16 @@ async function requireKnown(
     await audit(tx, { action: "attendance.guest", subjectId: session.id, athleteId });
 }
 
-async function settleAfterAttendance(tx: Tx, session: ListedSession) {
+async function settleAfterAttendance(tx: Tx, session: ListedSession, lasted: number | null) {
   const rows = await findParticipations(tx, session.id);
   const tookPart = rows.filter(({ presence, minutes }) => presence === "took_part" && minutes > 0).length;
   const state = session.state === "planned" && tookPart > 0 ? "held" : session.state;
   const recorded = rows.length > 0;
   const headcount = recorded ? null : session.headcount;
+  const saysLength = lasted !== null && session.state !== "abandoned" && lasted !== fullTimeOf(session);
   await updateSession(tx, session.id, {
     state,
+    ...(saysLength ? { actualMinutes: lasted } : {}),
     headcount,
     headcountMinutes: recorded ? null : session.headcountMinutes,
     exposureGrade: gradeOf({ ...session, state, participations: rows.length, headcount }),
@@ -212,10 +216,11 @@ export const recordAttendance = (
   sessionId: string,
   operationId: string,
   changes: Readonly<Record<string, FieldChange>>,
+  lasted: number | null = null,
 ) =>
   write(scope, (tx) =>
-    once(tx, operationId, { kind: "attendance", sessionId, fields: changes }, () =>
-      mergeAttendance(tx, sessionId, changes),
+    once(tx, operationId, { kind: "attendance", sessionId, fields: changes, lasted }, () =>
+      mergeAttendance(tx, sessionId, changes, lasted),
     ),
   );
 

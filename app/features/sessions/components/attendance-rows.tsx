@@ -10,6 +10,9 @@ import { minutesName, presenceName } from "../attendance-form";
 
 const sentText = (sent: string | string[] | undefined) => (Array.isArray(sent) ? sent[0] : sent);
 
+/** A row begins anew when what is stored changes; what is typed in the others stays. */
+const rowKey = ({ id, part }: ShownAthlete) => `${id} ${part ? `${part.presence} ${part.minutes}` : ""}`;
+
 /** One athlete: the state of the day, their presence and minutes. */
 function AttendanceRow({ athlete }: { athlete: ShownAthlete }) {
   const { errors, values, idPrefix } = useContext(FormContext);
@@ -75,7 +78,7 @@ export function AttendanceRows({ athletes }: { athletes: readonly ShownAthlete[]
     <>
       <ul>
         {expected.map((athlete) => (
-          <AttendanceRow key={athlete.id} athlete={athlete} />
+          <AttendanceRow key={rowKey(athlete)} athlete={athlete} />
         ))}
       </ul>
       {unavailable.length > 0 ? (
@@ -89,7 +92,7 @@ export function AttendanceRows({ athletes }: { athletes: readonly ShownAthlete[]
           ) : null}
           <ul>
             {unavailable.map((athlete) => (
-              <AttendanceRow key={athlete.id} athlete={athlete} />
+              <AttendanceRow key={rowKey(athlete)} athlete={athlete} />
             ))}
           </ul>
         </>

@@ -25,7 +25,8 @@ export function mergeAnswers(before: Answers, form: FormData, definition: Import
   const answers: Answers = { ...before };
   const table = readTable(form, fields);
   Object.assign(answers, table);
-  const read = (key: "encoding" | "delimiter" | "headerLine") => table[key] !== undefined && table[key] !== before[key];
+  const read = (key: "encoding" | "delimiter" | "headerLine") =>
+    table[key] !== undefined && table[key] !== before[key];
   if (read("encoding") || read("delimiter") || read("headerLine")) delete answers.columns;
   else Object.assign(answers, readColumns(form, definition, fields));
   answers.teams = { ...before.teams, ...readTeams(form, fields) };
@@ -64,7 +65,11 @@ function readTable(form: FormData, fields: Record<string, string[]>): Answers {
   return answers;
 }
 
-function readColumns(form: FormData, definition: ImportDefinition, fields: Record<string, string[]>): Answers {
+function readColumns(
+  form: FormData,
+  definition: ImportDefinition,
+  fields: Record<string, string[]>,
+): Answers {
   const names = [...form.keys()].filter((name) => /^column\.\d+$/u.test(name));
   const teamId = text(form, "teamId");
   const answers: Answers = /^[0-9a-f-]{36}$/u.test(teamId) ? { teamId } : {};
@@ -110,7 +115,9 @@ function readTeam(form: FormData, of: (what: string) => string, fields: Record<s
   if (!sport) fields[of("sport")] = [`Choose the sport of ${name}.`];
   if (!sex) fields[of("sex")] = [`Choose who plays in ${name}.`];
   if (underAge !== null && !(Number.isInteger(underAge) && underAge >= 5 && underAge <= 25))
-    fields[of("underAge")] = ["Write the age group as a number of years from 5 to 25, or leave it empty for seniors."];
+    fields[of("underAge")] = [
+      "Write the age group as a number of years from 5 to 25, or leave it empty for seniors.",
+    ];
   if (!sport || !sex) return undefined;
   return { decision: "create", id: randomUUID(), name, sport, sex, underAge } as const;
 }

@@ -108,7 +108,12 @@ export function loadParticipations(tx: Tx, sessionIds: readonly string[]) {
 }
 
 /** How a record is written: its key, the columns of an insert, and those an update may change. */
-type Shape = { keys: string[]; columns: Record<string, string>; updates: string[]; extra?: Record<string, string> };
+type Shape = {
+  keys: string[];
+  columns: Record<string, string>;
+  updates: string[];
+  extra?: Record<string, string>;
+};
 
 const shapes: Record<BulkTable, Shape> = {
   teams: {
@@ -132,7 +137,14 @@ const shapes: Record<BulkTable, Shape> = {
   },
   guardians: {
     keys: ["id"],
-    columns: { id: "uuid", name: "text", email: "text", phone: "text", language: "text", emailStopped: "boolean" },
+    columns: {
+      id: "uuid",
+      name: "text",
+      email: "text",
+      phone: "text",
+      language: "text",
+      emailStopped: "boolean",
+    },
     updates: ["name", "email", "phone", "language"],
     extra: { email_stopped_at: `case when r."emailStopped" then t.email_stopped_at end` },
   },
@@ -183,7 +195,10 @@ const shapes: Record<BulkTable, Shape> = {
 };
 
 const snake = (name: string) => name.replace(/[A-Z]/gu, (letter) => `_${letter.toLowerCase()}`);
-const actorColumn: Partial<Record<BulkTable, string>> = { sessions: "created_by", participations: "recorded_by" };
+const actorColumn: Partial<Record<BulkTable, string>> = {
+  sessions: "created_by",
+  participations: "recorded_by",
+};
 /** Columns of a record that the table does not have. */
 const notStored = new Set(["emailStopped"]);
 
@@ -218,7 +233,11 @@ function unnest(records: readonly object[], columns: Record<string, string>) {
     ([name, type]) =>
       sql`${arrayText(records.map((record) => (record as Record<string, unknown>)[name]))}::${sql.raw(type)}[]`,
   );
-  const names = sql.raw(Object.keys(columns).map((name) => `"${name}"`).join(", "));
+  const names = sql.raw(
+    Object.keys(columns)
+      .map((name) => `"${name}"`)
+      .join(", "),
+  );
   return sql`unnest(${sql.join(arrays, sql`, `)}) as r(${names})`;
 }
 

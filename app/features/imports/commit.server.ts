@@ -81,7 +81,8 @@ async function commit(tx: Tx, record: ImportRecord) {
 function aliasesToRemember(record: ImportRecord) {
   const headings: MappedHeading[] = mappedHeadingSchema.array().parse(record.mapping.headings ?? []);
   const seen = new Map<string, number>();
-  for (const { header } of headings) seen.set(rememberedKey(header), (seen.get(rememberedKey(header)) ?? 0) + 1);
+  for (const { header } of headings)
+    seen.set(rememberedKey(header), (seen.get(rememberedKey(header)) ?? 0) + 1);
   return Object.fromEntries(
     headings
       .filter(({ confidence, header }) => confidence === "person" && rememberedKey(header) !== "")
@@ -92,14 +93,20 @@ function aliasesToRemember(record: ImportRecord) {
 
 async function giveBack(scope: MemberScope, id: string, error: unknown) {
   const outdated =
-    error instanceof PreviewOutdated || error instanceof RecordsMoved || collisions.has(sqlState(error) ?? "");
+    error instanceof PreviewOutdated ||
+    error instanceof RecordsMoved ||
+    collisions.has(sqlState(error) ?? "");
   if (!outdated) {
-    log.error({ import: id, error: error instanceof Error ? error.name : "unknown", sqlState: sqlState(error) }, "import failed");
+    log.error(
+      { import: id, error: error instanceof Error ? error.name : "unknown", sqlState: sqlState(error) },
+      "import failed",
+    );
     const failure = "The import stopped half-way, and nothing of it was kept. Try again.";
     await write(scope, (tx) => updateImport(tx, id, ["committing"], { state: "previewed", failure }));
     return;
   }
-  const failure = "Somebody changed records after this preview was made, so nothing was imported. This is the new preview.";
+  const failure =
+    "Somebody changed records after this preview was made, so nothing was imported. This is the new preview.";
   await write(scope, (tx) => updateImport(tx, id, ["committing"], { state: "uploaded", failure }));
   await prepareImport(scope, id);
 }

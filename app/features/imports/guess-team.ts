@@ -25,7 +25,8 @@ const sexWords: [TeamSex, RegExp][] = [
  */
 export function guessTeam(name: string): TeamGuess {
   const folded = foldText(name);
-  const find = <Code>(words: [Code, RegExp][]) => words.find(([, pattern]) => pattern.test(folded))?.[0] ?? null;
+  const find = <Code>(words: [Code, RegExp][]) =>
+    words.find(([, pattern]) => pattern.test(folded))?.[0] ?? null;
   const age = Number(/\b[mw]?u ?(\d{1,2})\b|\bunder (\d{1,2})\b/u.exec(folded)?.slice(1).find(Boolean));
   return { sport: find(sportWords), sex: find(sexWords), underAge: age >= 5 && age <= 25 ? age : null };
 }

@@ -70,7 +70,10 @@ export async function deleteChunks(tx: Tx, importId: string) {
 }
 
 export async function findImport(tx: Tx, id: string): Promise<ImportRecord | undefined> {
-  const [row] = await tx.select().from(imports).where(and(here(tx, id), visible(tx)));
+  const [row] = await tx
+    .select()
+    .from(imports)
+    .where(and(here(tx, id), visible(tx)));
   return row;
 }
 
@@ -211,7 +214,11 @@ export async function deleteRows(tx: Tx, importId: string) {
 }
 
 /** Stages rows in one statement: one array per column. */
-export async function insertRows(tx: Tx, importId: string, rows: readonly Omit<StagedRow, "organisationId" | "importId">[]) {
+export async function insertRows(
+  tx: Tx,
+  importId: string,
+  rows: readonly Omit<StagedRow, "organisationId" | "importId">[],
+) {
   if (rows.length === 0) return;
   await tx.execute(sql`
     insert into import_rows (organisation_id, import_id, line, cells, value, outcome, problems, changes, warnings)
@@ -270,7 +277,9 @@ export async function findRows(
     eq(importRows.organisationId, org(tx)),
     eq(importRows.importId, importId),
     filter.outcome ? eq(importRows.outcome, filter.outcome) : undefined,
-    filter.warned ? sql`jsonb_array_length(${importRows.warnings}) > 0 and ${importRows.outcome} <> 'rejected'` : undefined,
+    filter.warned
+      ? sql`jsonb_array_length(${importRows.warnings}) > 0 and ${importRows.outcome} <> 'rejected'`
+      : undefined,
     filter.doubtful ? sql`${importRows.problems} -> 0 ? 'candidates'` : undefined,
     filter.afterLine === undefined ? undefined : gt(importRows.line, filter.afterLine),
   );

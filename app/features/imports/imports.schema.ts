@@ -62,7 +62,11 @@ export const questionSchema = z.discriminatedUnion("kind", [
   /** The file could not be read as a person said it should be. */
   z.object({ kind: z.literal("reading"), reason: z.string(), mend: z.string() }),
   z.object({ kind: z.literal("columns"), reasons: z.array(z.string()) }),
-  z.object({ kind: z.literal("day-order"), order: z.enum(["ambiguous", "mixed"]), examples: z.array(z.string()) }),
+  z.object({
+    kind: z.literal("day-order"),
+    order: z.enum(["ambiguous", "mixed"]),
+    examples: z.array(z.string()),
+  }),
   z.object({ kind: z.literal("name-order"), example: z.string() }),
   z.object({
     kind: z.literal("teams"),

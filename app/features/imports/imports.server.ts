@@ -88,7 +88,9 @@ export function viewImport(scope: MemberScope, id: string, url: URL) {
     const record = await get(tx, id);
     const { counts } = record;
     const asked = rowsViews.find((view) => view === url.searchParams.get("rows"));
-    const filled = (["rejected", "update", "warned", "create"] as const).find((view) => (counts[view] ?? 0) > 0);
+    const filled = (["rejected", "update", "warned", "create"] as const).find(
+      (view) => (counts[view] ?? 0) > 0,
+    );
     const view = asked ?? filled ?? "unchanged";
     const page = Math.max(1, Math.trunc(Number(url.searchParams.get("page")) || 1));
     const rows = await findRows(tx, id, rowsFilter(view), rowsPageSize, (page - 1) * rowsPageSize);
@@ -128,7 +130,14 @@ type Problem = {
   cell: string;
   reason: string;
   mend: string;
-  candidates?: { id: string; name: string; number: string | null; dateOfBirth: string | null; sex: string; teams: string[] }[];
+  candidates?: {
+    id: string;
+    name: string;
+    number: string | null;
+    dateOfBirth: string | null;
+    sex: string;
+    teams: string[];
+  }[];
   separable?: boolean;
 };
 
@@ -179,7 +188,12 @@ export async function requestCommit(scope: MemberScope, id: string) {
     const record = await get(tx, id);
     if (record.state === "committing" || record.state === "committed") return false;
     const patch = { state: "committing", failure: null, progressDone: 0, committedBy: scope.personId };
-    if (!(await updateImport(tx, id, ["previewed"], patch))) throw moved();
+    if (!(await updateImport(tx, id, ["previewed"], patch))) {
+      // Pressed twice: the first press is at work, or done.
+      const { state } = await get(tx, id);
+      if (state === "committing" || state === "committed") return false;
+      throw moved();
+    }
     await enqueueWork(tx, id);
     return (record.counts.rows ?? 0) <= smallRowCount;
   });
@@ -243,7 +257,8 @@ export async function runImportJob({ organisationId, importId, personId }: Recor
   const door = await openDoor("job", organisationId);
   const scope = await resolveMemberScope(personId, door.slug);
   if (!scope || !may(scope.roles, "imports")) {
-    const failure = "Whoever started this import may no longer import, so it was stopped. Nothing of it was kept.";
+    const failure =
+      "Whoever started this import may no longer import, so it was stopped. Nothing of it was kept.";
     await write(door, (tx) =>
       updateImport(tx, importId, ["uploaded", "reading", "committing"], { state: "failed", failure }),
     );

@@ -24,7 +24,12 @@ import {
 } from "~imports/roster/definition";
 import { RosterDuplicateFinder } from "~imports/roster/duplicates";
 import type { DuplicateFinding, FileRow } from "./mapping/duplicates";
-import type { ColumnDefinition, ColumnMapping, HeaderMapping, RememberedHeadings } from "./mapping/map-headers";
+import type {
+  ColumnDefinition,
+  ColumnMapping,
+  HeaderMapping,
+  RememberedHeadings,
+} from "./mapping/map-headers";
 import type { RowResult } from "./mapping/read-row";
 
 export type ImportRowValue = RosterRow | ExposureRow;
@@ -44,7 +49,10 @@ export type ImportDefinition = {
   duplicates: () => (row: FileRow<ImportRowValue>) => DuplicateFinding[];
 };
 
-function keepKnown<Key extends string>(entries: Record<string, unknown>, columns: readonly ColumnDefinition<Key>[]) {
+function keepKnown<Key extends string>(
+  entries: Record<string, unknown>,
+  columns: readonly ColumnDefinition<Key>[],
+) {
   const known = new Set<string>(columns.map(({ key }) => key));
   return Object.fromEntries(Object.entries(entries).filter(([key]) => known.has(key)));
 }

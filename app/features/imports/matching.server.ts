@@ -5,8 +5,8 @@ import {
   carryOut,
   loadAthletes,
   loadEntries,
-  loadGuardianships,
   loadGuardians,
+  loadGuardianships,
   loadParticipations,
   loadSessions,
   loadTeams,
@@ -49,7 +49,13 @@ export async function openMatching(tx: Tx, record: ImportRecord): Promise<Matchi
     : openExposure(tx, teams, writes);
 }
 
-async function openRoster(tx: Tx, answers: Answers, teams: TeamBook, writes: PendingWrites, coversAll: boolean) {
+async function openRoster(
+  tx: Tx,
+  answers: Answers,
+  teams: TeamBook,
+  writes: PendingWrites,
+  coversAll: boolean,
+) {
   const athletes = new AthleteIndex(await loadAthletes(tx, tx.scope.today));
   const guardians = new GuardianBook(await loadGuardians(tx), await loadGuardianships(tx), writes);
   const fromDay = answers.fromDay ?? (await defaultFromDay(tx));

@@ -17,10 +17,17 @@ import {
 } from "./imports.queries.server";
 import { type Answers, answersSchema, type Question, type Reading } from "./imports.schema";
 import { definitions, type ImportDefinition } from "./kinds";
-import { batchSize, defaultFromDay, openMatching, type RowToMatch } from "./matching.server";
 import { type Decision, reject, type TeamRecord } from "./matching/records";
+import { batchSize, defaultFromDay, openMatching, type RowToMatch } from "./matching.server";
 import { reportProgress } from "./progress.server";
-import { Evidence, type FileReading, inspectFile, mapColumns, readFileRows, rowOptions } from "./read-file.server";
+import {
+  Evidence,
+  type FileReading,
+  inspectFile,
+  mapColumns,
+  readFileRows,
+  rowOptions,
+} from "./read-file.server";
 import type { ReadRow } from "./reading/read-rows";
 import { FileRefusal } from "./refusal";
 import { parseNamePart } from "./values/names";
@@ -98,7 +105,13 @@ async function prepare(tx: Tx, record: ImportRecord) {
   });
 }
 
-async function describe(tx: Tx, record: ImportRecord, file: FileReading, evidence: Evidence, answers: Answers) {
+async function describe(
+  tx: Tx,
+  record: ImportRecord,
+  file: FileReading,
+  evidence: Evidence,
+  answers: Answers,
+) {
   const { dialect, encoding, detected } = file;
   const reading: Reading = {
     encoding,
@@ -139,7 +152,10 @@ function ask(
 
 function findUnknownTeams(evidence: Evidence, answers: Answers, teams: readonly TeamRecord[]) {
   const known = new Set([...teams.map(({ nameKey }) => nameKey), ...Object.keys(answers.teams ?? {})]);
-  const unknown = new Map<string, { key: string; name: string; rows: number; guess: ReturnType<typeof guessTeam> }>();
+  const unknown = new Map<
+    string,
+    { key: string; name: string; rows: number; guess: ReturnType<typeof guessTeam> }
+  >();
   for (const [text, rows] of evidence.teams) {
     const parsed = parseNamePart(text, "team");
     const key = foldText(text);
@@ -151,11 +167,24 @@ function findUnknownTeams(evidence: Evidence, answers: Answers, teams: readonly 
   return [...unknown.values()];
 }
 
-type Judged = { line: number; cells: string[]; value: RowToMatch["value"] | null; decision: Decision | undefined };
+type Judged = {
+  line: number;
+  cells: string[];
+  value: RowToMatch["value"] | null;
+  decision: Decision | undefined;
+};
 
 /** Stages the rows in batches: parsed, checked against the file itself, compared with what is stored. */
 class Staging {
-  private readonly counts: Record<string, number> = { create: 0, update: 0, unchanged: 0, rejected: 0, warned: 0, doubtful: 0, rows: 0 };
+  private readonly counts: Record<string, number> = {
+    create: 0,
+    update: 0,
+    unchanged: 0,
+    rejected: 0,
+    warned: 0,
+    doubtful: 0,
+    rows: 0,
+  };
   private readonly findDuplicates: ReturnType<ImportDefinition["duplicates"]>;
   /** Warnings about lines that are staged already, by line. */
   private readonly late: Record<string, { column: string; cell: string; warning: string }[]> = {};
@@ -185,7 +214,12 @@ class Staging {
     }
     const result = this.definition.parseRow(cells, mapping, options);
     if (!result.ok) {
-      const decision: Decision = { outcome: "rejected", problems: result.rejected, changes: [], warnings: result.warnings };
+      const decision: Decision = {
+        outcome: "rejected",
+        problems: result.rejected,
+        changes: [],
+        warnings: result.warnings,
+      };
       this.pending.push({ line, cells, value: null, decision });
       return;
     }
@@ -196,7 +230,7 @@ class Staging {
       if (finding.outcome !== "doubtful") continue;
       const warning = { column: "", cell: "", warning: finding.warning };
       if (finding.lineNumber === line) this.parseWarnings.get(line)?.push(warning);
-      else (this.late[finding.lineNumber] ??= []).push(warning);
+      else this.late[finding.lineNumber] = [...(this.late[finding.lineNumber] ?? []), warning];
     }
     const decision = refused?.outcome === "rejected" ? reject(refused.rejection, result.warnings) : undefined;
     this.pending.push({ line, cells, value: decision ? null : result.value, decision });
@@ -225,7 +259,11 @@ class Staging {
       const { outcome, problems, changes, warnings } = decision ?? decided.get(line) ?? reject(unread);
       const all = decision ? warnings : [...(this.parseWarnings.get(line) ?? []), ...warnings];
       this.parseWarnings.delete(line);
-      this.count(outcome, all.length > 0 || line in this.late, problems.some((problem) => problem.candidates));
+      this.count(
+        outcome,
+        all.length > 0 || line in this.late,
+        problems.some((problem) => problem.candidates),
+      );
       return { line, cells, value, outcome, problems, changes, warnings: all };
     });
     await insertRows(this.tx, this.record.id, staged);
@@ -243,4 +281,10 @@ class Staging {
   }
 }
 
-const unread = { column: "", cell: "", code: "row.unread", reason: "The row was not read.", mend: "Upload the file again." };
+const unread = {
+  column: "",
+  cell: "",
+  code: "row.unread",
+  reason: "The row was not read.",
+  mend: "Upload the file again.",
+};

@@ -72,10 +72,19 @@ export function mapColumns(
     const key = answered ? (answered[index] ?? null) : (automatic?.key ?? null);
     const same = key === (automatic?.key ?? null);
     const confidence = answered && !same ? "person" : (automatic?.confidence ?? "none");
-    return { index, header: text, key, confidence: answered && confidence === "close" ? "person" : confidence };
+    return {
+      index,
+      header: text,
+      key,
+      confidence: answered && confidence === "close" ? "person" : confidence,
+    };
   });
   const mapping = answered ? mappingOf(answered) : found.mapping;
-  return { mapping: definedOnly(mapping), headings, doubts: answered ? [] : describeDoubts(found, definition) };
+  return {
+    mapping: definedOnly(mapping),
+    headings,
+    doubts: answered ? [] : describeDoubts(found, definition),
+  };
 }
 
 function definedOnly(mapping: Partial<Record<string, number>>) {
@@ -89,7 +98,10 @@ function describeDoubts(found: HeaderMapping<string>, definition: ImportDefiniti
   const close = found.mapped.filter(({ confidence }) => confidence === "close");
   return [
     ...found.problems.map(({ reason, mend }) => `${reason} ${mend}`),
-    ...close.map(({ header, key }) => `“${header}” looks like “${labels.get(key)}”: confirm it, or choose another column.`),
+    ...close.map(
+      ({ header, key }) =>
+        `“${header}” looks like “${labels.get(key)}”: confirm it, or choose another column.`,
+    ),
   ];
 }
 

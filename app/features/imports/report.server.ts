@@ -5,8 +5,22 @@ import type { MemberScope } from "../accounts/scope.server";
 import { findImport, findRows } from "./imports.queries.server";
 
 const pageSize = 5000;
-const outcomeWords = { create: "new", update: "changed", unchanged: "unchanged", rejected: "rejected" } as const;
-type Told = { column?: string; cell?: string; reason?: string; mend?: string; warning?: string; field?: string; before?: string | null; after?: string | null };
+const outcomeWords = {
+  create: "new",
+  update: "changed",
+  unchanged: "unchanged",
+  rejected: "rejected",
+} as const;
+type Told = {
+  column?: string;
+  cell?: string;
+  reason?: string;
+  mend?: string;
+  warning?: string;
+  field?: string;
+  before?: string | null;
+  after?: string | null;
+};
 
 /**
  * The report of an import: one line per row of the file and thing to say about it, with the row's own cells at the
@@ -34,12 +48,26 @@ export async function openReport(scope: MemberScope, id: string) {
   return { stream, fileName: `${record.fileName.replace(/\.[^.]*$/u, "")} - report.csv` };
 }
 
-function reportRow({ line, outcome, cells, problems, changes, warnings }: Awaited<ReturnType<typeof findRows>>[number]) {
+function reportRow({
+  line,
+  outcome,
+  cells,
+  problems,
+  changes,
+  warnings,
+}: Awaited<ReturnType<typeof findRows>>[number]) {
   const word = outcomeWords[outcome as keyof typeof outcomeWords];
   const told: CsvValue[][] = [
     ...(problems as Told[]).map((one) => [one.column, one.cell, one.reason, one.mend, "", ""]),
     ...(changes as Told[]).map((one) => [one.field, "", "", "", one.before ?? "", one.after ?? ""]),
-    ...(warnings as Told[]).map((one) => [one.column, one.cell, one.warning, "Have a look; it is imported.", "", ""]),
+    ...(warnings as Told[]).map((one) => [
+      one.column,
+      one.cell,
+      one.warning,
+      "Have a look; it is imported.",
+      "",
+      "",
+    ]),
   ];
   const lines = told.length > 0 ? told : [["", "", "", "", "", ""]];
   return lines.map((one): CsvValue[] => [line, word, ...one, ...cells]);

@@ -30,7 +30,10 @@ function tooLarge() {
 export function checkUploadLength(request: Request) {
   const declared = request.headers.get("content-length");
   if (declared === null || !/^\d+$/u.test(declared))
-    throw new DomainError("invalid", "The length of the upload is not declared. Send the file from this page.");
+    throw new DomainError(
+      "invalid",
+      "The length of the upload is not declared. Send the file from this page.",
+    );
   if (Number(declared) > readingLimits.bytes + formBytes) throw tooLarge();
 }
 

@@ -1,6 +1,5 @@
-import { notFound } from "~/platform/errors";
+import { importProgress } from "~/features/imports/imports.server";
+import { apiLoader } from "~/middleware/handlers.server";
 
-// PLACEHOLDER: replaced by the feature's own route.
-export async function loader() {
-  throw notFound();
-}
+/** State of an import and how many of its rows are done, for the page that waits for it. */
+export const loader = apiLoader(({ scope, id }) => importProgress(scope, id("import")));

@@ -1,11 +1,6 @@
 import { readFile } from "node:fs/promises";
-import {
-  answerImport,
-  requestCommit,
-  upload,
-  viewImport,
-} from "~/features/imports/imports.server";
 import type { MemberScope } from "~/features/accounts/scope.server";
+import { answerImport, requestCommit, upload, viewImport } from "~/features/imports/imports.server";
 import type { ImportKind } from "~db/schema/codes";
 import { maintenance } from "../../harness";
 
@@ -58,7 +53,12 @@ export function makeTeams(view: Awaited<ReturnType<typeof uploadAndView>>) {
 }
 
 /** The whole way: upload, make the teams asked for, import. */
-export async function importFile(scope: MemberScope, kind: ImportKind, file: File, extra: Record<string, string> = {}) {
+export async function importFile(
+  scope: MemberScope,
+  kind: ImportKind,
+  file: File,
+  extra: Record<string, string> = {},
+) {
   const view = await uploadAndView(scope, kind, file);
   const ready =
     view.state === "needs_answers" ? await answer(scope, view.id, { ...makeTeams(view), ...extra }) : view;

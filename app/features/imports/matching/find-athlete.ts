@@ -54,7 +54,8 @@ export class AthleteIndex {
 export function findAthlete(row: RosterRow, index: AthleteIndex, answer?: DoubtAnswer): AthleteMatch {
   const match = judge(row, index);
   if (match.kind !== "doubt") return match;
-  if (match.candidates.some(({ visible }) => !visible)) return { kind: "problem", problem: outsideOwnTeams(row) };
+  if (match.candidates.some(({ visible }) => !visible))
+    return { kind: "problem", problem: outsideOwnTeams(row) };
   if (answer && "same" in answer) {
     const chosen = match.candidates.find(({ id }) => id === answer.same);
     if (chosen) return { kind: "known", athlete: chosen };
@@ -134,7 +135,9 @@ function judgeNewNumber(
 function judgeNameless(row: RosterRow, twins: AthleteRecord[], unborn: AthleteRecord[]): AthleteMatch {
   const [twin] = twins;
   if (twins.length === 1 && twin)
-    return twin.visible ? { kind: "known", athlete: twin } : { kind: "problem", problem: outsideOwnTeams(row) };
+    return twin.visible
+      ? { kind: "known", athlete: twin }
+      : { kind: "problem", problem: outsideOwnTeams(row) };
   const candidates = twins.length > 1 ? twins : unborn;
   if (candidates.length === 0) return { kind: "new" };
   return {

@@ -2,7 +2,13 @@ import { randomUUID } from "node:crypto";
 import { foldText } from "~/platform/fold-text";
 import type { RosterRow } from "~imports/roster/definition";
 import type { RowWarning } from "../mapping/read-row";
-import type { AthleteRecord, FieldChange, GuardianRecord, GuardianshipRecord, PendingWrites } from "./records";
+import type {
+  AthleteRecord,
+  FieldChange,
+  GuardianRecord,
+  GuardianshipRecord,
+  PendingWrites,
+} from "./records";
 
 type Given = NonNullable<RosterRow["guardian"]>;
 export type GuardianOutcome = { made: "guardian" | "link" | null; changed: boolean };
@@ -36,14 +42,20 @@ export class GuardianBook {
     this.writes = writes;
   }
 
-  apply(athlete: AthleteRecord, given: Given, changes: FieldChange[], warnings: RowWarning[]): GuardianOutcome {
+  apply(
+    athlete: AthleteRecord,
+    given: Given,
+    changes: FieldChange[],
+    warnings: RowWarning[],
+  ): GuardianOutcome {
     if (!given.name && !given.email && !given.phone) return { made: null, changed: false };
     const link = this.find(athlete, given);
     const guardian = link && this.byId.get(link.guardianId);
     if (!link || !guardian) return this.make(athlete, given, changes);
     this.claimed.add(link);
     if (link.ended) {
-      const warning = "This guardian was ended for the athlete and stays so: change it on the athlete’s page.";
+      const warning =
+        "This guardian was ended for the athlete and stays so: change it on the athlete’s page.";
       warnings.push({ column: "Guardian’s name", cell: given.name ?? given.email ?? "", warning });
       return { made: null, changed: false };
     }
@@ -60,9 +72,7 @@ export class GuardianBook {
         return guardian !== undefined && test(guardian, given);
       });
     const byAddress = () =>
-      own.find(
-        (link) => !this.isTaken(link, given) && hasAddress(this.byId.get(link.guardianId), given),
-      );
+      own.find((link) => !this.isTaken(link, given) && hasAddress(this.byId.get(link.guardianId), given));
     return by(hasBoth) ?? by(hasName) ?? byAddress() ?? by(hasOnlyPhone);
   }
 

@@ -107,7 +107,10 @@ export class RosterMatcher {
       changes.push({ field: label, before: athlete[key], after: next });
       athlete[key] = next;
     };
-    for (const [key, label] of [["givenName", "Given name"], ["familyName", "Family name"]] as const) {
+    for (const [key, label] of [
+      ["givenName", "Given name"],
+      ["familyName", "Family name"],
+    ] as const) {
       if (lostLetter.test(row[key]) && !lostLetter.test(athlete[key])) {
         const warning = "The stored name is kept, since this one seems to have lost a letter.";
         warnings.push({ column: label, cell: row[key], warning });
@@ -118,7 +121,11 @@ export class RosterMatcher {
     set("sex", "Sex", row.sex === "not_stated" ? null : row.sex);
     set("dominantLeg", "Dominant leg", row.dominantLeg === "unknown" ? null : row.dominantLeg);
     if (athlete.archived)
-      warnings.push({ column: "Family name", cell: row.familyName, warning: "This athlete is archived and stays so." });
+      warnings.push({
+        column: "Family name",
+        cell: row.familyName,
+        warning: "This athlete is archived and stays so.",
+      });
     if (changes.length === 0) return changes;
     athlete.nameKey = normaliseName(`${athlete.givenName} ${athlete.familyName}`);
     this.state.athletes.noteNumber(athlete);
@@ -186,7 +193,9 @@ export class RosterMatcher {
     row: RosterRow,
     { candidates, separable, reason }: { candidates: AthleteRecord[]; separable: boolean; reason: string },
   ) {
-    const choice = separable ? "the same athlete or another one" : "the same athlete; if not, correct the number";
+    const choice = separable
+      ? "the same athlete or another one"
+      : "the same athlete; if not, correct the number";
     return {
       column: row.number ? "Number" : "Family name",
       cell: row.number ?? row.familyName,

@@ -72,7 +72,8 @@ export class SessionBook {
 
   countHeads(session: SessionRecord, row: HeadcountExposure, warnings: RowWarning[]): FieldChange[] {
     if (session.exposureGrade === "recorded") {
-      const warning = "The athletes of this session are recorded one by one already: the headcount is not needed.";
+      const warning =
+        "The athletes of this session are recorded one by one already: the headcount is not needed.";
       warnings.push({ column: "Players", cell: String(row.players), warning });
       return [];
     }
@@ -180,7 +181,8 @@ const shown = [
 ] as const;
 
 function describeChanges(before: SessionRecord, after: SessionRecord): FieldChange[] {
-  const text = (value: string | number | null) => (value === null ? null : String(value).replaceAll("_", " "));
+  const text = (value: string | number | null) =>
+    value === null ? null : String(value).replaceAll("_", " ");
   return shown
     .filter(([key]) => before[key] !== after[key])
     .map(([key, field]) => ({ field, before: text(before[key]), after: text(after[key]) }));

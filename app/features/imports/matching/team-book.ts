@@ -51,7 +51,12 @@ export class TeamBook {
       return { team };
     }
     if (answer?.decision === "leave") {
-      return problem(name, "team.left-out", `The team ${quoteCell(name)} is left out, as you decided.`, "Nothing to do, or change your answer about this team.");
+      return problem(
+        name,
+        "team.left-out",
+        `The team ${quoteCell(name)} is left out, as you decided.`,
+        "Nothing to do, or change your answer about this team.",
+      );
     }
     if (!this.coversAll) return notOwn(name);
     return problem(

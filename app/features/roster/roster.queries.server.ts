@@ -1,6 +1,8 @@
-import { and, asc, count, desc, eq, isNotNull, isNull, type SQL, sql } from "drizzle-orm";
+import { and, asc, count, desc, eq, isNotNull, isNull, not, type SQL, sql } from "drizzle-orm";
 import type { Tx } from "~db/client.server";
+import { qualified } from "~db/qualified";
 import { actionAlerts, athletes, guardians, guardianships, rosterEntries, teams } from "~db/schema";
+import type { rosterViews } from "./roster.schema";
 import { visibleAthletes } from "./visibility.server";
 
 const org = (tx: Tx) => tx.scope.organisationId;
@@ -16,12 +18,14 @@ function matches(words: readonly string[], raw: string): SQL | undefined {
 const currentTeams = (tx: Tx, day: string) => sql<string | null>`(
   select string_agg(t.name, ', ' order by t.name)
   from roster_entries r join teams t on t.organisation_id = r.organisation_id and t.id = r.team_id
-  where r.organisation_id = ${org(tx)}::uuid and r.athlete_id = ${athletes.id}
+  where r.organisation_id = ${org(tx)}::uuid and r.athlete_id = ${qualified(athletes.id)}
     and r.from_day <= ${day}::date and coalesce(r.to_day, 'infinity'::date) >= ${day}::date)`;
 
-const onTeam = (tx: Tx, teamId: string, day: string) => sql`exists (
+/** @param teamId null: any team */
+const onTeam = (tx: Tx, teamId: string | null, day: string) => sql`exists (
   select 1 from roster_entries r
-  where r.organisation_id = ${org(tx)}::uuid and r.athlete_id = ${athletes.id} and r.team_id = ${teamId}::uuid
+  where r.organisation_id = ${org(tx)}::uuid and r.athlete_id = ${qualified(athletes.id)}
+    and (${teamId}::uuid is null or r.team_id = ${teamId}::uuid)
     and r.from_day <= ${day}::date and coalesce(r.to_day, 'infinity'::date) >= ${day}::date)`;
 
 /** Athletes for a search-as-you-type field, visible ones only. */
@@ -51,7 +55,7 @@ export function searchAthletes(tx: Tx, words: readonly string[], raw: string, li
 export type RosterFilter = {
   words: readonly string[];
   raw: string;
-  show: "current" | "visitors" | "archived";
+  show: (typeof rosterViews)[number];
   teamId: string | null;
 };
 
@@ -60,7 +64,9 @@ export async function listAthletes(tx: Tx, filter: RosterFilter, page: number, p
     eq(athletes.organisationId, org(tx)),
     filter.show === "archived" ? isNotNull(athletes.archivedAt) : isNull(athletes.archivedAt),
     filter.show === "visitors" ? eq(athletes.visitor, true) : undefined,
-    filter.teamId ? onTeam(tx, filter.teamId, tx.scope.today) : undefined,
+    filter.show === "current" ? onTeam(tx, filter.teamId, tx.scope.today) : undefined,
+    filter.show === "no-team" ? not(onTeam(tx, null, tx.scope.today)) : undefined,
+    filter.show === "no-team" ? eq(athletes.visitor, false) : undefined,
     matches(filter.words, filter.raw),
     visibleAthletes(tx.scope, athletes.id),
   );

@@ -108,9 +108,12 @@ export const alertSchema = z.object({
   agreedWith: z.string().trim().min(1, "Enter who in the family agreed that coaches see this.").max(120),
 });
 
+/** On a team today; on none; visitors; archived. */
+export const rosterViews = ["current", "no-team", "visitors", "archived"] as const;
+
 /** What the roster list and the athlete search ask for. */
 export const rosterQuerySchema = z.object({
   q: z.string().trim().max(100).default(""),
   page: z.coerce.number().int().min(1).catch(1).default(1),
-  show: z.enum(["current", "visitors", "archived"]).catch("current").default("current"),
+  show: z.enum(rosterViews).catch("current").default("current"),
 });

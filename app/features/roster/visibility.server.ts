@@ -1,5 +1,9 @@
-import { type SQL, sql } from "drizzle-orm";
+import { Column, is, type SQL, sql } from "drizzle-orm";
 import type { Scope } from "~db/client.server";
+import { qualified } from "~db/qualified";
+
+/** Named with its table: inside the rule's sub-selects a bare "id" would mean another table's. */
+const named = (column: SQL | Column) => (is(column, Column) ? qualified(column) : column);
 
 /** Days for which a visitor stays visible to the teams they trained with. */
 const visitorDays = 14;
@@ -16,14 +20,15 @@ const idList = (ids: readonly string[]) =>
  * their sessions within two weeks. Use it in every query that shows athletes.
  * @param athleteId the SQL column holding the athlete's id
  */
-export function visibleAthletes(scope: Scope, athleteId: SQL | { getSQL(): SQL }, day = scope.today): SQL {
+export function visibleAthletes(scope: Scope, athleteId: SQL | Column, day = scope.today): SQL {
   if (scope.teams === "all") return sql`true`;
   if (scope.teams.length === 0) return sql`false`;
   const teams = idList(scope.teams);
+  const athlete = named(athleteId);
   return sql`(exists (
       select 1 from roster_entries visible_entry
       where visible_entry.organisation_id = ${scope.organisationId}::uuid
-        and visible_entry.athlete_id = ${athleteId}
+        and visible_entry.athlete_id = ${athlete}
         and visible_entry.team_id in ${teams}
         and visible_entry.from_day <= ${day}::date
         and coalesce(visible_entry.to_day, 'infinity'::date) >= ${day}::date
@@ -32,7 +37,7 @@ export function visibleAthletes(scope: Scope, athleteId: SQL | { getSQL(): SQL }
       join sessions visible_session
         on visible_session.organisation_id = visible_part.organisation_id and visible_session.id = visible_part.session_id
       where visible_part.organisation_id = ${scope.organisationId}::uuid
-        and visible_part.athlete_id = ${athleteId}
+        and visible_part.athlete_id = ${athlete}
         and visible_session.team_id in ${teams}
         and visible_session.day between ${day}::date - ${visitorDays}::int and ${day}::date
     ))`;
@@ -43,8 +48,8 @@ export const coversTeam = (scope: Scope, teamId: string) =>
   scope.teams === "all" || scope.teams.includes(teamId);
 
 /** SQL: a team id column holds one of the scope's own teams. */
-export function ownTeams(scope: Scope, teamId: SQL | { getSQL(): SQL }): SQL {
+export function ownTeams(scope: Scope, teamId: SQL | Column): SQL {
   if (scope.teams === "all") return sql`true`;
   if (scope.teams.length === 0) return sql`false`;
-  return sql`${teamId} in ${idList(scope.teams)}`;
+  return sql`${named(teamId)} in ${idList(scope.teams)}`;
 }

@@ -30,25 +30,34 @@ export function readToday(scope: MemberScope, url: URL) {
     const limited = (await listNotFullyAvailable(tx, scope, scope.today)).filter(
       ({ teams }) => teams.length === 0 || teams.some(({ id }) => teamIds.includes(id)),
     );
-    return { sessions, limited, tasks: await listTasks(tx, scope, teamIds) };
+    const since = viewing.season?.startsOn ?? scope.today;
+    return { sessions, limited, tasks: await listTasks(tx, scope, teamIds, since) };
   });
 }
 
-/** What waits for this person, by what their roles may do. */
-async function listTasks(tx: Tx, scope: MemberScope, teamIds: readonly string[]): Promise<TaskGroup[]> {
+/**
+ * What waits for this person, by what their roles may do.
+ * @param since the season's first day: what was left open in earlier seasons stands in the lists, not here
+ */
+async function listTasks(
+  tx: Tx,
+  scope: MemberScope,
+  teamIds: readonly string[],
+  since: string,
+): Promise<TaskGroup[]> {
   const base = `/${scope.slug}`;
   const clinical = may(scope.roles, "injuries.read");
   return [
-    ...(clinical ? await clinicalTasks(tx, base) : []),
-    ...(may(scope.roles, "attendance.write") ? await sessionTasks(tx, scope, teamIds, base) : []),
+    ...(clinical ? await clinicalTasks(tx, base, since) : []),
+    ...(may(scope.roles, "attendance.write") ? await sessionTasks(tx, scope, teamIds, since) : []),
     ...(may(scope.roles, "imports") ? await importTasks(tx, base) : []),
   ];
 }
 
-async function clinicalTasks(tx: Tx, base: string): Promise<TaskGroup[]> {
+async function clinicalTasks(tx: Tx, base: string, since: string): Promise<TaskGroup[]> {
   const reports = await listOpenCoachReports(tx);
   const notices = await listNoticesNeedingAction(tx);
-  const gaps = await listGaps(tx);
+  const gaps = (await listGaps(tx)).filter(({ onsetDay }) => onsetDay >= since);
   const untouched = await listUntouched(tx);
   const lineOf = (row: (typeof gaps)[number]) =>
     `${sentenceCase(bodyAreaWords[row.bodyArea])}${row.side === "left" || row.side === "right" ? `, ${sideWords[row.side]}` : ""}, ${formatDay(row.onsetDay)}`;
@@ -134,9 +143,10 @@ async function sessionTasks(
   tx: Tx,
   scope: MemberScope,
   teamIds: readonly string[],
-  base: string,
+  since: string,
 ): Promise<TaskGroup[]> {
-  const rows = await listUnconfirmed(tx, scope, teamIds);
+  const base = `/${scope.slug}`;
+  const rows = (await listUnconfirmed(tx, scope, teamIds)).filter(({ day }) => day >= since);
   return groupOf(
     "sessions",
     "Sessions to confirm",

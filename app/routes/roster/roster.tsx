@@ -80,8 +80,8 @@ export default function Roster({ loaderData }: Route.ComponentProps) {
   const [params] = useSearchParams();
   const sentence =
     query.show === "current"
-      ? `${total} ${total === 1 ? "athlete" : "athletes"}${team ? ` on ${team.name}` : ""}`
-      : `${total} ${showWords[query.show]}`;
+      ? `${total} ${total === 1 ? "athlete" : "athletes"} on ${team ? team.name : "the teams"} today`
+      : `${total} ${total === 1 ? "athlete" : "athletes"}, ${showWords[query.show]}`;
   return (
     <Page>
       <PageHeading

@@ -33,8 +33,8 @@ function Choice({
 }) {
   return (
     <details className="relative inline-block" name="scope">
-      <summary className="editable-word inline-flex min-h-target cursor-pointer list-none items-center">
-        {label}
+      <summary className="inline-flex min-h-target cursor-pointer list-none items-center">
+        <span className="editable-word">{label}</span>
       </summary>
       <ul className="on-light absolute left-0 z-30 max-h-[60vh] w-64 overflow-y-auto rounded-md border border-line bg-paper p-1 text-ink shadow-float">
         {options.map(({ to, text, current }) => (
@@ -58,17 +58,17 @@ export function ScopeSentence({ organisation, several, seasons, season, teams, t
   const changed = useChanged();
   const allWords = coversAll ? "all teams" : teams.length === 1 ? (teams[0]?.name ?? "") : "my teams";
   return (
-    <div className="flex flex-wrap items-center gap-x-1.5">
+    <div>
       {several ? (
-        <Link to="/organisations" className="editable-word inline-flex min-h-target items-center">
-          {organisation}
+        <Link to="/organisations" className="inline-flex min-h-target items-center text-on-bar no-underline">
+          <span className="editable-word">{organisation}</span>
         </Link>
       ) : (
         <span>{organisation}</span>
       )}
       {season ? (
         <>
-          <span>, season</span>
+          {", season "}
           <Choice
             key={`season-${season.id}`}
             label={season.name}
@@ -82,7 +82,7 @@ export function ScopeSentence({ organisation, several, seasons, season, teams, t
       ) : null}
       {teams.length > 0 ? (
         <>
-          <span>,</span>
+          {", "}
           {teams.length === 1 ? (
             <span>{allWords}</span>
           ) : (

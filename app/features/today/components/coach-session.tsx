@@ -37,11 +37,12 @@ export function CoachSession({ session, base, today }: Props) {
       </EmptyState>
     );
   const { id, teamName, day, startTime, kind, surface, venueName, warmUpOutcome } = session;
+  const later = day > today;
   const when = [day === today ? "Today" : formatDay(day, "weekday"), startTime].filter(Boolean).join(", ");
   const what = [sentenceCase(sessionKindWords[kind]), surface ? surfaceWords[surface] : null, venueName];
   return (
     <section className="mb-2 max-w-[36rem]">
-      <p className="text-soft">{when}</p>
+      <p className="text-soft">{later ? `Nothing is planned today. Next: ${when}` : when}</p>
       <h2 className="text-xl">{teamName}</h2>
       <p className="mb-4">{what.filter(Boolean).join(", ")}</p>
       {session.status === "cancelled" ? (
@@ -58,12 +59,25 @@ export function CoachSession({ session, base, today }: Props) {
           ) : null}
           {warmUpOutcome === "skipped" ? <p className="mb-4 font-medium">No warm-up was done.</p> : null}
           <div className="flex flex-col gap-4 sm:flex-row">
-            <ButtonLink to={`${base}/sessions/${id}/warm-up`} look="primary" size="large">
-              {warmUpOutcome ? "Open the warm-up" : "Tick off the warm-up"}
-            </ButtonLink>
-            <ButtonLink to={`${base}/sessions/${id}/attendance`} size="large">
-              {session.tookPart > 0 ? `Who took part: ${session.tookPart}` : "Who took part"}
-            </ButtonLink>
+            {later ? (
+              <>
+                <ButtonLink to={`${base}/sessions/${id}/warm-up`} size="large">
+                  See its warm-up
+                </ButtonLink>
+                <ButtonLink to={`${base}/sessions/new`} size="large">
+                  Add a session today
+                </ButtonLink>
+              </>
+            ) : (
+              <>
+                <ButtonLink to={`${base}/sessions/${id}/warm-up`} look="primary" size="large">
+                  {warmUpOutcome ? "Open the warm-up" : "Tick off the warm-up"}
+                </ButtonLink>
+                <ButtonLink to={`${base}/sessions/${id}/attendance`} size="large">
+                  {session.tookPart > 0 ? `Who took part: ${session.tookPart}` : "Who took part"}
+                </ButtonLink>
+              </>
+            )}
           </div>
         </>
       )}

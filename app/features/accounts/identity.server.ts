@@ -36,6 +36,7 @@ function makeIdentity() {
     },
     emailVerification: {
       sendOnSignUp: true,
+      sendOnSignIn: true,
       expiresIn: 24 * 3600,
       sendVerificationEmail: async ({ user, token }) =>
         sendIdentityMail("verify-email", user, `${APP_ORIGIN}/verify-email?token=${token}`),

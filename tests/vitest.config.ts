@@ -26,6 +26,8 @@ export default defineConfig({
       { extends: true, test: { name: "mail", include: [mail] } },
       {
         extends: true,
+        // The server project runs as production does, where React has no development JSX.
+        oxc: { jsx: { runtime: "automatic", development: false } },
         test: {
           name: "server",
           include: ["tests/server/**/*.test.ts"],

@@ -47,10 +47,7 @@ const callSchema = z.object({
 
 const toldWhat = (call: { callOutcome: CallOutcome; callTold: string }) =>
   call.callOutcome === "no_answer" || call.callTold.length > 0;
-const toldWhatIssue = {
-  path: ["callTold"],
-  message: "Write down what you told them: it is the record of the call.",
-};
+const toldNothing = "Write down what you told them: it is the record of the call.";
 
 /** A call in the form that sends: asked for first where it is urgent, else left out. */
 export const sendSchema = wordsSchema
@@ -72,7 +69,7 @@ export const sendSchema = wordsSchema
     if (input.urgency === "urgent" || begun) {
       const called = callSchema.safeParse(input);
       for (const { path, message } of called.error?.issues ?? []) issue(String(path[0]), message);
-      if (called.success && !toldWhat(called.data)) issue("callTold", toldWhatIssue.message);
+      if (called.success && !toldWhat(called.data)) issue("callTold", toldNothing);
     }
   });
 export type SendInput = z.output<typeof sendSchema>;
@@ -81,7 +78,7 @@ export type SendInput = z.output<typeof sendSchema>;
 export const logCallSchema = callSchema
   .omit({ callGuardian: true })
   .extend({ operation: z.uuid("Open the page again before saving.") })
-  .refine(toldWhat, toldWhatIssue);
+  .refine(toldWhat, { path: ["callTold"], message: toldNothing });
 
 export const resendSchema = z.object({ operation: z.uuid("Open the page again before sending.") });
 

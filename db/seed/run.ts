@@ -8,15 +8,36 @@
  * that stands in the source.
  */
 import { parseArgs } from "node:util";
-import { closeIdentity } from "~/features/accounts/identity.server";
-import { closeDatabase } from "~db/client.server";
-import { loadDemo } from "./load";
-import { listDemoPeople } from "./load/people";
+import postgres from "postgres";
+import { listDemoPeople } from "./load/demo-people";
+import { listMissing } from "./load/state";
 import { buildScenario } from "./scenario";
 
 function refuse(message: string): never {
   console.error(message);
   process.exit(1);
+}
+
+/** Every start asks; so the application's modules are loaded only when there is something to do. */
+async function isThere(maintenanceUrl: string) {
+  const client = postgres(maintenanceUrl, { max: 1, onnotice: () => {} });
+  try {
+    return (await listMissing(client)).length === 0;
+  } finally {
+    await client.end();
+  }
+}
+
+async function load(maintenanceUrl: string) {
+  const { loadDemo } = await import("./load");
+  const { closeIdentity } = await import("~/features/accounts/identity.server");
+  const { closeDatabase } = await import("~db/client.server");
+  try {
+    await loadDemo({ maintenanceUrl, onStep: (line) => console.log(line) });
+  } finally {
+    await closeIdentity();
+    await closeDatabase();
+  }
 }
 
 const { values } = parseArgs({ options: { people: { type: "boolean", default: false } } });
@@ -32,13 +53,10 @@ if (values.people) {
   const maintenanceUrl =
     process.env.DATABASE_MAINTENANCE_URL ?? refuse("DATABASE_MAINTENANCE_URL is missing.");
   try {
-    await loadDemo({ maintenanceUrl, onStep: (line) => console.log(line) });
+    if (!(await isThere(maintenanceUrl))) await load(maintenanceUrl);
   } catch (error) {
     const cause = error instanceof Error && error.cause instanceof Error ? error.cause : error;
     console.error(`The demo was not loaded: ${cause instanceof Error ? cause.message : String(cause)}`);
     process.exitCode = 1;
-  } finally {
-    await closeIdentity();
-    await closeDatabase();
   }
 }

@@ -3,11 +3,8 @@ import { foundOrganisation } from "~/features/accounts/founding.server";
 import { clinicalRoles } from "~/features/accounts/permissions";
 import { instantOf } from "~/platform/clock";
 import { masterKey } from "~/platform/crypto/keys.server";
-import { demoId } from "./ids";
 import { find, type OwnScenario } from "./loading";
-
-/** The id under which the demo founds an organisation; another id under the same address is somebody's own. */
-export const demoOrganisationId = (slug: string) => demoId(slug, "organisation", slug);
+import { demoOrganisationId } from "./state";
 
 /**
  * Founds the organisation with its members, in one transaction of the maintenance role: what the operator's command

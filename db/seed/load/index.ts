@@ -5,10 +5,9 @@ import { audit } from "~/platform/audit.server";
 import { type Tx, write } from "~db/client.server";
 import { athletes, seasons } from "~db/schema";
 import { buildScenario } from "../scenario";
-import { MARRAM_BAY, OTTERWICK } from "../scenario/plan";
 import type { Role, Scenario } from "../scenario/types";
 import { loadAvailability } from "./availability";
-import { demoOrganisationId, foundDemoOrganisation } from "./founding";
+import { foundDemoOrganisation } from "./founding";
 import { loadInjuries } from "./injuries";
 import { find, type Loading, type OwnScenario, openLoading, scenarioOf } from "./loading";
 import { loadNotices } from "./notices";
@@ -17,9 +16,8 @@ import { loadReports } from "./reports";
 import { loadRoster } from "./roster";
 import { loadSessions } from "./sessions";
 import { loadSettings } from "./settings";
+import { listMissing } from "./state";
 import { loadWarmUps } from "./warm-ups";
-
-const slugs = [MARRAM_BAY, OTTERWICK];
 
 /**
  * Loads the demo's organisations that are not there yet. An organisation comes in three transactions, each of which
@@ -40,36 +38,21 @@ export async function loadDemo({
 }): Promise<string[]> {
   const client = postgres(maintenanceUrl, { max: 1, onnotice: () => {} });
   try {
-    const states = await readStates(client);
-    const missing = slugs.filter((slug) => states.get(slug) !== "loaded" && states.get(slug) !== "foreign");
+    const missing = await listMissing(client);
     if (missing.length === 0) return [];
     const scenario: Scenario = buildScenario(today === undefined ? {} : { today });
     const people = await ensurePeople(scenario.people);
-    for (const slug of missing) {
+    for (const { slug, founded } of missing) {
       const own = scenarioOf(scenario, slug);
       onStep(`${own.organisation.name}: ${own.athletes.length} athletes, ${own.sessions.length} sessions`);
-      if (!states.has(slug)) await foundDemoOrganisation(client, own, people);
+      if (!founded) await foundDemoOrganisation(client, own, people);
       await writeAs("admin", own, people, seasons, loadSettings);
       await writeAs("lead", own, people, athletes, loadRecords);
     }
-    return missing;
+    return missing.map(({ slug }) => slug);
   } finally {
     await client.end();
   }
-}
-
-/** Of the demo's addresses: whose organisation each is, and how far its load came; absent when there is none. */
-async function readStates(client: postgres.Sql) {
-  const rows = await client<{ slug: string; id: string; loaded: boolean }[]>`
-    select o.slug, o.organisation_id as id,
-      exists (select 1 from athletes a where a.organisation_id = o.organisation_id) as loaded
-    from organisations o where o.slug in ${client(slugs)}`;
-  return new Map(
-    rows.map(({ slug, id, loaded }) => [
-      slug,
-      id !== demoOrganisationId(slug) ? "foreign" : loaded ? "loaded" : "founded",
-    ]),
-  );
 }
 
 async function loadRecords(loading: Loading) {

@@ -1,3 +1,4 @@
+import { diagnosisPlace } from "~/features/injuries/diagnoses.server";
 import { revisionPlace } from "~/features/injuries/overview.server";
 import { type EarlierInjury, suggestSubsequence } from "~/features/injuries/subsequence";
 import { injuries, injuryDiagnoses, injuryNotes, injuryRevisions } from "~db/schema";
@@ -11,38 +12,42 @@ const writtenAfter = 30;
 
 export const writtenAt = ({ at }: Injury) => momentAfter(at.slice(0, 10), at.slice(11), writtenAfter);
 
-/** Of the same athlete, in order of onset; how a later injury relates to the earlier ones is asked of the feature. */
+/** How each injury relates to the athlete's earlier ones, as the feature suggests and the athletic trainer confirmed. */
 export function relationsOf({ own, id }: Loading) {
   const athletes = byKey(own.athletes);
-  const kindOf = (injury: Injury) => ({
-    bodyArea: injury.area,
-    side: injury.side,
-    pathology: injury.diagnoses[0]?.pathology ?? null,
+  const lostTime = new Set(own.availability.map(({ injury }) => injury));
+  const kindOf = ({ area, side, diagnoses }: Injury) => ({
+    bodyArea: area,
+    side,
+    pathology: diagnoses[0]?.pathology ?? null,
+    // Decides a warning about the other knee, never the relation.
     acl: false,
   });
   const relations = new Map<string, { subsequence: string | null; to: string | null }>();
   for (const [athlete, list] of groupBy(own.injuries, (injury) => injury.athlete)) {
-    const earlier: EarlierInjury[] = find(athletes, athlete).earlierInjuries.map((before) => ({
-      id: null,
-      bodyArea: before.area,
-      side: before.side,
-      pathology: before.pathology,
-      acl: false,
-      onsetDay: null,
-      returnDay: null,
-      year: before.year,
+    const before = find(athletes, athlete).earlierInjuries.map(
+      ({ area, side, pathology, year }): EarlierInjury => ({
+        id: null,
+        bodyArea: area,
+        side,
+        pathology,
+        acl: false,
+        onsetDay: null,
+        returnDay: null,
+        year,
+      }),
+    );
+    const inHaleside = list.map((injury) => ({
+      ...kindOf(injury),
+      id: id("injury", injury.key),
+      onsetDay: injury.at.slice(0, 10),
+      returnDay: lostTime.has(injury.key) ? injury.fullOn : injury.closedOn,
+      year: null,
     }));
     for (const injury of list) {
       const onsetDay = injury.at.slice(0, 10);
-      const { subsequence, to } = suggestSubsequence({ ...kindOf(injury), onsetDay }, earlier);
-      relations.set(injury.key, { subsequence, to });
-      earlier.push({
-        ...kindOf(injury),
-        id: id("injury", injury.key),
-        onsetDay,
-        returnDay: injury.fullOn,
-        year: null,
-      });
+      const earlier = [...before, ...inHaleside.filter((other) => other.onsetDay < onsetDay)];
+      relations.set(injury.key, suggestSubsequence({ ...kindOf(injury), onsetDay }, earlier));
     }
   }
   return relations;
@@ -146,8 +151,6 @@ export async function loadInjuries(loading: Loading) {
     revisions.flatMap(({ injury, version }) =>
       injury.diagnoses.slice(1).map(({ tissue, pathology, words, certainty }, index) => {
         const injuryId = id("injury", injury.key);
-        const row = `${injuryId} ${index + 1}`;
-        const place = { table: "injury_diagnoses", column: "diagnosis", row, version };
         return {
           organisationId,
           injuryId,
@@ -155,7 +158,7 @@ export async function loadInjuries(loading: Loading) {
           position: index + 1,
           tissue,
           pathology,
-          diagnosis: seals.seal(place, words),
+          diagnosis: seals.seal(diagnosisPlace(injuryId, version, index + 1), words),
           certainty,
         };
       }),

@@ -1,6 +1,8 @@
 import { hashToken, linkToken } from "~/features/accounts/tokens.server";
+import { contentPlace } from "~/features/notices/composing.server";
 import { answerText, type NoticeContent } from "~/features/notices/notice-content";
 import { draftPlainWords, sayWhere } from "~/features/notices/plain-words";
+import { eventPlace } from "~/features/notices/records.server";
 import { masterKey } from "~/platform/crypto/keys.server";
 import { keyedHash } from "~/platform/crypto/sealing.server";
 import { deliveries, noticeEvents, noticeLinks, notices } from "~db/schema";
@@ -21,7 +23,6 @@ export async function loadNotices(loading: Loading) {
     notices,
     own.notices.map((notice) => {
       const row = id("notice", notice.key);
-      const place = { table: "notices", column: "content", row, version: 1 };
       const answer = answerText(row, find(athletes, notice.athlete).dateOfBirth);
       return {
         organisationId,
@@ -31,7 +32,7 @@ export async function loadNotices(loading: Loading) {
         guardianId: id("guardian", notice.guardian),
         urgency: notice.urgent ? "urgent" : "routine",
         language: find(guardians, notice.guardian).language,
-        content: seals.sealRequired(place, JSON.stringify(contentOf(notice))),
+        content: seals.sealRequired(contentPlace(row), JSON.stringify(contentOf(notice))),
         answerHash: keyedHash(masterKey(), "notice answer", answer),
         createdBy: person(find(injuries, notice.injury).loggedBy),
         createdAt: at(notice.sentAt),
@@ -63,7 +64,7 @@ export async function loadNotices(loading: Loading) {
       template: "notice",
       noticeId: id("notice", notice.key),
       guardianId: id("guardian", notice.guardian),
-      parameters: {},
+      parameters: { linkId: id("notice link", notice.key) },
       state: notice.bouncedAt ? "bounced" : notice.deliveredAt ? "delivered" : "sent",
       attempts: 1,
       lastError: notice.bouncedAt ? "bounced" : null,
@@ -81,14 +82,13 @@ export async function loadNotices(loading: Loading) {
       const by = person(find(injuries, notice.injury).loggedBy);
       return eventsOf(notice).map(({ kind, at: moment, detail }) => {
         const row = id("notice event", `${notice.key} ${kind}`);
-        const place = { table: "notice_events", column: "detail", row, version: 1 };
         const isOurs = kind === "written" || kind === "phoned";
         return {
           organisationId,
           id: row,
           noticeId: id("notice", notice.key),
           kind,
-          detail: seals.seal(place, detail),
+          detail: seals.seal(eventPlace(row), detail),
           by: isOurs ? by : null,
           at: at(moment),
         };

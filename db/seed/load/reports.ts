@@ -1,3 +1,4 @@
+import { reportPlace } from "~/features/injuries/coach-reports.queries.server";
 import { bodyAreaWords } from "~/features/vocabulary";
 import { coachReportOutcomes, coachReports, encounters } from "~db/schema";
 import { addDays } from "../scenario/days";
@@ -14,7 +15,6 @@ export async function loadReports({ tx, own, organisationId, id, person, at, on,
       const row = id("coach report", report.key);
       const injury = report.injury === null ? undefined : find(injuries, report.injury);
       const guardian = report.phoned === null ? undefined : find(guardians, report.phoned);
-      const place = { table: "coach_reports", column: "phoned", row, version: 1 };
       return {
         organisationId,
         id: row,
@@ -28,7 +28,10 @@ export async function loadReports({ tx, own, organisationId, id, person, at, on,
         // A report that still waits changed nobody's availability, so play went on.
         couldContinue: injury?.couldContinue ?? true,
         signs: report.signs,
-        phoned: seals.seal(place, guardian && `${guardian.givenName} ${guardian.familyName}`),
+        phoned: seals.seal(
+          reportPlace("phoned", row),
+          guardian && `${guardian.givenName} ${guardian.familyName}`,
+        ),
         reportedBy: person(report.by),
         reportedAt: at(report.at),
       };

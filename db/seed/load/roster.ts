@@ -112,13 +112,14 @@ async function loadOnFile(loading: Loading, joinedOn: (athlete: Athlete) => stri
     tx,
     earlierInjuries,
     own.athletes.flatMap((athlete) =>
-      athlete.earlierInjuries.map(({ area, side, pathology, year }, index) => ({
+      athlete.earlierInjuries.map(({ area, side, words, year }, index) => ({
         organisationId,
         id: id("earlier injury", `${athlete.key} ${index}`),
         athleteId: id("athlete", athlete.key),
         bodyArea: area,
         side,
-        pathology,
+        // In words, as a roster names it: they tell a torn cruciate ligament from another sprain.
+        pathology: words,
         year,
         recordedBy: person(trainer),
         recordedAt: on(joinedOn(athlete), "17:00"),

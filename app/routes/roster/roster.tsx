@@ -59,9 +59,10 @@ const columnsForContacts: Column<Row>[] = [
 const columnsForCoaches = [nameColumn, teamsColumn];
 
 const showWords = {
-  current: "current athletes",
+  current: "on a team today",
+  "no-team": "without a team",
   visitors: "visitors and try-outs",
-  archived: "archived athletes",
+  archived: "archived",
 };
 
 function useShown() {

@@ -10,6 +10,10 @@ export function decimalsFor(rates: readonly number[]): number {
 /** A whole number with its thousands: 9,840. Shares of headcounts are rounded. */
 export const formatCount = (value: number) => Math.round(value).toLocaleString("en-GB");
 
+/** A rate or its limit; from 100 on without decimals, which would only pretend. */
+export const formatRate = (value: number, decimals: number) =>
+  value >= 100 ? formatCount(value) : value.toFixed(decimals);
+
 /**
  * A rate ratio with two figures (0.98, 1.6, 12). A limit that rounding would put on 1 keeps as many as show on which
  * side it lies; no upper limit is written as such.

@@ -26,13 +26,13 @@ export type FixedTable = {
   hidden: number;
 };
 
-const hide = (row: RateRow, smallest: number): RateRow => ({
+const hide = (row: RateRow): RateRow => ({
   ...row,
   injuries: null,
   exposure: null,
   denominator: null,
   rate: null,
-  reason: `hidden, so that nobody can be recognised (cells under ${smallest}, and others that would give them away)`,
+  reason: "hidden: small numbers",
   unstable: false,
 });
 
@@ -64,8 +64,8 @@ function fixTable(
   const { hidden, hideTotal } = suppressSmallCells(cells, smallest);
   return {
     by,
-    rows: rows.map((row) => (hidden.has(row.key) ? hide(row, smallest) : row)),
-    total: hideTotal ? hide(total, smallest) : total,
+    rows: rows.map((row) => (hidden.has(row.key) ? hide(row) : row)),
+    total: hideTotal ? hide(total) : total,
     hidden: hidden.size,
   };
 }
@@ -84,7 +84,7 @@ export function fixTables(
   const hideTotal = tables.some(({ total }) => total.injuries === null);
   const [first] = computed;
   return {
-    tables: tables.map((table) => (hideTotal ? { ...table, total: hide(table.total, smallest) } : table)),
+    tables: tables.map((table) => (hideTotal ? { ...table, total: hide(table.total) } : table)),
     coverage: first?.rates.coverage ?? { held: 0, recorded: 0, share: null, state: "none" },
   };
 }

@@ -15,9 +15,9 @@ const injuries = (count: number) => `${count} ${count === 1 ? "injury" : "injuri
 
 function pointOf(row: RateRow, label: string): IntervalGroup["points"][number] {
   const series = seriesOf(row);
-  if (!row.rate) return { series, label, rate: null, note: row.reason ?? "no rate" };
+  if (!row.rate) return { series, label: label || "no rate", rate: null, note: row.reason ?? "not computed" };
   if (!row.unstable) return { series, label, rate: row.rate };
-  const note = `${injuries(row.injuries ?? 0)}: unstable`;
+  const note = `${row.injuries === 0 ? "no injuries" : injuries(row.injuries ?? 0)}: unstable`;
   return label
     ? { series, label, rate: row.rate, unstable: true, note }
     : { series, label: note, rate: row.rate, unstable: true };
@@ -42,13 +42,19 @@ export function pictureGroups(rows: readonly RateRow[], by: RatesFilters["by"]):
 }
 
 /**
- * The end of the axis. A group of very few injuries has an interval many times longer than the others; it may run
- * over the edge, so that the rest can be read.
+ * The end of the axis. One injury in a handful of sessions has an interval many times longer than the others', so the
+ * axis is made for groups of two injuries or more, and never beyond four times the stable ones.
  */
 export function axisEnd(rows: readonly RateRow[]): number {
-  const upper = (list: readonly RateRow[]) => Math.max(0, ...list.map(({ rate }) => rate?.upper ?? 0));
-  const estimates = Math.max(0, ...rows.map(({ rate }) => rate?.estimate ?? 0));
-  const [all, stable] = [upper(rows), upper(rows.filter(({ unstable }) => !unstable))];
-  if (stable === 0) return all;
-  return Math.min(all, Math.max(stable * 1.5, estimates * 1.1));
+  const reach = (list: readonly RateRow[]) => Math.max(0, ...list.map(({ rate }) => rate?.upper ?? 0));
+  const stable = reach(rows.filter(({ unstable }) => !unstable));
+  const several = reach(rows.filter(({ injuries: count }) => (count ?? 0) >= 2));
+  if (several === 0) return reach(rows);
+  return stable === 0 ? several : Math.min(several, stable * 4);
+}
+
+/** The rows that the picture can show: the others' intervals run over its axis, and stand in the table. */
+export function picturedRows(rows: readonly RateRow[]): RateRow[] {
+  const end = axisEnd(rows);
+  return rows.filter(({ rate, denominator: exposure }) => (rate ? rate.upper <= end : (exposure ?? 0) > 0));
 }

@@ -231,6 +231,15 @@ export async function tallySessions(tx: Tx, { from, to, teamIds }: Range): Promi
   return [...rows];
 }
 
+/** Teams that confirmed for at least one week of the range that nobody was newly hurt. */
+export async function listConfirmingTeams(tx: Tx, { from, to, teamIds }: Range): Promise<string[]> {
+  const rows = await tx.execute<{ teamId: string }>(sql`
+    select distinct team_id as "teamId" from no_injury_weeks
+    where organisation_id = ${tx.scope.organisationId}::uuid
+      and week_start between ${from}::date - 6 and ${to}::date and ${inTeams(sql`team_id`, teamIds)}`);
+  return rows.map(({ teamId }) => teamId);
+}
+
 /** Every team that may have exposure, archived ones too: a season's rates keep the teams it had. */
 export async function listRatedTeams(tx: Tx, teamIds: Range["teamIds"]): Promise<RatedTeam[]> {
   const rows = await tx.execute<RatedTeam>(sql`

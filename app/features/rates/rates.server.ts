@@ -2,12 +2,14 @@ import { openDoor } from "~/features/accounts/doors.server";
 import { may } from "~/features/accounts/permissions";
 import type { MemberScope } from "~/features/accounts/scope.server";
 import { resolveViewing, type Viewing, viewedTeamIds } from "~/features/accounts/viewing.server";
+import { complianceByTeam } from "~/features/warm-ups/warm-ups.server";
 import { read, type Scope, type Tx } from "~db/client.server";
 import { sumExposure } from "./counting";
 import { fixTables } from "./fixed-tables";
 import { type Counts, computeRates, type RateRow } from "./rates";
 import {
   findCountingRules,
+  listConfirmingTeams,
   listExposedAthletes,
   listInjuryRows,
   listRatedTeams,
@@ -32,6 +34,7 @@ async function countAll(tx: Tx, range: Range): Promise<Counts & { smallNumber: n
     injuries: await listInjuryRows(tx, range),
     sessions: await tallySessions(tx, range),
     teams: await listRatedTeams(tx, range.teamIds),
+    confirming: await listConfirmingTeams(tx, range),
   };
 }
 
@@ -92,6 +95,19 @@ function withoutTeam(url: URL) {
   whole.searchParams.delete("team");
   return whole;
 }
+
+/** Warm-up session compliance of the viewed teams over the same days; the sessions themselves stay behind. */
+export async function warmUpsBeside(tx: Tx, viewing: Viewing, period: Period) {
+  const teams = await complianceByTeam(tx, { ...period, teamIds: viewedTeamIds(viewing) });
+  return teams.map(({ teamId, teamName, compliance: { ofHeld, ofRecorded } }) => ({
+    id: teamId,
+    name: teamName,
+    ofHeld,
+    ofRecorded,
+  }));
+}
+
+export type TeamWarmUps = Awaited<ReturnType<typeof warmUpsBeside>>[number];
 
 export const seesRates = (scope: Scope) => may(scope.roles, "rates.clinical");
 export const defaultFilters: RatesFilters = ratesQuery.parse({});

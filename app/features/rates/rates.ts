@@ -65,6 +65,8 @@ export type Counts = {
   injuries: readonly InjuryRow[];
   sessions: readonly SessionTally[];
   teams: readonly RatedTeam[];
+  /** Teams that confirmed at least one week without a new injury. */
+  confirming: readonly string[];
   bands: readonly Band[];
 };
 
@@ -103,12 +105,12 @@ function rateRow({ group, events, exposure, unit, coverage }: Figures): RateRow 
   };
 }
 
-/** A team that reported no injury at all, not even one that does not count, has not thereby reported "none". */
+/** A team that entered no injury at all, not even one that does not count, and never confirmed "none" has not reported. */
 const unreported = (row: RateRow): RateRow => ({
   ...row,
   injuries: null,
   rate: null,
-  reason: "not reported: no injury entered, and none confirmed",
+  reason: "not reported: no injury entered, no week confirmed as without one",
   unstable: false,
 });
 
@@ -156,6 +158,7 @@ export function computeRates(counts: Counts, filters: RatesFilters) {
       const row = rateRow({ group, events, exposure: sumExposure(own), unit, coverage: ofTeam || coverage });
       const isSilent =
         group.teamId !== null &&
+        !counts.confirming.includes(group.teamId) &&
         !counts.injuries.some(({ teamId, withdrawn }) => teamId === group.teamId && !withdrawn);
       return [isSilent ? unreported(row) : row];
     });

@@ -1,4 +1,4 @@
-import { decimalsFor, formatCount, formatRatio } from "./figures";
+import { decimalsFor, formatCount, formatRate, formatRatio } from "./figures";
 import { type Comparison, type RateRow, type Rates, stableFrom } from "./rates";
 import type { RatesFilters, RateUnit } from "./rates.schema";
 
@@ -37,7 +37,7 @@ function ownerOf({ label, sex }: RateRow) {
 function ratePart(row: RateRow, decimals: number): Part[] {
   if (!row.rate) return [];
   const [estimate, lower, upper] = [row.rate.estimate, row.rate.lower, row.rate.upper].map((value) =>
-    value.toFixed(decimals),
+    formatRate(value, decimals),
   );
   return [strong(`${estimate} per 1000`), plain(" "), interval(`(${lower} to ${upper})`)];
 }

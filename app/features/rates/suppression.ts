@@ -20,10 +20,11 @@ export type Suppressed = {
 
 /**
  * Chooses the cells of one table that are hidden. The cells add up to the total, which is shown beside them.
- * Every cell below `smallest` is hidden, a zero too, since "none" also tells of a person. As long as the hidden
- * cells could be worked out (only one of them, or so few injuries among them that each must be small), one more
- * is hidden with them: the one with the fewest exposed athletes. Its choice never depends on the injuries, or the
- * choice itself would narrow them down.
+ * Every cell below `smallest` is hidden, a zero too, since "none" also tells of a person. With them always goes at
+ * least one cell that is not small, and more until the hidden ones hold at least twice `smallest` injuries: a sum of
+ * small cells alone is so bounded that it gives them away (4, 4 and 3 must be what adds up to 11). The cell that goes
+ * along is the one with the fewest exposed athletes; its choice never depends on the injuries, or the choice itself
+ * would narrow them down.
  *
  * Tables of different groupings share nothing but the total, so hiding within each is enough as long as no group
  * of one table is made up of groups of another (teams of sports, teams of sexes): such tables are not given out.
@@ -37,7 +38,8 @@ export function suppressSmallCells(cells: readonly CountCell[], smallest: number
   const shown = cells
     .filter((cell) => !isSmall(cell))
     .sort((a, b) => a.exposedAthletes - b.exposedAthletes || (a.key < b.key ? -1 : 1));
-  const canBeWorkedOut = () => hidden.length === 1 || (hidden.length > 0 && sum(hidden) < 2 * smallest);
+  const small = hidden.length;
+  const canBeWorkedOut = () => small > 0 && (hidden.length === small || sum(hidden) < 2 * smallest);
   while (canBeWorkedOut()) {
     const next = shown.shift();
     if (!next) break;

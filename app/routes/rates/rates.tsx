@@ -1,7 +1,8 @@
 import { ClinicalRates } from "~/features/rates/components/clinical-rates";
+import { ComplianceBeside } from "~/features/rates/components/compliance-beside";
 import { FixedRates } from "~/features/rates/components/fixed-rates";
 import { parseRatesQuery } from "~/features/rates/rates.schema";
-import { fixedTablesOf, incidenceOf, seesRates } from "~/features/rates/rates.server";
+import { fixedTablesOf, incidenceOf, seesRates, warmUpsBeside } from "~/features/rates/rates.server";
 import { memberLoader } from "~/middleware/handlers.server";
 import { ButtonLink, EmptyState, Page, VisuallyHidden } from "~/ui";
 import { read } from "~db/client.server";
@@ -10,11 +11,16 @@ import type { Route } from "./+types/rates";
 export const loader = memberLoader(async ({ scope, url }) => {
   const frame = { slug: scope.slug, organisation: scope.organisationName };
   if (!seesRates(scope)) {
-    const { period, fixed } = await fixedTablesOf(scope, url);
-    return { ...frame, csvHref: csvHref(scope.slug, url, ["season"]), period, fixed };
+    const { viewing, period, fixed } = await fixedTablesOf(scope, url);
+    const warmUps = period ? await read(scope, (tx) => warmUpsBeside(tx, viewing, period)) : [];
+    return { ...frame, csvHref: csvHref(scope.slug, url, ["season"]), period, fixed, warmUps };
   }
   const filters = parseRatesQuery(url.searchParams);
-  const incidence = await read(scope, (tx) => incidenceOf(tx, url, filters));
+  const { incidence, warmUps } = await read(scope, async (tx) => {
+    const found = await incidenceOf(tx, url, filters);
+    const { viewing, period } = found;
+    return { incidence: found, warmUps: period ? await warmUpsBeside(tx, viewing, period) : [] };
+  });
   const { viewing, period } = incidence;
   const scopeName = viewing.team?.name ?? (scope.teams === "all" ? scope.organisationName : "My teams");
   return {
@@ -24,6 +30,7 @@ export const loader = memberLoader(async ({ scope, url }) => {
     period,
     filters,
     incidence,
+    warmUps,
     scopeName,
   };
 });
@@ -48,6 +55,7 @@ export default function RatesPage({ loaderData }: Route.ComponentProps) {
         <h1>Rates</h1>
       </VisuallyHidden>
       <Content {...loaderData} />
+      {loaderData.warmUps.length > 0 ? <ComplianceBeside teams={loaderData.warmUps} /> : null}
     </Page>
   );
 }

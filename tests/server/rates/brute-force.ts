@@ -1,5 +1,5 @@
-import { addDays, weekStart } from "~/platform/clock";
 import type { RatesFilters } from "~/features/rates/rates.schema";
+import { addDays, weekStart } from "~/platform/clock";
 import type { Plan } from "./generated-club";
 
 /** Counts a plan by walking through it day by day and athlete by athlete, with none of the application's code. */
@@ -18,7 +18,9 @@ function walk(world: World) {
   const known = walked.get(world);
   if (known) return known;
   const held = world.plan.sessions.map((session) => ({ session, ...sharesOf(world, session) }));
-  const lost = new Map(world.plan.injuries.map((each) => [each.injuryId, daysLost(world, each.injuryId, each.onsetDay)]));
+  const lost = new Map(
+    world.plan.injuries.map((each) => [each.injuryId, daysLost(world, each.injuryId, each.onsetDay)]),
+  );
   walked.set(world, { held, lost });
   return { held, lost };
 }
@@ -36,7 +38,9 @@ function age(born: string | null, day: string) {
 }
 
 const band = (bands: Bands, years: number | null) =>
-  years === null ? "unknown" : (bands.find(({ from, to }) => years >= from && years <= (to ?? 999))?.label ?? "unknown");
+  years === null
+    ? "unknown"
+    : (bands.find(({ from, to }) => years >= from && years <= (to ?? 999))?.label ?? "unknown");
 
 /** The state of one reason on a day: of the changes from that day or earlier, the one entered last. */
 function stateOn(plan: Plan, reasonId: string, day: string) {
@@ -45,7 +49,9 @@ function stateOn(plan: Plan, reasonId: string, day: string) {
 }
 
 function isUnavailable(plan: Plan, athleteId: string, day: string) {
-  const reasons = new Set(plan.changes.filter((change) => change.athleteId === athleteId).map((c) => c.reasonId));
+  const reasons = new Set(
+    plan.changes.filter((change) => change.athleteId === athleteId).map((c) => c.reasonId),
+  );
   return [...reasons].some((reason) => stateOn(plan, reason, day) === "unavailable");
 }
 
@@ -55,8 +61,13 @@ function sharesOf({ plan, rules }: World, session: Session): { grade: string; sh
   if (session.kind !== "training" && session.kind !== "match") return none;
   if (session.day < plan.season.from || session.day > plan.season.to) return none;
   if (session.exposureGrade === "recorded") {
-    const parts = plan.parts.filter((p) => p.sessionId === session.id && p.presence === "took_part" && p.minutes > 0);
-    return { grade: "recorded", shares: parts.map((p) => ({ athleteId: p.athleteId, aes: 1, hours: p.minutes / 60 })) };
+    const parts = plan.parts.filter(
+      (p) => p.sessionId === session.id && p.presence === "took_part" && p.minutes > 0,
+    );
+    return {
+      grade: "recorded",
+      shares: parts.map((p) => ({ athleteId: p.athleteId, aes: 1, hours: p.minutes / 60 })),
+    };
   }
   const team = plan.teams.find(({ id }) => id === session.teamId);
   let [players, minutes] = [session.headcount ?? 0, session.headcountMinutes ?? 0];
@@ -67,7 +78,8 @@ function sharesOf({ plan, rules }: World, session: Session): { grade: string; sh
       .sort((a, b) => b.fromAge - a.fromAge)[0];
     players = rule?.players ?? 0;
     minutes = rule?.minutes ?? 0;
-    if (session.state === "abandoned" && session.abandonedAfter) minutes = Math.min(minutes, session.abandonedAfter);
+    if (session.state === "abandoned" && session.abandonedAfter)
+      minutes = Math.min(minutes, session.abandonedAfter);
   } else if (session.exposureGrade !== "headcount") return none;
   if (players === 0 || minutes === 0) return none;
   const there = plan.roster
@@ -75,13 +87,24 @@ function sharesOf({ plan, rules }: World, session: Session): { grade: string; sh
     .filter((r) => !isUnavailable(plan, r.athleteId, session.day));
   const each = there.length === 0 ? 0 : Math.min(players, there.length) / there.length;
   const aes = session.exposureGrade === "headcount" ? 1 : 0;
-  const shares: Share[] = there.map(({ athleteId }) => ({ athleteId, aes: aes * each, hours: (each * minutes) / 60 }));
+  const shares: Share[] = there.map(({ athleteId }) => ({
+    athleteId,
+    aes: aes * each,
+    hours: (each * minutes) / 60,
+  }));
   const excess = players - there.length;
   if (excess > 0) shares.push({ athleteId: null, aes: aes * excess, hours: (excess * minutes) / 60 });
   return { grade: session.exposureGrade, shares };
 }
 
-function keyOf(world: World, by: RatesFilters["by"], who: string | null, day: string, teamId: string, kind: string | null) {
+function keyOf(
+  world: World,
+  by: RatesFilters["by"],
+  who: string | null,
+  day: string,
+  teamId: string,
+  kind: string | null,
+) {
   const athlete = world.plan.athletes.find(({ id }) => id === who);
   const sex = athlete?.sex ?? "unknown";
   const years = band(world.bands, age(athlete?.born ?? null, day));
@@ -90,17 +113,24 @@ function keyOf(world: World, by: RatesFilters["by"], who: string | null, day: st
 }
 
 const inKinds = (filters: RatesFilters, kind: string) =>
-  filters.sessions === "training-and-matches" ? kind === "training" || kind === "match" : kind === filters.sessions;
+  filters.sessions === "training-and-matches"
+    ? kind === "training" || kind === "match"
+    : kind === filters.sessions;
 
 export function daysLost({ plan, today }: World, injuryId: string, onset: string) {
-  const reasons = new Set(plan.changes.filter((change) => change.injuryId === injuryId).map((c) => c.reasonId));
+  const reasons = new Set(
+    plan.changes.filter((change) => change.injuryId === injuryId).map((c) => c.reasonId),
+  );
   let days = 0;
   for (let day = addDays(onset, 1); day <= today; day = addDays(day, 1))
     if ([...reasons].some((reason) => stateOn(plan, reason, day) !== "full")) days += 1;
   return days;
 }
 
-export type Brute = Record<string, { injuries: number; recorded: number; headcount: number; estimated: number }>;
+export type Brute = Record<
+  string,
+  { injuries: number; recorded: number; headcount: number; estimated: number }
+>;
 
 /** Injuries and exposure of each group. */
 export function countByHand(world: World, filters: RatesFilters): Brute {
@@ -115,7 +145,8 @@ export function countByHand(world: World, filters: RatesFilters): Brute {
     if (!inKinds(filters, session.kind)) continue;
     for (const share of shares) {
       const group = at(keyOf(world, filters.by, share.athleteId, session.day, session.teamId, session.kind));
-      group[grade as "recorded" | "headcount" | "estimated"] += filters.per === "aes" ? share.aes : share.hours;
+      group[grade as "recorded" | "headcount" | "estimated"] +=
+        filters.per === "aes" ? share.aes : share.hours;
     }
   }
   const amount = (shares: readonly Share[], per = filters.per) =>
@@ -139,7 +170,11 @@ export function countByHand(world: World, filters: RatesFilters): Brute {
       if (!own) {
         const homes = plan.roster
           .filter((r) => r.athleteId === injury.athleteId && r.from <= day && (r.to ?? "9999") >= day)
-          .map((r) => ({ ...r, aes: weekAmount(r.teamId, day, "aes") > 0, hours: weekAmount(r.teamId, day, "hours") > 0 }))
+          .map((r) => ({
+            ...r,
+            aes: weekAmount(r.teamId, day, "aes") > 0,
+            hours: weekAmount(r.teamId, day, "hours") > 0,
+          }))
           .sort(
             (a, b) =>
               Number(b.aes) - Number(a.aes) ||

@@ -1,7 +1,15 @@
 import { sql } from "drizzle-orm";
 import { beforeAll, describe, expect, it } from "vitest";
 import { defaultAgeBands, defaultSportRules } from "~/features/accounts/founding.server";
-import { incidenceOf } from "~/features/rates/rates.server";
+import { timeLossOf } from "~/features/availability/availability";
+import { type Counts, computeRates, type Rates } from "~/features/rates/rates";
+import {
+  ageInYears,
+  listInjuryRows,
+  listRatedTeams,
+  sumExposureCells,
+  tallySessions,
+} from "~/features/rates/rates.queries.server";
 import {
   caseDefinitions,
   groupings,
@@ -10,19 +18,11 @@ import {
   sessionChoices,
   units,
 } from "~/features/rates/rates.schema";
-import {
-  ageInYears,
-  listInjuryRows,
-  listRatedTeams,
-  sumExposureCells,
-  tallySessions,
-} from "~/features/rates/rates.queries.server";
-import { timeLossOf } from "~/features/availability/availability";
-import { type Counts, computeRates, type Rates } from "~/features/rates/rates";
+import { incidenceOf } from "~/features/rates/rates.server";
 import { addDays } from "~/platform/clock";
-import type { AvailabilityState } from "~db/schema/codes";
 import { ageOn } from "~/statistics";
 import { read, type Scope } from "~db/client.server";
+import type { AvailabilityState } from "~db/schema/codes";
 import { makeOrganisation, makePerson, makeSeason, memberScope, staffScope } from "../../harness";
 import { type Brute, countByHand, daysLost, type World } from "./brute-force";
 import { planClub, plantClub } from "./generated-club";
@@ -61,7 +61,12 @@ describe.each([1, 2])("counts of a generated club (seed %i)", (seed) => {
     await makeSeason(staff, { startsOn: plan.season.from, endsOn: plan.season.to });
     await plantClub(staff, plan);
     scope = await memberScope(await makePerson(organisation, { roles: ["lead"] }), organisation);
-    const rules = defaultSportRules.map(([sport, fromAge, players, minutes]) => ({ sport, fromAge, players, minutes }));
+    const rules = defaultSportRules.map(([sport, fromAge, players, minutes]) => ({
+      sport,
+      fromAge,
+      players,
+      minutes,
+    }));
     world = { plan, rules, bands: defaultAgeBands, today: staff.today };
     const range = { from: plan.season.from, to: staff.today, teamIds: null };
     counts = await read(scope, async (tx) => ({
@@ -70,6 +75,7 @@ describe.each([1, 2])("counts of a generated club (seed %i)", (seed) => {
       injuries: await listInjuryRows(tx, range),
       sessions: await tallySessions(tx, range),
       teams: await listRatedTeams(tx, null),
+      confirming: [],
     }));
   });
 
@@ -78,7 +84,10 @@ describe.each([1, 2])("counts of a generated club (seed %i)", (seed) => {
       const { groups, total } = groupsOf(computeRates(counts, filters), filters);
       const [found, expected] = [filled(groups), filled(countByHand(world, filters))];
       const name = JSON.stringify(filters);
-      expect(found.map(([key]) => key), name).toEqual(expected.map(([key]) => key));
+      expect(
+        found.map(([key]) => key),
+        name,
+      ).toEqual(expected.map(([key]) => key));
       for (const [index, [key, row]] of found.entries()) {
         const by = expected[index]?.[1];
         expect(row.injuries, `${name} ${key}`).toBe(by?.injuries);
@@ -102,13 +111,21 @@ describe.each([1, 2])("counts of a generated club (seed %i)", (seed) => {
     for (const { id, daysLost: found, ongoing } of counts.injuries) {
       const { onsetDay } = world.plan.injuries.find(({ injuryId }) => injuryId === id) ?? { onsetDay: "" };
       expect(found, id).toBe(daysLost(world, id, onsetDay));
-      const changes = world.plan.changes.filter(({ injuryId }) => injuryId === id).sort((a, b) => a.seq - b.seq);
-      const kept = changes.filter(({ seq, fromDay }) => !changes.some((c) => c.seq > seq && c.fromDay <= fromDay));
+      const changes = world.plan.changes
+        .filter(({ injuryId }) => injuryId === id)
+        .sort((a, b) => a.seq - b.seq);
+      const kept = changes.filter(
+        ({ seq, fromDay }) => !changes.some((c) => c.seq > seq && c.fromDay <= fromDay),
+      );
       const parts = kept
         .sort((a, b) => a.fromDay.localeCompare(b.fromDay))
         .map(({ fromDay, state }, index) => {
           const next = kept[index + 1];
-          return { fromDay, toDay: next ? addDays(next.fromDay, -1) : null, state: state as AvailabilityState };
+          return {
+            fromDay,
+            toDay: next ? addDays(next.fromDay, -1) : null,
+            state: state as AvailabilityState,
+          };
         });
       expect({ days: found, ongoing }, id).toEqual(timeLossOf(onsetDay, parts, world.today));
     }
@@ -117,8 +134,16 @@ describe.each([1, 2])("counts of a generated club (seed %i)", (seed) => {
   it("are of a club in which every rule has something to decide", () => {
     const views = everyFilter.map((filters) => countByHand(world, filters));
     for (const grade of ["injuries", "recorded", "headcount", "estimated"] as const)
-      expect(views.some((groups) => Object.values(groups).some((row) => row[grade] > 0)), grade).toBe(true);
-    const reported = countByHand(world, { injuries: "medical-attention", sessions: "training-and-matches", by: "sex-age", per: "hours" });
+      expect(
+        views.some((groups) => Object.values(groups).some((row) => row[grade] > 0)),
+        grade,
+      ).toBe(true);
+    const reported = countByHand(world, {
+      injuries: "medical-attention",
+      sessions: "training-and-matches",
+      by: "sex-age",
+      per: "hours",
+    });
     expect(Object.keys(reported).length).toBeGreaterThan(8);
   });
 });
@@ -127,7 +152,16 @@ it("count an age in SQL as the statistics do, 29 February too", async () => {
   const organisation = await makeOrganisation();
   const scope = staffScope(organisation);
   const births = ["2008-02-29", "2008-03-01", "2008-02-28", "2010-12-31", "2011-01-01", "2012-07-14"];
-  const days = ["2025-02-28", "2025-03-01", "2024-02-28", "2024-02-29", "2024-12-31", "2025-01-01", "2025-07-13", "2025-07-14"];
+  const days = [
+    "2025-02-28",
+    "2025-03-01",
+    "2024-02-28",
+    "2024-02-29",
+    "2024-12-31",
+    "2025-01-01",
+    "2025-07-13",
+    "2025-07-14",
+  ];
   const rows = await read(scope, (tx) =>
     tx.execute<{ born: string; day: string; age: number | null }>(sql`
       select b::text as born, d::text as day, ${ageInYears(sql`b`, sql`d`)} as age

@@ -22,10 +22,23 @@ export type Plan = {
   teams: { id: string; name: string; sport: string; sex: string; underAge: number | null }[];
   athletes: { id: string; sex: "female" | "male" | "not_stated"; born: string | null }[];
   roster: { athleteId: string; teamId: string; from: string; to: string | null }[];
-  sessions: (Insert<typeof sessions> & { id: string; teamId: string; day: string; kind: string; state: string })[];
+  sessions: (Insert<typeof sessions> & {
+    id: string;
+    teamId: string;
+    day: string;
+    kind: string;
+    state: string;
+  })[];
   parts: { sessionId: string; athleteId: string; presence: string; minutes: number }[];
   injuries: (Insert<typeof injuryRevisions> & { injuryId: string; athleteId: string; onsetDay: string })[];
-  changes: { reasonId: string; injuryId: string | null; athleteId: string; seq: number; fromDay: string; state: string }[];
+  changes: {
+    reasonId: string;
+    injuryId: string | null;
+    athleteId: string;
+    seq: number;
+    fromDay: string;
+    state: string;
+  }[];
 };
 
 /** mulberry32: small, seeded, good enough to vary a test. */
@@ -75,7 +88,16 @@ export function planClub(seed: number, today: string): Plan {
         : []),
     ];
   });
-  const plan: Plan = { season, teams: teamRows, athletes: athleteRows, roster, sessions: [], parts: [], injuries: [], changes: [] };
+  const plan: Plan = {
+    season,
+    teams: teamRows,
+    athletes: athleteRows,
+    roster,
+    sessions: [],
+    parts: [],
+    injuries: [],
+    changes: [],
+  };
   for (let n = 0; n < 220; n++) addSession(plan, random, dayIn());
   for (let n = 0; n < 200; n++) addInjury(plan, random, dayIn(), today);
   return plan;
@@ -87,7 +109,15 @@ function addSession(plan: Plan, random: Random, day: string) {
   const id = randomUUID();
   const kind = random.pick(["training", "training", "match", "match", "strength", "other"]);
   const state = random.pick(["held", "held", "held", "held", "abandoned", "cancelled", "planned"]);
-  const grade = random.pick(["recorded", "recorded", "recorded", "recorded", "headcount", "estimated", "none"]);
+  const grade = random.pick([
+    "recorded",
+    "recorded",
+    "recorded",
+    "recorded",
+    "headcount",
+    "estimated",
+    "none",
+  ]);
   const team = random.pick(plan.teams);
   const past = day < addDays(plan.season.from, 160);
   plan.sessions.push({
@@ -158,7 +188,9 @@ export async function plantClub(scope: Scope, plan: Plan) {
   const { organisationId } = scope;
   const org = { organisationId };
   await write(scope, async (tx) => {
-    await tx.insert(teams).values(plan.teams.map((team) => ({ ...org, nameKey: team.name.toLowerCase(), ...team })));
+    await tx
+      .insert(teams)
+      .values(plan.teams.map((team) => ({ ...org, nameKey: team.name.toLowerCase(), ...team })));
     await tx.insert(athletes).values(
       plan.athletes.map(({ id, sex, born }, index) => ({
         ...org,
@@ -180,12 +212,15 @@ export async function plantClub(scope: Scope, plan: Plan) {
         toDay: to,
       })),
     );
-    for (const rows of chunked(plan.sessions)) await tx.insert(sessions).values(rows.map((row) => ({ ...org, ...row })));
+    for (const rows of chunked(plan.sessions))
+      await tx.insert(sessions).values(rows.map((row) => ({ ...org, ...row })));
     for (const rows of chunked(plan.parts))
       await tx.insert(participations).values(rows.map((row) => ({ ...org, ...row })));
-    await tx.insert(injuries).values(
-      plan.injuries.map(({ injuryId, athleteId }) => ({ ...org, id: injuryId, athleteId, version: 2 })),
-    );
+    await tx
+      .insert(injuries)
+      .values(
+        plan.injuries.map(({ injuryId, athleteId }) => ({ ...org, id: injuryId, athleteId, version: 2 })),
+      );
     await tx.insert(injuryRevisions).values(
       plan.injuries.flatMap(({ athleteId: _athlete, ...row }) => [
         { ...org, ...row, version: 1, withdrawn: false, outsideSport: false, subsequence: "index" },
@@ -216,7 +251,12 @@ export async function plantClub(scope: Scope, plan: Plan) {
       })),
     );
     await tx.insert(availabilityChanges).values(
-      plan.changes.map(({ injuryId: _injury, ...change }) => ({ ...org, id: randomUUID(), restrictions: [], ...change })),
+      plan.changes.map(({ injuryId: _injury, ...change }) => ({
+        ...org,
+        id: randomUUID(),
+        restrictions: [],
+        ...change,
+      })),
     );
   });
 }

@@ -1,5 +1,5 @@
 import { Lede, LinkRow, Region, TextLink } from "~/ui";
-import { percent, type RateRow } from "../rates";
+import type { RateRow } from "../rates";
 import type { RatesFilters } from "../rates.schema";
 import type { Incidence } from "../rates.server";
 import { unitWords, writeNote, writeSentence } from "../sentence";
@@ -76,11 +76,6 @@ export function ClinicalRates({ incidence, filters, scopeName, csvHref, injuries
       ) : null}
       <HowComputed filters={filters} />
       <Region heading="What is left out">
-        <p className="max-w-prose text-soft">
-          {rates.coverage.share === null
-            ? "No session of the season was held yet."
-            : `${percent(rates.coverage.share)} of ${rates.coverage.held.toLocaleString("en-GB")} held sessions have recorded exposure.`}
-        </p>
         <LeftOut leftOut={rates.leftOut} sessionsLeftOut={rates.sessionsLeftOut} />
       </Region>
     </>

@@ -39,7 +39,8 @@ export function HowComputed({ filters }: { filters: RatesFilters }) {
         <p>
           <strong className="font-semibold">Coverage.</strong> The share of held sessions whose participations
           are recorded. Under {share(coverageWarning)} the rates carry a warning, under {share(coverageFloor)}{" "}
-          they are withheld. A team that has entered no injury at all reads "not reported", never 0.
+          they are withheld. A team that has entered no injury and confirmed no week without one reads “not
+          reported”, never 0.
         </p>
       </div>
     </Disclosure>

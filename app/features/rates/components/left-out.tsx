@@ -30,6 +30,7 @@ export function LeftOut({ leftOut, sessionsLeftOut }: Pick<Rates, "leftOut" | "s
   return (
     <div className="max-w-[46rem]">
       <DataTable
+        captionHidden
         caption="What is left out of these rates"
         columns={columns}
         rows={[...injuries, ...sessions].filter(({ count }) => count > 0)}

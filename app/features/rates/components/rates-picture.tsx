@@ -1,6 +1,6 @@
 import { lazy, Suspense } from "react";
 import { decimalsFor } from "../figures";
-import { axisEnd, pictureGroups } from "../picture";
+import { axisEnd, picturedRows, pictureGroups } from "../picture";
 import type { RateRow } from "../rates";
 import type { RatesFilters } from "../rates.schema";
 
@@ -17,27 +17,38 @@ type Props = {
 
 /** Rates with their intervals by group, and the whole's own rate as a line to hold them against. */
 export function RatesPicture({ rows, reference, referenceName, by, title }: Props) {
-  const shown = rows.filter(({ rate, denominator }) => rate || (denominator ?? 0) > 0);
+  const shown = picturedRows(rows);
+  const missing = rows.length - shown.length;
   const decimals = decimalsFor(shown.flatMap(({ rate }) => rate?.estimate ?? []));
   const groups = pictureGroups(shown, by);
   const lines = shown.length * 22 + groups.length * 28;
   return (
-    <Suspense fallback={<div style={{ height: lines + 90 }} />}>
-      <IntervalChart
-        groups={groups}
-        unit="per 1000"
-        title={title}
-        decimals={decimals}
-        max={axisEnd(shown)}
-        {...(reference.rate
-          ? {
-              reference: {
-                value: reference.rate.estimate,
-                label: `${referenceName} ${reference.rate.estimate.toFixed(decimals)}`,
-              },
-            }
-          : {})}
-      />
-    </Suspense>
+    <>
+      <Suspense fallback={<div style={{ height: lines + 90 }} />}>
+        <IntervalChart
+          groups={groups}
+          unit="per 1000"
+          title={title}
+          decimals={decimals}
+          // Room behind the longest interval for its words.
+          max={axisEnd(rows) * 1.1}
+          {...(reference.rate
+            ? {
+                reference: {
+                  value: reference.rate.estimate,
+                  label: `${referenceName} ${reference.rate.estimate.toFixed(decimals)}`,
+                },
+              }
+            : {})}
+        />
+      </Suspense>
+      {missing > 0 ? (
+        <p className="-mt-3 mb-6 max-w-prose text-soft">
+          {missing === 1 ? "One group stands" : `${missing} groups stand`} in the table only: too little
+          exposure to fit
+          {missing === 1 ? " its interval" : " their intervals"} on this axis.
+        </p>
+      ) : null}
+    </>
   );
 }

@@ -1,7 +1,7 @@
 import { useMemo } from "react";
 import { formatTick, niceScale, RateAxis, RateBar } from "~/ui";
 import { type Column, DataTable } from "~/ui/data-table";
-import { decimalsFor, formatCount } from "../figures";
+import { decimalsFor, formatCount, formatRate } from "../figures";
 import { axisEnd, seriesOf } from "../picture";
 import type { RateRow } from "../rates";
 import type { RateUnit } from "../rates.schema";
@@ -19,6 +19,8 @@ type Props = {
 type Line = RateRow & { isTotal: boolean };
 
 const gradeHeads = { recorded: "Recorded", headcount: "From headcounts", estimated: "Estimated" } as const;
+/** A plain spot in a colour that no group has. */
+const totalSeries = 5;
 const dash = <span className="text-soft">–</span>;
 
 /** A total sorts last in both directions: it has nothing to sort by. */
@@ -40,9 +42,13 @@ function gradeColumns(lines: readonly Line[], unit: RateUnit): Column<Line>[] {
   }));
 }
 
-function intervalCell({ rate, reason, unstable }: RateRow, decimals: number) {
+function intervalCell({ rate, reason }: RateRow, decimals: number) {
   if (!rate) return <span className="text-soft">{reason}</span>;
-  return `${rate.lower.toFixed(decimals)} to ${rate.upper.toFixed(decimals)}${unstable ? ", unstable" : ""}`;
+  return (
+    <span className="whitespace-nowrap">
+      {formatRate(rate.lower, decimals)} to {formatRate(rate.upper, decimals)}
+    </span>
+  );
 }
 
 function columnsOf(lines: readonly Line[], unit: RateUnit): Column<Line>[] {
@@ -81,7 +87,7 @@ function columnsOf(lines: readonly Line[], unit: RateUnit): Column<Line>[] {
       header: "Rate",
       numeric: true,
       value: sorts(({ rate }) => rate?.estimate ?? null),
-      cell: ({ rate }) => rate?.estimate.toFixed(decimals) ?? dash,
+      cell: ({ rate }) => (rate ? formatRate(rate.estimate, decimals) : dash),
     },
     { id: "interval", header: "95 % interval, exact", cell: (line) => intervalCell(line, decimals) },
     {
@@ -97,7 +103,7 @@ function columnsOf(lines: readonly Line[], unit: RateUnit): Column<Line>[] {
             <RateBar
               rate={line.rate}
               scale={scale}
-              series={line.isTotal ? 8 : seriesOf(line)}
+              series={line.isTotal ? totalSeries : seriesOf(line)}
               unstable={line.unstable}
               decimals={decimals}
               unit={unitWords}

@@ -1,0 +1,184 @@
+import { randomUUID } from "node:crypto";
+import { readFileSync } from "node:fs";
+import Papa from "papaparse";
+import { describe, expect, it } from "vitest";
+import { ratesQuery } from "~/features/rates/rates.schema";
+import { fixedTablesOf, incidenceOf } from "~/features/rates/rates.server";
+import { incidenceJson } from "~/features/rates/rates-json";
+import { addDays } from "~/platform/clock";
+import { incidenceRate } from "~/statistics";
+import { read, type Scope, write } from "~db/client.server";
+import { athletes, participations, sessions } from "~db/schema";
+import {
+  makeAthlete,
+  makeClub,
+  makeInjury,
+  makeOrganisation,
+  makePerson,
+  makeSeason,
+  makeSession,
+  makeTeam,
+  memberScope,
+  staffScope,
+} from "../../harness";
+
+const filters = ratesQuery.parse({});
+const address = (search = "") => new URL(`http://localhost/club/rates${search}`);
+const incidence = (scope: Scope, search = "", given = filters) =>
+  read(scope, (tx) => incidenceOf(tx, address(search), given));
+
+describe("the exposure by athlete of the examples", () => {
+  it("is 454 athlete-exposures and the file's own hours", async () => {
+    const file = readFileSync("imports/exposure/samples/exposure-by-athlete.csv", "utf8");
+    const { data } = Papa.parse<Record<"date" | "start" | "team" | "kind" | "number" | "minutes", string>>(
+      file,
+      {
+        header: true,
+        skipEmptyLines: true,
+      },
+    );
+    const organisation = await makeOrganisation();
+    const staff = staffScope(organisation);
+    await makeSeason(staff, { startsOn: "2026-08-01", endsOn: "2027-06-30" });
+    const org = { organisationId: organisation.id };
+    const teamIds = new Map<string, string>();
+    for (const name of new Set(data.map(({ team }) => team)))
+      teamIds.set(name, (await makeTeam(staff, { name, sex: "girls" })).id);
+    const athleteIds = new Map(
+      [...new Set(data.map(({ number }) => number))].map((number) => [number, randomUUID()]),
+    );
+    const sessionKey = (row: (typeof data)[number]) => `${row.date} ${row.start} ${row.team} ${row.kind}`;
+    const held = new Map(data.map((row) => [sessionKey(row), { row, id: randomUUID() }]));
+    await write(staff, async (tx) => {
+      await tx
+        .insert(athletes)
+        .values(
+          [...athleteIds].map(([number, id]) => ({
+            ...org,
+            id,
+            number,
+            givenName: "A",
+            familyName: number,
+            nameKey: number,
+          })),
+        );
+      await tx.insert(sessions).values(
+        [...held.values()].map(({ row, id }) => ({
+          ...org,
+          id,
+          teamId: teamIds.get(row.team) ?? "",
+          day: row.date,
+          startTime: row.start,
+          kind: row.kind,
+          state: "held",
+          exposureGrade: "recorded",
+        })),
+      );
+      await tx.insert(participations).values(
+        data.map((row) => ({
+          ...org,
+          sessionId: held.get(sessionKey(row))?.id ?? "",
+          athleteId: athleteIds.get(row.number) ?? "",
+          presence: "took_part",
+          minutes: Number(row.minutes),
+        })),
+      );
+    });
+    const scope = {
+      ...(await memberScope(await makePerson(organisation, { roles: ["lead"] }), organisation)),
+      today: "2027-07-01",
+    };
+    const { rates, exposure } = await incidence(scope);
+    expect(data).toHaveLength(454);
+    expect(rates?.total.denominator).toBe(454);
+    expect(exposure?.aes).toEqual({ recorded: 454, headcount: 0, estimated: 0 });
+    expect(exposure?.hours.recorded).toBeCloseTo(
+      data.reduce((sum, { minutes }) => sum + Number(minutes), 0) / 60,
+      8,
+    );
+    expect(rates?.coverage).toMatchObject({ share: 1, state: "good" });
+    expect(rates?.rows.map(({ key }) => key)).toEqual(["not_stated unknown"]);
+  });
+});
+
+describe("an organisation with nothing yet", () => {
+  it("has no rate without a season, and a dash with its reason in an empty season", async () => {
+    const organisation = await makeOrganisation();
+    const lead = await makePerson(organisation, { roles: ["lead"] });
+    const scope = await memberScope(lead, organisation);
+    expect(await incidence(scope)).toMatchObject({ period: null, rates: null });
+    await makeSeason(staffScope(organisation));
+    const empty = await incidence(scope);
+    expect(empty.rates?.total).toMatchObject({ injuries: 0, rate: null, reason: "no athlete-exposures" });
+    const json = JSON.stringify(incidenceJson(empty, filters));
+    expect(json).not.toMatch(/NaN|Infinity/);
+    expect(JSON.parse(json)).toMatchObject({ groups: [], total: { rate: null }, coverage: { share: null } });
+    const admin = await memberScope(await makePerson(organisation, { roles: ["admin"] }), organisation);
+    const { fixed } = await fixedTablesOf(admin, address());
+    expect(fixed?.tables.map(({ rows }) => rows)).toEqual([[], []]);
+  });
+});
+
+/** Two teams with sessions: the first with six injured of eight, the second with two injured of six. */
+async function makeInjuredClub() {
+  const club = await makeClub();
+  const { staff, team, otherTeam } = club;
+  const day = addDays(staff.today, -40);
+  for (const { teamId, sex, size, hurt } of [
+    { teamId: team.id, sex: "female", size: 8, hurt: 6 },
+    { teamId: otherTeam.id, sex: "male", size: 6, hurt: 2 },
+  ]) {
+    const ids: string[] = [];
+    for (let n = 0; n < size; n++) ids.push((await makeAthlete(staff, { teamId, sex })).id);
+    const session = await makeSession(staff, {
+      teamId,
+      day,
+      minutes: Object.fromEntries(ids.map((id) => [id, 90])),
+    });
+    for (const athleteId of ids.slice(0, hurt))
+      await makeInjury(staff, {
+        athleteId,
+        sessionId: session.id,
+        onsetDay: day,
+        unavailableFrom: addDays(day, 1),
+      });
+  }
+  return club;
+}
+
+describe("who sees what", () => {
+  it("gives a trainer of listed teams those teams and the club's total", async () => {
+    const club = await makeInjuredClub();
+    const own = await incidence(club.scopes.trainer, "", { ...filters, by: "team" });
+    expect(own.rates?.rows.map(({ key }) => key)).toEqual([club.team.id]);
+    expect(own.rates?.total).toMatchObject({ injuries: 6, denominator: 8 });
+    expect(own.club).toMatchObject({ injuries: 8, denominator: 14 });
+    expect(own.club?.rate).toEqual(incidenceRate({ events: 8, exposure: 14 }));
+    await expect(incidence(club.scopes.trainer, `?team=${club.otherTeam.id}`)).rejects.toThrow(/not found/);
+    const whole = await incidence(club.scopes.lead, "", { ...filters, by: "team" });
+    expect(whole.club).toBeNull();
+    expect(whole.rates?.total).toMatchObject({ injuries: 8, denominator: 14 });
+  });
+
+  it("counts for the administrator, whose own rights do not reach injuries, and hides small cells", async () => {
+    const club = await makeInjuredClub();
+    const direct = await incidence(club.scopes.admin);
+    expect(direct.rates?.total.injuries).toBe(0);
+    const { fixed } = await fixedTablesOf(club.scopes.admin, address(`?team=${club.otherTeam.id}&by=team`));
+    const [bySex, byAge] = fixed?.tables ?? [];
+    expect(bySex?.total).toMatchObject({ injuries: 8 });
+    expect(bySex?.rows.map(({ injuries, exposure, rate }) => [injuries, exposure, rate])).toEqual([
+      [null, null, null],
+      [null, null, null],
+    ]);
+    // One band alone is the total.
+    expect(byAge?.rows.map(({ injuries }) => injuries)).toEqual([8]);
+  });
+
+  it("keeps another organisation's records out", async () => {
+    await makeInjuredClub();
+    const other = await makeClub();
+    const { rates } = await incidence(other.scopes.lead);
+    expect(rates?.total).toMatchObject({ injuries: 0, denominator: 0, rate: null });
+  });
+});

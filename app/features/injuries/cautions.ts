@@ -9,7 +9,7 @@ export type Seen = {
   couldContinue: boolean | null;
 };
 
-export type CautionKind = "emergency_head" | "emergency_limb" | "concussion" | "knee";
+export type CautionKind = "emergency_head" | "emergency_limb" | "concussion" | "knee" | "knee_today";
 
 export type Caution = {
   kind: CautionKind;
@@ -52,45 +52,52 @@ export const hasEmergencySign = (seen: Seen) =>
   has(seen, headEmergencySigns) || has(seen, limbEmergencySigns);
 export const suspectsSeriousKnee = (seen: Seen) => seen.bodyArea === "knee" && has(seen, kneeSigns);
 
+const stayWithHelp = "until help is there.";
+
+const emergencyHead: Caution = {
+  kind: "emergency_head",
+  title: "Call the emergency services now",
+  text: `These signs can mean a serious injury of the head or neck. Keep the athlete still and stay with them ${stayWithHelp}`,
+  emergency: true,
+};
+const emergencyLimb: Caution = {
+  kind: "emergency_limb",
+  title: "Call the emergency services now",
+  text: `Leave the limb as it lies: do not move or splint it yourself. Stay with the athlete ${stayWithHelp}`,
+  emergency: true,
+};
+const concussion: Caution = {
+  kind: "concussion",
+  title: "Treat as a concussion",
+  text: "Out for today, without exception, and never left alone. Call the emergency services if they pass out, have a seizure, vomit again and again, see double, become drowsy or agitated, have a weak limb or neck pain, or the headache grows worse.",
+  emergency: false,
+};
+const knee = (kind: "knee" | "knee_today"): Caution => ({
+  kind,
+  title: "Treat as a serious knee injury",
+  text: `Out for today. No weight on the leg; protect, compress and cool it. A physician should see them ${
+    kind === "knee_today" ? "today" : "as soon as possible"
+  }.`,
+  emergency: false,
+});
+
+const allCautions = [emergencyHead, emergencyLimb, concussion, knee("knee_today"), knee("knee")];
+
+/** The cautions of these kinds, the most pressing first; unknown kinds are left out. */
+export const cautionsOfKinds = (kinds: readonly string[]): Caution[] =>
+  allCautions.filter(({ kind }) => kinds.includes(kind));
+
 /**
  * The cautions for what was seen, the most pressing first. They support whoever is there; they diagnose nothing.
  * Local law, the organisation's policy and the treating clinician come first.
  */
 export function cautionsFor(seen: Seen): Caution[] {
-  const cautions: Caution[] = [];
-  if (has(seen, headEmergencySigns))
-    cautions.push({
-      kind: "emergency_head",
-      title: "Call the emergency services now",
-      text: "These signs can mean a serious injury of the head or neck. Keep the athlete still and stay with them until help is there.",
-      emergency: true,
-    });
-  if (has(seen, limbEmergencySigns))
-    cautions.push({
-      kind: "emergency_limb",
-      title: "Call the emergency services now",
-      text: "Leave the limb as it lies: do not move or splint it yourself. Stay with the athlete until help is there.",
-      emergency: true,
-    });
-  if (suspectsConcussion(seen))
-    cautions.push({
-      kind: "concussion",
-      title: "Treat as a concussion",
-      text: "Out for today, without exception, and never left alone. Call the emergency services if they pass out, have a seizure, vomit again and again, see double, become drowsy or agitated, have a weak limb or neck pain, or the headache grows worse.",
-      emergency: false,
-    });
-  if (suspectsSeriousKnee(seen))
-    cautions.push({
-      kind: "knee",
-      title: "Treat as a serious knee injury",
-      text: `Out for today. No weight on the leg; protect, compress and cool it. ${
-        has(seen, sameDayKneeSigns)
-          ? "A physician should see them today."
-          : "A physician should see them as soon as possible."
-      }`,
-      emergency: false,
-    });
-  return cautions;
+  const kinds: CautionKind[] = [];
+  if (has(seen, headEmergencySigns)) kinds.push("emergency_head");
+  if (has(seen, limbEmergencySigns)) kinds.push("emergency_limb");
+  if (suspectsConcussion(seen)) kinds.push("concussion");
+  if (suspectsSeriousKnee(seen)) kinds.push(has(seen, sameDayKneeSigns) ? "knee_today" : "knee");
+  return cautionsOfKinds(kinds);
 }
 
 export type SafeDefaultReason = "concussion" | "emergency" | "serious_knee" | "could_not_continue";

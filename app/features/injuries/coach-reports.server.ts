@@ -1,4 +1,5 @@
 import { randomUUID } from "node:crypto";
+import { z } from "zod";
 import { may } from "~/features/accounts/permissions";
 import type { MemberScope } from "~/features/accounts/scope.server";
 import {
@@ -15,7 +16,13 @@ import { sealer } from "~/platform/crypto/keys.server";
 import { DomainError, forbidden, notFound } from "~/platform/errors";
 import { once } from "~/platform/operations.server";
 import { read, write } from "~db/client.server";
-import { type CautionKind, cautionsFor, safeDefaultReasons, suggestUrgency } from "./cautions";
+import {
+  type CautionKind,
+  cautionsFor,
+  cautionsOfKinds,
+  safeDefaultReasons,
+  suggestUrgency,
+} from "./cautions";
 import {
   findReport,
   insertEncounter,
@@ -23,6 +30,7 @@ import {
   insertReport,
   reportPlace,
 } from "./coach-reports.queries.server";
+import { findResult } from "./drafts.queries.server";
 import { findAthlete, findSessionsOf } from "./injuries.queries.server";
 import type { EncounterInput, ReportInput } from "./injuries.schema";
 import { listOpenCoachReports } from "./injuries.server";
@@ -94,6 +102,18 @@ export function sendCoachReport(scope: MemberScope, input: ReportInput): Promise
       return { cautions: cautionsFor(input).map(({ kind }) => kind), unavailable: reasons.length > 0 };
     }),
   );
+}
+
+const receiptSchema = z.object({ cautions: z.array(z.string()), unavailable: z.boolean() });
+
+/** The receipt of a report the person sent, by its operation; null for anything else. */
+export function readReceipt(scope: MemberScope, operation: string) {
+  return read(scope, async (tx) => {
+    const result = receiptSchema.safeParse(await findResult(tx, operation));
+    return result.success
+      ? { cautions: cautionsOfKinds(result.data.cautions), unavailable: result.data.unavailable }
+      : null;
+  });
 }
 
 /** The queue: what coaches sent and nobody has dealt with yet. */

@@ -35,11 +35,11 @@ export async function removeDraft(tx: Tx, personId: string, form: string) {
   await tx.delete(formDrafts).where(own(tx, personId, form));
 }
 
-/** Whether an operation of the person was already carried out. */
-export async function wasDone(tx: Tx, operationId: string) {
+/** The result of an operation of the person's own; undefined while it was not carried out. */
+export async function findResult(tx: Tx, operationId: string) {
   const [row] = await tx
-    .select({ id: operations.id })
+    .select({ result: operations.result })
     .from(operations)
     .where(and(eq(operations.organisationId, tx.scope.organisationId), eq(operations.id, operationId)));
-  return row !== undefined;
+  return row?.result;
 }

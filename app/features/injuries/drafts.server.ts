@@ -4,7 +4,7 @@ import { sealer } from "~/platform/crypto/keys.server";
 import { DomainError } from "~/platform/errors";
 import type { FormValues } from "~/ui";
 import { type Tx, write } from "~db/client.server";
-import { findDraft, removeDraft, upsertDraft, wasDone } from "./drafts.queries.server";
+import { findDraft, findResult, removeDraft, upsertDraft } from "./drafts.queries.server";
 
 /** Drafts of the injury forms, kept on the server as they are typed and sealed like the record they become. */
 
@@ -36,7 +36,7 @@ export function saveDraft(scope: MemberScope, form: string, values: FormValues):
     if (
       typeof operation === "string" &&
       z.uuid().safeParse(operation).success &&
-      (await wasDone(tx, operation))
+      (await findResult(tx, operation))
     )
       return null;
     const seals = await sealer(tx);

@@ -143,7 +143,9 @@ function csvLine({ athlete, revision, session, ...row }: Line) {
     `${athlete.givenName} ${athlete.familyName}`,
     athlete.number,
     sexWords[athlete.sex as keyof typeof sexWords],
-    athlete.dateOfBirth ? ageOn(athlete.dateOfBirth, revision.onsetDay) : "",
+    athlete.dateOfBirth && athlete.dateOfBirth <= revision.onsetDay
+      ? ageOn(athlete.dateOfBirth, revision.onsetDay)
+      : "",
     row.teams.join(", "),
     revision.onsetDay,
     revision.onsetTime?.slice(0, 5),

@@ -20,6 +20,7 @@ import { findAthlete, findSessionsOf, insertInjury, insertRevision } from "./inj
 import type { LogInput } from "./injuries.schema";
 import { resolveOnset } from "./onset.server";
 import { revisionPlace } from "./overview.server";
+import { commonAreas } from "./seen";
 
 /** What the log form starts from: a draft, a coach's report, or an athlete named in the address. */
 export function openLogForm(scope: MemberScope, from: { athleteId: string | null; reportId: string | null }) {
@@ -65,7 +66,9 @@ function valuesOfReport(report: ReportRow): FormValues {
     when: report.sessionId ? `session:${report.sessionId}` : "earlier",
     day: `${day} ${month} ${year}`,
     time: report.onsetTime?.slice(0, 5) ?? "",
-    bodyArea: report.bodyArea,
+    ...(commonAreas.includes(report.bodyArea)
+      ? { bodyArea: report.bodyArea }
+      : { bodyArea: "another", otherArea: report.bodyArea }),
     side: report.side,
     suspectedConcussion: yesNo(report.suspectedConcussion),
     couldContinue: yesNo(report.couldContinue),

@@ -78,3 +78,11 @@ export function summariseInjury(name: string, facts: Facts): string {
       : `${dayCount(facts.timeLoss.days)} lost, fully available again.`;
   return `${first} ${cost}`;
 }
+
+/** Why a record was withdrawn, in words. */
+export const withdrawWords: Record<string, string> = {
+  wrong_athlete: "it was about another athlete",
+  entered_twice: "it was entered twice",
+  not_an_injury: "it was no injury",
+  trial_entry: "it was a trial entry",
+};

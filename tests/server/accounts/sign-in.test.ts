@@ -1,5 +1,13 @@
 import { beforeAll, beforeEach, describe, expect, it } from "vitest";
-import { authDatabase, makeAccount, makeClub, makePerson, openMailbox, type TestPerson } from "../../harness";
+import {
+  authDatabase,
+  join,
+  makeAccount,
+  makeClub,
+  makePerson,
+  openMailbox,
+  type TestPerson,
+} from "../../harness";
 import { cookieOf, cookiesOf, type Http, openServer, post } from "../../harness/http";
 
 let http: Http;
@@ -161,12 +169,12 @@ describe("an address that is not confirmed", () => {
     await authDatabase()`update auth.user set email_verified = false where id = ${person.id}`;
     await signIn(person.email, person.password).expect(400);
     const link = await newestLink(person.email, "/verify-email");
-    const token = link.searchParams.get("token") ?? "";
+    const proof = link.searchParams.get("token") ?? "";
     await http.get(link.pathname + link.search).expect(200);
     await signIn(person.email, person.password).expect(400);
-    await post(http, "/verify-email", { token }).redirects(0).expect(302);
+    await post(http, "/verify-email", { proof }).redirects(0).expect(302);
     await signIn(person.email, person.password).expect(302);
-    await post(http, "/verify-email", { token: `${token}x` })
+    await post(http, "/verify-email", { proof: `${proof}x` })
       .redirects(0)
       .expect(410);
   });
@@ -179,7 +187,6 @@ it("signs out of this session and leaves nothing to come back with", async () =>
 });
 
 it("shows a person of several organisations the choice, and each only its own records", async () => {
-  const { join } = await import("../../harness");
   const first = await makeClub({ name: "First Club" });
   const second = await makeClub({ name: "Second School", kind: "school" });
   const both = await makePerson(first.organisation, { roles: ["trainer"] });

@@ -48,10 +48,16 @@ export async function enqueue(
           return value;
         });
         const chunks = text.split(/\$(\d+)/);
+        const numbers = chunks.filter((_, index) => index % 2 === 1);
         const query = sql.join(
-          chunks.map((chunk, index) =>
-            index % 2 === 0 ? sql.raw(chunk) : sql`${prepared[Number(chunk) - 1] as string | null}`,
-          ),
+          chunks.map((chunk, index) => {
+            if (index % 2 === 0) return sql.raw(chunk);
+            const value = prepared[Number(chunk) - 1] as string | null;
+            // Each use becomes a parameter of its own. One that is used several times keeps the type of a text, or the
+            // database would read "10" as a moment in the branch that is not taken.
+            const repeated = numbers.indexOf(chunk) !== numbers.lastIndexOf(chunk);
+            return repeated && typeof value === "string" ? sql`${value}::text` : sql`${value}`;
+          }),
         );
         const rows = await tx.execute(query);
         return { rows: [...rows], rowCount: rows.length };

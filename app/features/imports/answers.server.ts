@@ -7,6 +7,7 @@ import {
   answersSchema,
   type DoubtAnswer,
   doubtAnswerSchema,
+  type Reading,
   type TeamAnswer,
 } from "./imports.schema";
 import type { ImportDefinition } from "./kinds";
@@ -20,19 +21,27 @@ const oneOf = <T extends string>(codes: readonly T[], text: string) => codes.fin
  * delimiter or header row makes the confirmed columns void.
  * @throws DomainError invalid with the fields concerned
  */
-export function mergeAnswers(before: Answers, form: FormData, definition: ImportDefinition): Answers {
+export function mergeAnswers(
+  before: Answers,
+  reading: Reading | null,
+  form: FormData,
+  definition: ImportDefinition,
+): Answers {
   const fields: Record<string, string[]> = {};
-  const answers: Answers = { ...before };
-  const table = readTable(form, fields);
-  Object.assign(answers, table);
-  const read = (key: "encoding" | "delimiter" | "headerLine") =>
-    table[key] !== undefined && table[key] !== before[key];
-  if (read("encoding") || read("delimiter") || read("headerLine")) delete answers.columns;
+  const said = newlySaid(readTable(form, fields), before, reading);
+  const answers: Answers = { ...before, ...said };
+  if (said.encoding || said.delimiter || said.headerLine) delete answers.columns;
   else Object.assign(answers, readColumns(form, definition, fields));
   answers.teams = { ...before.teams, ...readTeams(form, fields) };
   answers.doubts = { ...before.doubts, ...readDoubts(form) };
   if (Object.keys(fields).length > 0) throw new DomainError("invalid", "", { fields });
   return answersSchema.parse(answers);
+}
+
+/** What the form shows, as answered or else as read, and sends back unchanged says nothing. */
+function newlySaid(table: Answers, before: Answers, reading: Reading | null): Answers {
+  const shown: Record<string, unknown> = { ...reading, ...before };
+  return Object.fromEntries(Object.entries(table).filter(([key, value]) => shown[key] !== value));
 }
 
 function text(form: FormData, name: string) {

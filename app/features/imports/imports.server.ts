@@ -171,7 +171,9 @@ export async function answerImport(scope: MemberScope, id: string, form: FormDat
   const small = await write(scope, async (tx) => {
     const record = await get(tx, id);
     const before = answersSchema.parse(record.answers);
-    const answers = mergeAnswers(before, form, definitions[record.kind as ImportKind]);
+    const reading = readingSchema.safeParse(record.reading);
+    const shown = reading.success ? reading.data : null;
+    const answers = mergeAnswers(before, shown, form, definitions[record.kind as ImportKind]);
     if (scope.teams !== "all") delete answers.teams;
     const patch = { state: "uploaded", answers, questions: [], failure: null, progressDone: 0 };
     if (!(await updateImport(tx, id, answerable, patch))) throw moved();

@@ -25,7 +25,11 @@ describe("files that are no table", () => {
       /^The file is a spreadsheet workbook or a ZIP archive, not a CSV file\. Open it/,
     ],
     ["a picture", bytes(0x89, 0x50, 0x4e, 0x47), /^The file holds a picture, not a table as text\./],
-    ["zero bytes", "a,b\n1,\u0000\n", /^The file holds something that is not text/],
+    [
+      "zero bytes",
+      `${header}\n1,Ta\u0000m,Longreach,2011-01-01,X\n`,
+      /^The file holds something that is not text/,
+    ],
     ["header only", `${header}\n`, /^The file holds a header row and nothing below it\. Add the rows/],
     [
       "an open quotation mark",

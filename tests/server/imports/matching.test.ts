@@ -173,6 +173,37 @@ describe("what stops and asks", () => {
     expect(next.counts).toMatchObject({ unchanged: 1 });
   });
 
+  it("takes columns and an unchanged reading from one form, and drops the columns with another header row", async () => {
+    const { scope, team } = await open();
+    const rows = [
+      "Members of the club",
+      "Kit code,Given name,Family name,Date of birth,Team",
+      `1,Tam,Longreach,2011-04-03,${team}`,
+    ];
+    const view = await uploadAndView(scope, "roster", csvFile(rows));
+    expect(view.reading).toMatchObject({ headerLine: 2, titleLines: ["Members of the club"] });
+    const columns = Object.fromEntries(
+      ["number", "givenName", "familyName", "dateOfBirth", ""].map((key, index) => [`column.${index}`, key]),
+    );
+    const mapped = await answer(scope, view.id, {
+      ...columns,
+      encoding: "utf-8",
+      delimiter: ",",
+      headerLine: "2",
+    });
+    expect(mapped.headings.map(({ key }) => key)).toEqual([
+      "number",
+      "givenName",
+      "familyName",
+      "dateOfBirth",
+      null,
+    ]);
+    const moved = await answer(scope, view.id, { ...columns, headerLine: "3" });
+    expect(moved.state).toBe("needs_answers");
+    expect(moved.reading?.header[1]).toBe("Tam");
+    expect(moved.questions.map(({ kind }) => kind)).toContain("columns");
+  });
+
   it("refuses one column chosen for two headings and keeps what was answered", async () => {
     const { scope, team } = await open();
     const view = await uploadAndView(scope, "roster", roster([`1,Tam,Longreach,2011-04-03,${team}`]));

@@ -87,7 +87,7 @@ describe("undoing an import", () => {
     expect(await undoImport(scope, later.id)).toEqual([]);
     const [athlete] =
       await maintenance()`select id from athletes where organisation_id = ${id} and number = 'A1'`;
-    await makeInjury(club.staff, { athleteId: String(athlete?.id), teamId: club.team.id });
+    await makeInjury(club.staff, { athleteId: String(athlete?.id) });
     const blockers = await undoImport(scope, done.id);
     expect(new Set(blockers.map(({ name }) => name))).toEqual(new Set(["Tam Longreach"]));
     // Who may not see injuries learns that something is in the way, not what.

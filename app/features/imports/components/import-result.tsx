@@ -1,3 +1,4 @@
+import { useEffect, useRef } from "react";
 import {
   Attention,
   ButtonLink,
@@ -82,18 +83,25 @@ export function ImportResult({ view, told, blockers }: Props) {
 
 function Blockers({ blockers }: { blockers: Blocker[] }) {
   const shown = [...new Set(blockers.map(({ name }) => name))];
+  const box = useRef<HTMLDivElement>(null);
+  // The button stands at the foot of the page, the answer at its head.
+  // biome-ignore lint/correctness/useExhaustiveDependencies: each answer takes the focus, equal ones too
+  useEffect(() => box.current?.focus(), [blockers]);
   return (
-    <Note kind="serious" role="alert" title="This import cannot be undone: later work would be lost">
-      <p>These were edited or used since. Nothing was changed.</p>
-      <ul className="list-disc pl-6">
-        {shown.slice(0, 20).map((name) => (
-          <li key={name}>{name}</li>
-        ))}
-      </ul>
-      {shown.length > 20 ? <p>And more.</p> : null}
-      <p>
-        Correct single records by hand instead, for example on the <TextLink to="../roster">roster</TextLink>.
-      </p>
-    </Note>
+    <div ref={box} tabIndex={-1}>
+      <Note kind="serious" role="alert" title="This import cannot be undone: later work would be lost">
+        <p>These were edited or used since. Nothing was changed.</p>
+        <ul className="list-disc pl-6">
+          {shown.slice(0, 20).map((name) => (
+            <li key={name}>{name}</li>
+          ))}
+        </ul>
+        {shown.length > 20 ? <p>And more.</p> : null}
+        <p>
+          Correct single records by hand instead, for example on the{" "}
+          <TextLink to="../roster">roster</TextLink>.
+        </p>
+      </Note>
+    </div>
   );
 }

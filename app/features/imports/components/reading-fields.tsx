@@ -23,17 +23,25 @@ export function ReadingFields({ reading, answers, withDays = true }: Props) {
         label="Encoding"
         help={reading.encodingSure ? undefined : "Not certain: check that accented letters below look right."}
       >
-        <Select options={options(encodingWords)} defaultValue={reading.encoding} width="medium" />
+        <Select
+          options={options(encodingWords)}
+          defaultValue={answers.encoding ?? reading.encoding}
+          width="medium"
+        />
       </Field>
       <Field
         name="delimiter"
         label="Cells are parted by"
         help={reading.delimiterSure ? undefined : "Not certain: check that the columns below are right."}
       >
-        <Select options={options(delimiterWords)} defaultValue={reading.delimiter} width="medium" />
+        <Select
+          options={options(delimiterWords)}
+          defaultValue={answers.delimiter ?? reading.delimiter}
+          width="medium"
+        />
       </Field>
       <Field name="headerLine" label="Line of the headings" help="Lines above it are left out.">
-        <NumberInput defaultValue={reading.headerLine} width="short" />
+        <NumberInput defaultValue={answers.headerLine ?? reading.headerLine} width="short" />
       </Field>
       {asks ? (
         <Field name="dayOrder" label="Days are written">

@@ -16,16 +16,16 @@ type Line = {
 };
 
 /** The first filled cells, enough to recognise a row. */
-const rowWords = (cells: readonly string[]) =>
+const rowWords = (cells: readonly string[], most: number) =>
   cells
     .filter((cell) => cell.trim() !== "")
-    .slice(0, 4)
+    .slice(0, most)
     .join(", ");
 
 function linesOf(view: RowsView, row: ShownRow): Line[] {
   const base = {
     line: row.line,
-    who: rowWords(row.cells),
+    who: rowWords(row.cells, view === "create" || view === "unchanged" ? 8 : 3),
     column: "",
     cell: "",
     says: "",
@@ -48,54 +48,54 @@ function linesOf(view: RowsView, row: ShownRow): Line[] {
   return parts.map((part, index) => ({ ...base, ...part, key: `${row.line}-${index}` }));
 }
 
-const line: Column<Line> = {
+const named: Column<Line> = {
   id: "line",
   header: "Line",
-  numeric: true,
   rowHeader: true,
-  cell: (row) => row.line,
+  cell: (row) => (
+    <>
+      {row.line}
+      <span className="block break-words text-soft">{row.who}</span>
+    </>
+  ),
 };
-const who: Column<Line> = {
-  id: "who",
-  header: "Row",
-  cell: (row) => <span className="break-words">{row.who}</span>,
-};
-const place: Column<Line>[] = [
-  { id: "column", header: "Column", cell: (row) => row.column || "whole row" },
-  {
-    id: "cell",
-    header: "Cell",
-    cell: (row) => <span className="break-words">{row.cell === "" ? "empty" : row.cell}</span>,
-  },
+const bare: Column<Line>[] = [
+  { id: "line", header: "Line", rowHeader: true, cell: (row) => row.line },
+  { id: "who", header: "Row", cell: (row) => <span className="break-words">{row.who}</span> },
 ];
 const said: Column<Line>[] = [
-  line,
-  ...place,
+  named,
   {
     id: "says",
     header: "Why, and what to do",
     cell: (row) => (
-      <>
+      <span className="block min-w-[15rem]">
         {row.says} <span className="text-soft">{row.mend}</span>
-      </>
+      </span>
     ),
   },
-  who,
+  { id: "column", header: "Column", cell: (row) => row.column || "whole row" },
+  { id: "cell", header: "Cell", cell: (row) => <Cell text={row.cell} /> },
 ];
 const changed: Column<Line>[] = [
-  line,
-  who,
+  named,
   { id: "column", header: "What", cell: (row) => row.column },
   { id: "before", header: "Old", cell: (row) => row.before },
   { id: "after", header: "New", cell: (row) => <strong className="font-medium">{row.after}</strong> },
 ];
+
+function Cell({ text }: { text: string }) {
+  if (text.trim() === "") return <span className="text-soft">empty</span>;
+  return <span className="block max-w-[18rem] break-words">{text}</span>;
+}
+
 const columnsOf: Record<RowsView, Column<Line>[]> = {
   rejected: said,
   doubtful: said,
   warned: said,
   update: changed,
-  create: [line, who],
-  unchanged: [line, who],
+  create: bare,
+  unchanged: bare,
 };
 const viewWords: Record<RowsView, string> = {
   rejected: "rejected",
@@ -104,6 +104,14 @@ const viewWords: Record<RowsView, string> = {
   create: "new",
   unchanged: "unchanged",
   doubtful: "doubtful",
+};
+const captions: Record<RowsView, string> = {
+  rejected: "Rejected rows",
+  update: "Rows that change something",
+  warned: "Rows to look at",
+  create: "New rows",
+  unchanged: "Unchanged rows",
+  doubtful: "Doubtful rows",
 };
 const offered: RowsView[] = ["rejected", "update", "warned", "create", "unchanged"];
 
@@ -135,7 +143,7 @@ export function RowsTable({ view }: { view: ImportView }) {
           ))}
       </p>
       <DataTable
-        caption={`Rows ${viewWords[rows.view]}`}
+        caption={captions[rows.view]}
         columns={columnsOf[rows.view]}
         rows={rows.items.flatMap((row) => linesOf(rows.view, row))}
         rowKey={(row) => row.key}

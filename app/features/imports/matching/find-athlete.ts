@@ -74,7 +74,7 @@ function judge(row: RosterRow, index: AthleteIndex): AthleteMatch {
   const namesakes = index.named(nameKey);
   const twins = birthday ? namesakes.filter(({ dateOfBirth }) => dateOfBirth === birthday) : [];
   const unborn = namesakes.filter(({ dateOfBirth }) => dateOfBirth === null);
-  return row.number ? judgeNewNumber(row, namesakes, twins, birthday) : judgeNameless(row, twins, unborn);
+  return row.number ? judgeNewNumber(namesakes, twins, birthday) : judgeNameless(row, twins, unborn);
 }
 
 function judgeHolder(
@@ -96,7 +96,6 @@ function judgeHolder(
 
 /** A number nobody has yet: a new athlete, unless a namesake may be the same person. */
 function judgeNewNumber(
-  row: RosterRow,
   namesakes: AthleteRecord[],
   twins: AthleteRecord[],
   birthday: string | null,

@@ -14,8 +14,9 @@ const clinicalWords = new Set(
 );
 
 const wordsOf = (text: string) =>
-  foldText(text)
-    .split(/[^\p{L}\p{N}]+/u)
+  text
+    .split(/[^\p{L}\p{M}\p{N}]+/u)
+    .map(foldText)
     .filter(Boolean);
 
 /**

@@ -205,3 +205,13 @@ export function addEncounter(scope: MemberScope, input: EncounterInput): Promise
     }),
   );
 }
+
+/** An athlete named in an address, as a form's first choice; null for an absent or invisible one. */
+export function findNamedAthlete(scope: MemberScope, id: string | null) {
+  const parsed = z.uuid().safeParse(id);
+  if (!parsed.success) return Promise.resolve(null);
+  return read(scope, async (tx) => {
+    const athlete = await findAthlete(tx, parsed.data);
+    return athlete ? { id: athlete.id, label: `${athlete.givenName} ${athlete.familyName}` } : null;
+  });
+}

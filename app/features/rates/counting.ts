@@ -1,6 +1,6 @@
 import { type AgeBand, ageBand } from "~/statistics";
 import type { ExposureGrade, Onset, SessionKind, SessionState, Sex, subsequences } from "~db/schema/codes";
-import type { CaseDefinition, RateUnit, SessionChoice } from "./rates.schema";
+import type { CaseDefinition, RateUnit, SessionChoice } from "./filters";
 
 /**
  * From records to counts: which injuries enter which numerator, and which exposure stands under it. Pure; the rows

@@ -1,22 +1,13 @@
 import type { AgeBand } from "~/statistics";
 import { bandOf, type ExposureCell, type InjuryRow } from "./counting";
+import { fixedFilters, fixedGroupings } from "./filters";
 import { type Counts, computeRates, type RateRow, type Rates } from "./rates";
-import type { RatesFilters } from "./rates.schema";
 import { type CountCell, suppressSmallCells } from "./suppression";
 
 /**
  * What is shown outside the clinical roles: fixed tables without filters, small cells hidden. Two groupings only,
  * since tables of teams, sports or session kinds would let hidden cells be worked out from one another.
  */
-export const fixedGroupings = ["sex", "age"] as const;
-
-export const fixedFilters = (by: (typeof fixedGroupings)[number]): RatesFilters => ({
-  injuries: "time-loss",
-  sessions: "training-and-matches",
-  by,
-  per: "aes",
-});
-
 export type ExposedAthlete = Pick<ExposureCell, "sex" | "age"> & { athleteId: string };
 
 export type FixedTable = {

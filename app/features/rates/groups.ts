@@ -2,7 +2,7 @@ import type { AgeBand } from "~/statistics";
 import type { Sport } from "~db/schema/codes";
 import { sentenceCase, sportWords } from "../vocabulary";
 import { bandOf, type CountedSex, type ExposureCell, type InjuryRow } from "./counting";
-import type { Grouping } from "./rates.schema";
+import type { Grouping } from "./filters";
 
 /** The groups of a table: their keys, their words, their order, and which cells and injuries fall in them. */
 
@@ -115,7 +115,3 @@ export function groupKey(by: Grouping, { bands, teams }: Context) {
     }
   };
 }
-
-/** The name of a sex in the picture of a band. */
-export const pictureName = (sex: CountedSex, label: string) =>
-  sex === "unknown" ? "above the roster" : (label.split(",")[0] ?? "").toLowerCase();

@@ -1,8 +1,8 @@
 import type { IntervalGroup } from "~/ui/charts/interval-chart";
 import type { SeriesNumber } from "~/ui/series";
-import { pictureName } from "./groups";
+import type { CountedSex } from "./counting";
+import type { RatesFilters } from "./filters";
 import type { RateRow } from "./rates";
-import type { RatesFilters } from "./rates.schema";
 
 /** The series of a row: each sex has its own colour, marker and dash; anything else is of one kind. */
 export function seriesOf({ sex }: RateRow): SeriesNumber {
@@ -10,6 +10,10 @@ export function seriesOf({ sex }: RateRow): SeriesNumber {
   if (sex === "not_stated") return 3;
   return sex === "unknown" ? 4 : 1;
 }
+
+/** The name of a sex in the picture of a band. */
+const pictureName = (sex: CountedSex, label: string) =>
+  sex === "unknown" ? "above the roster" : (label.split(",")[0] ?? "").toLowerCase();
 
 const injuries = (count: number) => `${count} ${count === 1 ? "injury" : "injuries"}`;
 

@@ -1,6 +1,6 @@
 import { type CsvValue, writeCsv } from "~/platform/csv";
+import type { RatesFilters } from "./filters";
 import type { RateRow, Rates } from "./rates";
-import type { RatesFilters } from "./rates.schema";
 
 /** What every row says of itself, so that a figure cut out of the file still carries its definition. */
 export type CsvContext = {

@@ -1,5 +1,6 @@
-import { type RateRow, stableFrom } from "./rates";
-import type { RatesFilters } from "./rates.schema";
+import { stableFrom } from "./coverage";
+import type { RatesFilters } from "./filters";
+import type { RateRow } from "./rates";
 import type { Incidence } from "./rates.server";
 
 /** JSON has no infinity: a limit that does not exist is null. */

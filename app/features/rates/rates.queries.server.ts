@@ -1,8 +1,8 @@
 import { type SQL, sql } from "drizzle-orm";
 import type { Tx } from "~db/client.server";
 import type { ExposureCell, InjuryRow } from "./counting";
+import type { SessionTally } from "./coverage";
 import type { Band, RatedTeam } from "./groups";
-import type { SessionTally } from "./rates";
 
 /** The only SQL of the rates: one pass per question. What counts is said in counting.ts. */
 

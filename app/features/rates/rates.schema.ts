@@ -1,16 +1,6 @@
 import { z } from "zod";
 import { DomainError } from "~/platform/errors";
-
-/** What a rates address may ask: one schema for the page, the CSV and the API. */
-export const caseDefinitions = ["time-loss", "medical-attention"] as const;
-export const sessionChoices = ["training-and-matches", "training", "match"] as const;
-export const groupings = ["sex-age", "sex", "age", "sport", "kind", "team"] as const;
-export const units = ["aes", "hours"] as const;
-
-export type CaseDefinition = (typeof caseDefinitions)[number];
-export type SessionChoice = (typeof sessionChoices)[number];
-export type Grouping = (typeof groupings)[number];
-export type RateUnit = (typeof units)[number];
+import { caseDefinitions, defaultFilters, groupings, sessionChoices, units } from "./filters";
 
 const oneOf = <const T extends readonly [string, ...string[]]>(values: T) =>
   z.enum(values, { error: () => `Use one of: ${values.join(", ")}.` });
@@ -20,16 +10,16 @@ const viewing = {
   team: z.uuid({ error: () => "Give the id of a team." }).optional(),
 };
 
+/** What a rates address may ask: one schema for the page, the CSV and the API. */
 export const ratesQuery = z.object({
-  injuries: oneOf(caseDefinitions).default("time-loss"),
-  sessions: oneOf(sessionChoices).default("training-and-matches"),
-  by: oneOf(groupings).default("sex-age"),
-  per: oneOf(units).default("aes"),
+  injuries: oneOf(caseDefinitions).default(defaultFilters.injuries),
+  sessions: oneOf(sessionChoices).default(defaultFilters.sessions),
+  by: oneOf(groupings).default(defaultFilters.by),
+  per: oneOf(units).default(defaultFilters.per),
   ...viewing,
 });
 
 export type RatesQuery = z.output<typeof ratesQuery>;
-export type RatesFilters = Pick<RatesQuery, "injuries" | "sessions" | "by" | "per">;
 
 /** The API refuses a parameter that it does not know: a misspelt filter must never answer with other numbers. */
 const strictRatesQuery = z.strictObject(ratesQuery.shape);

@@ -5,6 +5,7 @@ import { resolveViewing, type Viewing, viewedTeamIds } from "~/features/accounts
 import { complianceByTeam } from "~/features/warm-ups/warm-ups.server";
 import { read, type Scope, type Tx } from "~db/client.server";
 import { sumExposure } from "./counting";
+import type { RatesFilters } from "./filters";
 import { fixTables } from "./fixed-tables";
 import { type Counts, computeRates, type RateRow } from "./rates";
 import {
@@ -17,7 +18,6 @@ import {
   sumExposureCells,
   tallySessions,
 } from "./rates.queries.server";
-import { type RatesFilters, ratesQuery } from "./rates.schema";
 
 /** A season up to today. */
 export type Period = { from: string; to: string; season: string };
@@ -110,4 +110,3 @@ export async function warmUpsBeside(tx: Tx, viewing: Viewing, period: Period) {
 export type TeamWarmUps = Awaited<ReturnType<typeof warmUpsBeside>>[number];
 
 export const seesRates = (scope: Scope) => may(scope.roles, "rates.clinical");
-export const defaultFilters: RatesFilters = ratesQuery.parse({});

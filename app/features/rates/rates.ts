@@ -8,6 +8,8 @@ import {
   kindsOf,
   sumExposure,
 } from "./counting";
+import { type Coverage, coverageOf, percent, type SessionTally, stableFrom } from "./coverage";
+import type { RatesFilters, RateUnit } from "./filters";
 import {
   type Band,
   type Group,
@@ -17,35 +19,8 @@ import {
   placeInjury,
   type RatedTeam,
 } from "./groups";
-import type { RatesFilters, RateUnit } from "./rates.schema";
 
 /** Rates of a view from its counts. Pure; every figure comes from ~/statistics. */
-
-/** A rate on fewer injuries is unstable (product rule). */
-export const stableFrom = 5;
-/** Shares of held sessions with recorded exposure: below the first rates carry a warning, below the second none is shown. */
-export const coverageWarning = 0.8;
-export const coverageFloor = 0.5;
-
-export type SessionTally = {
-  teamId: string;
-  kind: "training" | "match";
-  held: number;
-  recorded: number;
-  headcount: number;
-  estimated: number;
-  withoutExposure: number;
-  unconfirmed: number;
-  cancelled: number;
-};
-
-export type Coverage = {
-  held: number;
-  recorded: number;
-  /** 0 to 1; null without held sessions. */
-  share: number | null;
-  state: "good" | "low" | "withheld" | "none";
-};
 
 export type RateRow = Group & {
   /** Null: not reported, or hidden. */
@@ -71,17 +46,6 @@ export type Counts = {
 };
 
 const unitWords: Record<RateUnit, string> = { aes: "athlete-exposures", hours: "exposure hours" };
-
-export function coverageOf(tallies: readonly SessionTally[]): Coverage {
-  const held = tallies.reduce((sum, row) => sum + row.held, 0);
-  const recorded = tallies.reduce((sum, row) => sum + row.recorded, 0);
-  if (held === 0) return { held, recorded, share: null, state: "none" };
-  const share = recorded / held;
-  const state = share < coverageFloor ? "withheld" : share < coverageWarning ? "low" : "good";
-  return { held, recorded, share, state };
-}
-
-export const percent = (share: number) => `${Math.floor(share * 100)} %`;
 
 type Figures = { group: Group; events: number; exposure: ExposureByUnit; unit: RateUnit; coverage: Coverage };
 

@@ -1,6 +1,7 @@
+import { stableFrom } from "./coverage";
 import { decimalsFor, formatCount, formatRate, formatRatio } from "./figures";
-import { type Comparison, type RateRow, type Rates, stableFrom } from "./rates";
-import type { RatesFilters, RateUnit } from "./rates.schema";
+import type { RatesFilters, RateUnit } from "./filters";
+import type { Comparison, RateRow, Rates } from "./rates";
 
 /** The sentence that answers the page's question, in parts that the page sets in type and a test can read. */
 export type Part = { text: string; as: "plain" | "strong" | "interval" | "attention" };

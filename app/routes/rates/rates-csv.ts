@@ -1,4 +1,5 @@
-import { fixedFilters } from "~/features/rates/fixed-tables";
+import { fixedFilters } from "~/features/rates/filters";
+
 import { parseRatesQuery } from "~/features/rates/rates.schema";
 import { fixedTablesOf, incidenceOf, seesRates } from "~/features/rates/rates.server";
 import { type CsvContext, writeRatesCsv } from "~/features/rates/rates-csv";

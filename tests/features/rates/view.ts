@@ -1,5 +1,6 @@
 import type { ExposureCell, InjuryRow } from "~/features/rates/counting";
-import type { Counts, SessionTally } from "~/features/rates/rates";
+import type { SessionTally } from "~/features/rates/coverage";
+import type { Counts } from "~/features/rates/rates";
 
 /** Counts put together by hand for the pure tests of rates. */
 

@@ -1,4 +1,4 @@
-import type { RatesFilters } from "~/features/rates/rates.schema";
+import type { RatesFilters } from "~/features/rates/filters";
 import { addDays, weekStart } from "~/platform/clock";
 import type { Plan } from "./generated-club";
 

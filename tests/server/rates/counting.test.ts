@@ -2,6 +2,13 @@ import { sql } from "drizzle-orm";
 import { beforeAll, describe, expect, it } from "vitest";
 import { defaultAgeBands, defaultSportRules } from "~/features/accounts/founding.server";
 import { timeLossOf } from "~/features/availability/availability";
+import {
+  caseDefinitions,
+  groupings,
+  type RatesFilters,
+  sessionChoices,
+  units,
+} from "~/features/rates/filters";
 import { type Counts, computeRates, type Rates } from "~/features/rates/rates";
 import {
   ageInYears,
@@ -10,14 +17,7 @@ import {
   sumExposureCells,
   tallySessions,
 } from "~/features/rates/rates.queries.server";
-import {
-  caseDefinitions,
-  groupings,
-  type RatesFilters,
-  ratesQuery,
-  sessionChoices,
-  units,
-} from "~/features/rates/rates.schema";
+import { ratesQuery } from "~/features/rates/rates.schema";
 import { incidenceOf } from "~/features/rates/rates.server";
 import { addDays } from "~/platform/clock";
 import { ageOn } from "~/statistics";

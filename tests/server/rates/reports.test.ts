@@ -50,18 +50,16 @@ describe("the exposure by athlete of the examples", () => {
     const sessionKey = (row: (typeof data)[number]) => `${row.date} ${row.start} ${row.team} ${row.kind}`;
     const held = new Map(data.map((row) => [sessionKey(row), { row, id: randomUUID() }]));
     await write(staff, async (tx) => {
-      await tx
-        .insert(athletes)
-        .values(
-          [...athleteIds].map(([number, id]) => ({
-            ...org,
-            id,
-            number,
-            givenName: "A",
-            familyName: number,
-            nameKey: number,
-          })),
-        );
+      await tx.insert(athletes).values(
+        [...athleteIds].map(([number, id]) => ({
+          ...org,
+          id,
+          number,
+          givenName: "A",
+          familyName: number,
+          nameKey: number,
+        })),
+      );
       await tx.insert(sessions).values(
         [...held.values()].map(({ row, id }) => ({
           ...org,

@@ -1,6 +1,6 @@
 import { Lede, LinkRow, Region, TextLink } from "~/ui";
+import type { RatesFilters } from "../filters";
 import type { RateRow } from "../rates";
-import type { RatesFilters } from "../rates.schema";
 import type { Incidence } from "../rates.server";
 import { unitWords, writeNote, writeSentence } from "../sentence";
 import { CoverageNote } from "./coverage-note";

@@ -1,5 +1,5 @@
 import { Note } from "~/ui";
-import { type Coverage, coverageFloor, coverageWarning, percent } from "../rates";
+import { type Coverage, coverageFloor, coverageWarning, percent } from "../coverage";
 
 /** The warning where too little of the exposure is recorded to trust a rate. */
 export function CoverageNote({ coverage }: { coverage: Coverage }) {

@@ -1,12 +1,12 @@
 import { Link, useLocation } from "react-router";
 import {
   type CaseDefinition,
+  defaultFilters,
   type Grouping,
   type RatesFilters,
   type RateUnit,
-  ratesQuery,
   type SessionChoice,
-} from "../rates.schema";
+} from "../filters";
 
 const words = {
   injuries: {
@@ -31,13 +31,11 @@ const words = {
 
 type Name = keyof typeof words;
 
-const defaults = ratesQuery.parse({});
-
 function useChanged() {
   const { pathname, search } = useLocation();
   return (name: Name, value: string) => {
     const params = new URLSearchParams(search);
-    if (value === defaults[name]) params.delete(name);
+    if (value === defaultFilters[name]) params.delete(name);
     else params.set(name, value);
     params.delete("sort");
     const text = params.toString();

@@ -1,7 +1,9 @@
 import { Lede, LinkRow, Note } from "~/ui";
+import { percent } from "../coverage";
 import { decimalsFor, formatCount } from "../figures";
-import { type FixedTable, fixedFilters } from "../fixed-tables";
-import { percent, type Rates } from "../rates";
+import { fixedFilters } from "../filters";
+import type { FixedTable } from "../fixed-tables";
+import type { Rates } from "../rates";
 import { CoverageNote } from "./coverage-note";
 import { HowComputed } from "./how-computed";
 import { RatesTable } from "./rates-table";

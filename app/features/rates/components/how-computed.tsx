@@ -1,6 +1,7 @@
 import { Disclosure } from "~/ui";
-import { coverageFloor, coverageWarning, stableFrom } from "../rates";
-import type { RatesFilters } from "../rates.schema";
+import { coverageFloor, coverageWarning, stableFrom } from "../coverage";
+import type { RatesFilters } from "../filters";
+
 import { sessionsNote } from "../sentence";
 
 const definitions: Record<RatesFilters["injuries"], string> = {

@@ -1,8 +1,8 @@
 import { lazy, Suspense } from "react";
 import { decimalsFor } from "../figures";
+import type { RatesFilters } from "../filters";
 import { axisEnd, picturedRows, pictureGroups } from "../picture";
 import type { RateRow } from "../rates";
-import type { RatesFilters } from "../rates.schema";
 
 // Charts reach the browser only where one shows.
 const IntervalChart = lazy(() => import("~/ui/charts/interval-chart"));

@@ -2,9 +2,9 @@ import { useMemo } from "react";
 import { formatTick, niceScale, RateAxis, RateBar } from "~/ui";
 import { type Column, DataTable } from "~/ui/data-table";
 import { decimalsFor, formatCount, formatRate } from "../figures";
+import type { RateUnit } from "../filters";
 import { axisEnd, seriesOf } from "../picture";
 import type { RateRow } from "../rates";
-import type { RateUnit } from "../rates.schema";
 
 type Props = {
   caption: string;

@@ -1,4 +1,5 @@
 import { clearLine, cursorTo } from "node:readline";
+import { isStopping } from "./stop.mjs";
 
 /** What the commands say: one calm line for each step, then a block with what a person needs. */
 
@@ -33,7 +34,7 @@ export async function step(name, doing, work) {
     return value;
   } catch (error) {
     restart();
-    say(`${start}failed`);
+    if (!isStopping()) say(`${start}failed`);
     throw error;
   }
 }

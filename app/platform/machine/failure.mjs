@@ -15,7 +15,7 @@ export class Failure extends Error {
 }
 
 const NETWORK =
-  /could not resolve|temporary failure resolving|name resolution|enotfound|eai_again|econnrefused|econnreset|etimedout|could not connect|unable to connect|connection timed out|network is unreachable|failed to fetch|unable to locate package|has no installation candidate/i;
+  /could not resolve|temporary failure resolving|name resolution|enotfound|eai_again|econnrefused|econnreset|etimedout|could not connect|unable to connect|connection timed out|network is unreachable|enotcached|failed to fetch|unable to locate package|has no installation candidate/i;
 const DISK = /enospc|no space left on device|not enough free space/i;
 const RIGHTS = /eacces|eperm|permission denied|are you root|operation not permitted/i;
 const APT_LOCK = /could not get lock|unable to acquire the dpkg frontend lock|unable to lock/i;

@@ -1,4 +1,5 @@
-import type { PgInsertValue, PgTable } from "drizzle-orm/pg-core";
+import { getTableColumns, sql } from "drizzle-orm";
+import type { PgTable } from "drizzle-orm/pg-core";
 import { instantOf } from "~/platform/clock";
 import { type Sealer, sealer } from "~/platform/crypto/keys.server";
 import type { Tx } from "~db/client.server";
@@ -68,19 +69,30 @@ export async function openLoading(
 ): Promise<Loading> {
   const { organisationId, timeZone } = tx.scope;
   const now = new Date();
-  const on = (day: string, time: string) => {
-    const instant = instantOf(timeZone, day, time);
+  // Each athlete's part of a session has the session's moment, and each row names its athlete: most are asked for often.
+  const at = remember((moment: string) => {
+    const instant = instantOf(timeZone, moment.slice(0, 10), moment.slice(11));
     return instant < now ? instant : now;
-  };
+  });
+  const ids = remember((kind: string) => remember((key: string) => demoId(own.organisation.key, kind, key)));
   return {
     tx,
     own,
     organisationId,
     seals: await sealer(tx),
-    id: (kind, key) => demoId(own.organisation.key, kind, key),
+    id: (kind, key) => ids(kind)(key),
     person: (key) => find(people, key),
-    at: (moment) => on(moment.slice(0, 10), moment.slice(11)),
-    on,
+    at,
+    on: (day, time) => at(`${day}T${time}`),
+  };
+}
+
+function remember<Value>(make: (key: string) => Value): (key: string) => Value {
+  const known = new Map<string, Value>();
+  return (key) => {
+    const value = known.get(key) ?? make(key);
+    known.set(key, value);
+    return value;
   };
 }
 
@@ -103,14 +115,35 @@ export function groupBy<Row>(rows: readonly Row[], keyOf: (row: Row) => string):
   return groups;
 }
 
-/** One statement takes at most 65,535 parameters; a thousand rows of our widest table stay below. */
-const chunkSize = 1000;
+/** Bytes as PostgreSQL writes them; the rest as JSON has it. */
+const forJson = (value: unknown) =>
+  value instanceof Uint8Array ? `\\x${Buffer.from(value).toString("hex")}` : (value ?? null);
 
+/** How many rows one statement takes: a few megabytes of text at most. */
+const chunkSize = 5000;
+
+/**
+ * Inserts rows that all name the same columns, many with one parameter: a list of values would cost more to build, send
+ * and parse than to store.
+ */
 export async function insertRows<Table extends PgTable>(
   tx: Tx,
   table: Table,
-  rows: readonly PgInsertValue<Table>[],
+  rows: readonly Table["$inferInsert"][],
 ) {
-  for (let from = 0; from < rows.length; from += chunkSize)
-    await tx.insert(table).values(rows.slice(from, from + chunkSize));
+  const [first] = rows;
+  if (!first) return;
+  const columns = Object.entries(getTableColumns(table)).filter(([key]) => key in first);
+  const names = sql.join(
+    columns.map(([, { name }]) => sql.identifier(name)),
+    sql`, `,
+  );
+  for (let from = 0; from < rows.length; from += chunkSize) {
+    const chunk = rows.slice(from, from + chunkSize).map((row) => {
+      const values = new Map(Object.entries(row));
+      return Object.fromEntries(columns.map(([key, { name }]) => [name, forJson(values.get(key))]));
+    });
+    await tx.execute(sql`insert into ${table} (${names})
+      select ${names} from jsonb_populate_recordset(null::${table}, ${JSON.stringify(chunk)}::text::jsonb)`);
+  }
 }

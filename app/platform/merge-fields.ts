@@ -25,7 +25,8 @@ export function equalValues(a: FieldValue, b: FieldValue): boolean {
 /**
  * Merges changes into what is stored, field by field. A field nobody else touched is written; equal answers merge;
  * different answers are a conflict that a person decides. The order is the server's, never a phone's clock.
- * A field that is not stored counts as null.
+ * A field that is not stored counts as null. A change from a value to itself is a condition: it conflicts when the field
+ * holds something else.
  */
 export function mergeFields(
   stored: Readonly<Record<string, FieldValue>>,

@@ -37,6 +37,10 @@ describe("merging an operation field by field", () => {
     });
   });
 
+  it("takes a change from a value to itself for a condition", () => {
+    expect(mergeFields({ a: 2 }, { a: { base: 1, value: 1 } }).conflicts).toHaveLength(1);
+  });
+
   it("compares by content, whatever the order of keys", () => {
     expect(equalValues({ presence: "took_part", minutes: 90 }, { minutes: 90, presence: "took_part" })).toBe(
       true,

@@ -231,8 +231,10 @@ export function editSession(scope: Scope, id: string, input: EditInput, base: Ed
   return write(scope, async (tx) => {
     const session = await holdSession(tx, id);
     const stored = Object.fromEntries(editable.map((field) => [field, session[field]]));
+    // A field the person left alone is not theirs to decide.
+    const touched = editable.filter((field) => (base[field] ?? null) !== input[field]);
     const changes = Object.fromEntries(
-      editable.map((field) => [field, { base: base[field] ?? null, value: input[field] }]),
+      touched.map((field) => [field, { base: base[field] ?? null, value: input[field] }]),
     );
     const { write: change, conflicts } = mergeFields(stored, changes);
     if (conflicts.length > 0) throw conflictOfEdit(session, conflicts);

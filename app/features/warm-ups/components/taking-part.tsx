@@ -49,7 +49,7 @@ export function TakingPart({ athletes, shown, disabled, onChange }: Props) {
       <ul>
         {athletes.map((athlete) => (
           <li key={athlete.id} className="border-0 border-b border-line">
-            <label className="group flex min-h-target-large cursor-pointer items-center justify-between gap-3 py-1.5">
+            <label className="group relative flex min-h-target-large cursor-pointer items-center justify-between gap-3 py-1.5">
               <SpotMark spot={spotOf[athlete.state]} detail={<Detail athlete={athlete} />}>
                 {athlete.givenName} {athlete.familyName}
                 {athlete.guest ? <span className="text-soft"> (guest)</span> : null}
@@ -61,7 +61,7 @@ export function TakingPart({ athletes, shown, disabled, onChange }: Props) {
                 checked={shown[athleteField(athlete.id)] === true}
                 disabled={disabled}
                 onChange={(event) => onChange({ [athleteField(athlete.id)]: event.currentTarget.checked })}
-                className="sr-only"
+                className="absolute inset-0 h-full w-full cursor-pointer opacity-0"
               />
               <span
                 aria-hidden="true"

@@ -6,7 +6,7 @@ import { blockField } from "../warm-up";
 type Props = { shown: Fields; disabled: boolean; onChange: (fields: Fields) => void };
 
 const face =
-  "flex min-h-target-large w-full cursor-pointer items-center gap-2 rounded-md border border-edge bg-paper px-3.5 py-2 " +
+  "relative flex min-h-target-large w-full cursor-pointer items-center gap-2 rounded-md border border-edge bg-paper px-3.5 py-2 " +
   "leading-tight select-none hover:bg-lagoon-wash has-checked:border-lagoon has-checked:bg-lagoon has-checked:text-on-lagoon " +
   "has-focus-visible:outline-3 has-focus-visible:outline-offset-2 has-focus-visible:outline-focus " +
   "has-disabled:cursor-not-allowed has-disabled:border-dashed";
@@ -28,7 +28,7 @@ export function WarmUpBlocks({ shown, disabled, onChange }: Props) {
               onChange={(event) =>
                 onChange({ [blockField(block)]: event.currentTarget.checked, skipReason: null })
               }
-              className="peer sr-only"
+              className="peer absolute inset-0 h-full w-full cursor-pointer opacity-0"
             />
             <span aria-hidden="true" className="hidden peer-checked:inline">
               ✓

@@ -272,6 +272,10 @@ export function platformSql(): string[] {
   return [
     `grant usage on schema public to ${applicationRole}, ${maintenanceRole}`,
     ...readableViews.map((view) => `grant select on ${view} to ${applicationRole}, ${maintenanceRole}`),
+    // Which migrations a backup stands at.
+    `grant usage on schema drizzle to ${maintenanceRole}`,
+    `grant select on all tables in schema drizzle to ${maintenanceRole}`,
+    `grant select on all sequences in schema drizzle to ${maintenanceRole}`,
     "revoke all on schema auth from public",
     `grant usage on schema auth to ${authRole}, ${maintenanceRole}`,
     `grant select, insert, update, delete on all tables in schema auth to ${authRole}, ${maintenanceRole}`,

@@ -19,7 +19,13 @@ const injuries = (count: number) => `${count} ${count === 1 ? "injury" : "injuri
 
 function pointOf(row: RateRow, label: string): IntervalGroup["points"][number] {
   const series = seriesOf(row);
-  if (!row.rate) return { series, label: label || "no rate", rate: null, note: row.reason ?? "not computed" };
+  if (!row.rate)
+    return {
+      series,
+      label: label || "no rate",
+      rate: null,
+      note: row.reason?.split(":")[0] ?? "not computed",
+    };
   if (!row.unstable) return { series, label, rate: row.rate };
   const note = `${row.injuries === 0 ? "no injuries" : injuries(row.injuries ?? 0)}: unstable`;
   return label

@@ -53,7 +53,13 @@ type Figures = { group: Group; events: number; exposure: ExposureByUnit; unit: R
 function rateRow({ group, events, exposure, unit, coverage }: Figures): RateRow {
   const amount = denominator(exposure, unit);
   const counted = { ...group, injuries: events, exposure, denominator: amount };
-  if (amount <= 0) return { ...counted, rate: null, reason: `no ${unitWords[unit]}`, unstable: false };
+  if (amount <= 0)
+    return {
+      ...counted,
+      rate: null,
+      reason: group.key === "none" ? "no exposure of its own" : `no ${unitWords[unit]}`,
+      unstable: false,
+    };
   if (coverage.state === "withheld")
     return {
       ...counted,

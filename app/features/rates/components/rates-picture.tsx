@@ -18,7 +18,7 @@ type Props = {
 /** Rates with their intervals by group, and the whole's own rate as a line to hold them against. */
 export function RatesPicture({ rows, reference, referenceName, by, title }: Props) {
   const shown = picturedRows(rows);
-  const missing = rows.length - shown.length;
+  const missing = rows.filter((row) => row.rate && !shown.includes(row)).length;
   const decimals = decimalsFor(shown.flatMap(({ rate }) => rate?.estimate ?? []));
   const groups = pictureGroups(shown, by);
   const lines = shown.length * 22 + groups.length * 28;

@@ -254,19 +254,21 @@ export function noticeWay({
   return steps.sort((a, b) => a.at.getTime() - b.at.getTime());
 }
 
-const families = (count: number) => `${count} ${count === 1 ? "family" : "families"}`;
-
-/** The sentence over the list: who has not opened, who is to be phoned. One line of a notice counts as one family. */
-export function noticesSentence(states: readonly NoticeState[]): string {
-  if (states.length === 0) return "No notice was written in this time.";
-  const unheard = states.filter((state) => !hasHeard(state)).length;
-  const calls = states.filter(({ phoneTask }) => phoneTask !== null).length;
+/**
+ * The sentence over the list. A family is one injury's notices: it has opened once any of its guardians has. Calls are
+ * counted per guardian, since each is to be phoned.
+ */
+export function noticesSentence(rows: readonly { injuryId: string; state: NoticeState }[]): string {
+  if (rows.length === 0) return "No notice was written in this time.";
+  const heard = new Set(rows.filter(({ state }) => hasHeard(state)).map(({ injuryId }) => injuryId));
+  const unheard = new Set(rows.map(({ injuryId }) => injuryId).filter((id) => !heard.has(id))).size;
+  const calls = rows.filter(({ state }) => state.phoneTask !== null).length;
   const opened =
     unheard === 0
-      ? "Every family has opened its notice or was told by phone."
+      ? "Every family has opened a notice or was told by phone."
       : unheard === 1
         ? "1 family has not opened its notice."
-        : `${families(unheard)} have not opened their notices.`;
+        : `${unheard} families have not opened their notices.`;
   if (calls === 0) return `${opened} Nobody needs a call.`;
-  return `${opened} ${families(calls)} ${calls === 1 ? "needs" : "need"} a call.`;
+  return `${opened} ${calls === 1 ? "1 guardian needs a call." : `${calls} guardians need a call.`}`;
 }

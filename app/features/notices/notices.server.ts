@@ -76,7 +76,7 @@ export function listNotices(scope: MemberScope, url: URL, show: NoticeFilter) {
     const since = season ? instantOf(scope.timeZone, season.startsOn, "00:00") : new Date(0);
     const rows = await findNotices(tx, { since, ...(team ? { teamIds: [team.id] } : {}) });
     const lines = await linesOf(tx, rows);
-    const sentence = noticesSentence(lines.map(({ state }) => state));
+    const sentence = noticesSentence(lines);
     const shown = {
       all: lines,
       call: lines.filter(({ state }) => state.phoneTask !== null),

@@ -134,6 +134,12 @@ function contentOf(
   };
 }
 
+/** The mail for a frame of our own page, whose content policy takes no style element: that one only serves the dark. */
+async function composeForFrame(props: Parameters<typeof composeNotice>[0]) {
+  const mail = await composeNotice(props);
+  return { ...mail, html: mail.html.replace(/<style[^>]*>[\s\S]*?<\/style>/g, "") };
+}
+
 /** A notice exactly as it will arrive: the mail of each guardian who gets one, and the page behind the link. */
 export async function previewNotice(
   scope: MemberScope,
@@ -156,7 +162,7 @@ export async function previewNotice(
         guardianId: guardian.id,
         to: guardian.email ?? "",
         name: guardian.name,
-        mail: await composeNotice({
+        mail: await composeForFrame({
           language: guardian.language,
           organisation: prepared.organisation,
           urgent: urgency === "urgent",

@@ -125,9 +125,10 @@ export default function NoticePage({ loaderData, actionData }: Route.ComponentPr
           <NoticeTable notices={siblings} slug={slug} empty="" />
         </Region>
       ) : null}
-      <Region>
+      <Region heading="Its words">
         <Disclosure summary="What the family reads behind the link">
-          <NoticeBody content={content} />
+          <h3 className="text-xl font-semibold">News about {content.childName}</h3>
+          <NoticeBody content={content} as="h4" />
         </Disclosure>
       </Region>
     </Page>

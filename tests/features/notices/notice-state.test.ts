@@ -133,14 +133,15 @@ describe("the state of a notice", () => {
     const delivered = state({ deliveries: [mail({ state: "delivered", deliveredAt: at("10:00") })] });
     const bounced = state({ deliveries: [mail({ state: "bounced", failedAt: at("10:00") })] });
     const done = state({ events: [{ kind: "acknowledged", at: at("10:10") }] });
-    expect(noticesSentence([delivered, delivered, bounced, done])).toBe(
-      "3 families have not opened their notices. 1 family needs a call.",
+    const of = (injuryId: string, found: typeof done) => ({ injuryId, state: found });
+    expect(noticesSentence([of("a", delivered), of("b", delivered), of("b", bounced), of("c", done)])).toBe(
+      "2 families have not opened their notices. 1 guardian needs a call.",
     );
-    expect(noticesSentence([delivered, done])).toBe(
+    expect(noticesSentence([of("a", delivered), of("a", done), of("b", delivered)])).toBe(
       "1 family has not opened its notice. Nobody needs a call.",
     );
-    expect(noticesSentence([done])).toBe(
-      "Every family has opened its notice or was told by phone. Nobody needs a call.",
+    expect(noticesSentence([of("a", done)])).toBe(
+      "Every family has opened a notice or was told by phone. Nobody needs a call.",
     );
   });
 });

@@ -48,7 +48,7 @@ describe("from the injury to the family", () => {
     const list = await listNotices(family.trainer, url, "all");
     const line = list.lines.find(({ guardianName }) => guardianName === "Maren Oakes");
     expect(line?.state.code).toBe("acknowledged");
-    expect(list.sentence).toContain("1 family has not opened its notice");
+    expect(list.sentence).toContain("Every family has opened a notice");
     const seen = await readNotice(family.trainer, line?.id ?? "");
     expect(seen.way.map(({ words }) => words)).toEqual([
       `Written (${family.trainer.displayName})`,

@@ -35,17 +35,17 @@ export function PlainText({ text }: { text: string }) {
   );
 }
 
-function Part({ heading, children }: { heading: string; children: ReactNode }) {
+function Part({ heading, as: Heading, children }: { heading: string; as: "h2" | "h4"; children: ReactNode }) {
   return (
     <section className="mt-6 border-0 border-t border-line pt-4" data-keep-together>
-      <h2 className="mb-1.5 text-lg font-semibold">{heading}</h2>
+      <Heading className="mb-1.5 text-lg font-semibold">{heading}</Heading>
       {children}
     </section>
   );
 }
 
 /** What a family reads behind the link: large, plain, in the order in which it is needed. */
-export function NoticeBody({ content }: { content: NoticeContent }) {
+export function NoticeBody({ content, as = "h2" }: { content: NoticeContent; as?: "h2" | "h4" }) {
   const { day, time, where, happened, done, doNow, watchFor, emergency, call } = content;
   return (
     <div className="max-w-prose text-[1.2rem] leading-[1.55]">
@@ -54,24 +54,24 @@ export function NoticeBody({ content }: { content: NoticeContent }) {
         {time ? ` at ${time}` : ""}
         {where ? <span className="block">{where}</span> : null}
       </p>
-      <Part heading="What happened">
+      <Part as={as} heading="What happened">
         <PlainText text={happened} />
       </Part>
       {done ? (
-        <Part heading="What we did">
+        <Part as={as} heading="What we did">
           <PlainText text={done} />
         </Part>
       ) : null}
-      <Part heading="What to do now">
+      <Part as={as} heading="What to do now">
         <PlainText text={doNow} />
       </Part>
-      <Part heading="What to watch for">
+      <Part as={as} heading="What to watch for">
         <PlainText text={watchFor} />
         <Note kind="serious" title="When to call the emergency services">
           <PlainText text={emergency} />
         </Note>
       </Part>
-      <Part heading="Whom to call">
+      <Part as={as} heading="Whom to call">
         <p>Ask for {call.name}.</p>
         <PhoneLink phone={call.phone} large />
         {call.hours ? <p>{call.hours}</p> : null}

@@ -51,7 +51,7 @@ export function NoticePreview({ preview }: { preview: ShownPreview }) {
       ))}
       <Disclosure summary="The page behind the link" open>
         <h3 className="text-xl font-semibold">News about {content.childName}</h3>
-        <NoticeBody content={content} />
+        <NoticeBody content={content} as="h4" />
       </Disclosure>
     </Region>
   );

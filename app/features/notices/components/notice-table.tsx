@@ -1,4 +1,4 @@
-import { SpotMark, TextLink } from "~/ui";
+import { Attention, SpotMark, TextLink } from "~/ui";
 import { type Column, DataTable } from "~/ui/data-table";
 import { relationWords } from "../../vocabulary";
 import type { NoticeState } from "../notice-state";
@@ -18,24 +18,16 @@ export type ShownNotice = {
 const columnsFor = (slug: string): Column<ShownNotice>[] => [
   {
     id: "athlete",
-    header: "Athlete",
+    header: "About, and to",
     rowHeader: true,
     value: ({ athleteName }) => athleteName,
-    cell: ({ id, athleteName, urgent }) => (
+    cell: ({ id, athleteName, guardianName, relation, urgent }) => (
       <>
         <TextLink to={`/${slug}/notices/${id}`}>{athleteName}</TextLink>
+        <span className="block text-sm text-soft">
+          to {guardianName}, {relationWords[relation] ?? relation}
+        </span>
         {urgent ? <span className="block text-sm font-semibold text-berry">urgent</span> : null}
-      </>
-    ),
-  },
-  {
-    id: "guardian",
-    header: "Guardian",
-    value: ({ guardianName }) => guardianName,
-    cell: ({ guardianName, relation }) => (
-      <>
-        {guardianName}
-        <span className="block text-sm text-soft">{relationWords[relation] ?? relation}</span>
       </>
     ),
   },
@@ -43,27 +35,24 @@ const columnsFor = (slug: string): Column<ShownNotice>[] => [
     id: "state",
     header: "Where it is",
     value: ({ state }) => state.at.getTime(),
-    cell: ({ state }) => <SpotMark spot={state.spot}>{state.line}</SpotMark>,
-  },
-  {
-    id: "call",
-    header: "To phone",
-    value: ({ state }) => state.phoneTask,
-    cell: ({ state, guardianPhone }) =>
-      state.phoneTask ? (
-        <>
-          <span className="block">{state.phoneTask}</span>
-          {guardianPhone ? (
-            <PhoneLink phone={guardianPhone} />
-          ) : (
-            <span className="text-soft">no number on file</span>
-          )}
-        </>
-      ) : (
-        <span className="text-soft">no</span>
-      ),
+    cell: ({ state, guardianPhone }) => (
+      <>
+        <SpotMark spot={state.spot}>{state.line}</SpotMark>
+        {state.phoneTask ? <CallNeeded task={state.phoneTask} phone={guardianPhone} /> : null}
+      </>
+    ),
   },
 ];
+
+/** Why somebody should phone, and the number, under the state so that a phone shows it without scrolling. */
+function CallNeeded({ task, phone }: { task: string; phone: string | null }) {
+  return (
+    <span className="mt-0.5 ml-8 flex flex-wrap items-center gap-x-3">
+      <Attention>{task} Please phone:</Attention>
+      {phone ? <PhoneLink phone={phone} /> : <span className="text-soft">no number on file</span>}
+    </span>
+  );
+}
 
 /** Notices with where each is and whom to phone. */
 export function NoticeTable({

@@ -11,19 +11,19 @@ export function WordsFields({ words, call }: Props) {
       help="Short sentences, words of every day. Change whatever is not right. A line that begins with a dash becomes a point of a list."
     >
       <Field name="happened" label="What happened">
-        <TextArea rows={5} defaultValue={words.happened} />
+        <TextArea rows={5} className="field-sizing-content min-h-20" defaultValue={words.happened} />
       </Field>
       <Field name="done" label="What we did">
-        <TextArea rows={3} defaultValue={words.done} />
+        <TextArea rows={3} className="field-sizing-content min-h-20" defaultValue={words.done} />
       </Field>
       <Field name="doNow" label="What to do now">
-        <TextArea rows={5} defaultValue={words.doNow} />
+        <TextArea rows={5} className="field-sizing-content min-h-20" defaultValue={words.doNow} />
       </Field>
       <Field name="watchFor" label="What to watch for">
-        <TextArea rows={3} defaultValue={words.watchFor} />
+        <TextArea rows={3} className="field-sizing-content min-h-20" defaultValue={words.watchFor} />
       </Field>
       <Field name="emergency" label="When to call the emergency services">
-        <TextArea rows={9} defaultValue={words.emergency} />
+        <TextArea rows={9} className="field-sizing-content min-h-20" defaultValue={words.emergency} />
       </Field>
       <Field name="callName" label="Whom to ask for" help="Also stands in the e-mail.">
         <TextInput defaultValue={call.name} autoComplete="off" />

@@ -20,7 +20,7 @@ export function DoubtsForm({ view }: { view: ImportView }) {
   if (doubts.length === 0) return null;
   return (
     <Region heading="Is this the same athlete?">
-      <p className="max-w-prose">
+      <p className="mb-4 max-w-prose">
         Without a decision these rows stay rejected; nothing about them is changed.
       </p>
       <Form idPrefix="doubts">

@@ -69,7 +69,7 @@ const said: Column<Line>[] = [
     id: "says",
     header: "Why, and what to do",
     cell: (row) => (
-      <span className="block min-w-[15rem]">
+      <span className="block min-w-[11.5rem]">
         {row.says} <span className="text-soft">{row.mend}</span>
       </span>
     ),

@@ -35,7 +35,7 @@ export default defineConfig({
           globalSetup: ["tests/harness/cluster.ts"],
           setupFiles: ["tests/harness/setup.ts"],
           testTimeout: 60_000,
-          hookTimeout: 120_000,
+          hookTimeout: 300_000,
           // The built server is a module of its own and is not transformed again.
           server: { deps: { external: [/\/build\/server\//] } },
         },
@@ -48,7 +48,7 @@ export default defineConfig({
           globalSetup: ["tests/harness/cluster.ts"],
           setupFiles: ["tests/harness/setup.ts"],
           testTimeout: 180_000,
-          hookTimeout: 240_000,
+          hookTimeout: 300_000,
         },
       },
     ],

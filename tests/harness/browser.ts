@@ -82,8 +82,8 @@ async function start() {
         reducedMotion: "reduce",
       });
       const page = await context.newPage();
-      // A browser without script complains of every script that it does not run.
-      const silenced = given.script === false ? [/Blocked script execution/] : [];
+      // A browser without script complains of every script that it does not run or fetch.
+      const silenced = given.script === false ? [/Blocked script execution/, /^request: csp .*\.js$/] : [];
       watch(context, page, [...silenced, ...(given.expectFailures ?? [])]);
       return page;
     },

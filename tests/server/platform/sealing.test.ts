@@ -105,7 +105,7 @@ describe("a dump of the database", () => {
       ["--data-only", "--inserts", `--dbname=${process.env.DATABASE_MAINTENANCE_URL}`],
       { env: environmentOf({ folder, ...binaries }) },
     );
-    expect([code, code === 0 ? "" : output]).toEqual([0, ""]);
+    expect(code === 0 ? "" : output).toBe("");
     // The dump is whole: it holds what is kept in clear, beside what is sealed.
     expect(output).toContain(club.athlete.familyName);
     expect(output).toContain("INSERT INTO public.injury_notes");

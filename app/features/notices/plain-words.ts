@@ -163,8 +163,9 @@ function sayWhatToDo(facts: NoticeFacts): string {
         ? `A doctor should see ${name} today.`
         : `A doctor should see ${name} as soon as you can.`,
     );
-  if (referredTo.includes("physician") && !suspectsSeriousKnee(facts))
-    lines.push(`Please take ${name} to a doctor.`);
+  else if (signs.includes("cannot_bear_weight"))
+    lines.push(`Do not let ${name} put weight on the leg. A doctor should see ${name} today.`);
+  else if (referredTo.includes("physician")) lines.push(`Please take ${name} to a doctor.`);
   if (referredTo.includes("orthopaedics"))
     lines.push(`Please take ${name} to a doctor for bones and joints.`);
   if (referredTo.includes("physiotherapy")) lines.push(`Please take ${name} to a physio.`);

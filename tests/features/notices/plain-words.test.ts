@@ -74,6 +74,8 @@ describe("the draft of a notice", () => {
     for (const sign of ["locked", "cannot_bear_weight"] as const)
       expect(draft({ signs: [sign] }).doNow).toContain("A doctor should see Ines today");
     expect(draft().doNow).not.toContain("weight");
+    const ankle = draft({ bodyArea: "ankle", signs: ["cannot_bear_weight"] }).doNow;
+    expect(ankle).toBe("Do not let Ines put weight on the leg. A doctor should see Ines today.");
   });
 
   it("sends an emergency sign to the emergency services, and tells nobody to splint", () => {

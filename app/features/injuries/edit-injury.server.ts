@@ -7,6 +7,7 @@ import {
   changeAvailability,
   contributionsOfInjuries,
   fullFrom,
+  listChanges,
   moveOnset,
   openReason,
   reasonOf,
@@ -110,9 +111,10 @@ async function applySafeDefault(tx: Tx, row: InjuryRow, input: EditInput & { sig
   const newly =
     safeDefaultReasons(row.revision).length === 0 && safeDefaultReasons(input).length > 0 && !input.closedOn;
   if (!newly) return;
-  const parts = (await contributionsOfInjuries(tx, [row.id])).get(row.id) ?? [];
-  if (parts.some(({ state }) => state === "unavailable")) return;
   const reason = await reasonOf(tx, { injuryId: row.id });
+  // Every change counts here, those set aside too: lifting on the very day leaves no contribution behind.
+  const changes = reason ? await listChanges(tx, [reason.id]) : [];
+  if (changes.some(({ state }) => state === "unavailable")) return;
   if (reason) await changeAvailability(tx, reason.id, unavailableFrom(tx.scope.today));
   else
     await openReason(tx, {

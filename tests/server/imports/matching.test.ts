@@ -179,6 +179,7 @@ describe("what stops and asks", () => {
       "Members of the club",
       "Kit code,Given name,Family name,Date of birth,Team",
       `1,Tam,Longreach,2011-04-03,${team}`,
+      `2,Una,Vexley,2012-01-30,${team}`,
     ];
     const view = await uploadAndView(scope, "roster", csvFile(rows));
     expect(view.reading).toMatchObject({ headerLine: 2, titleLines: ["Members of the club"] });

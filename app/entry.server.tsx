@@ -6,6 +6,7 @@ import type { EntryContext, RouterContextProvider } from "react-router";
 import { ServerRouter } from "react-router";
 import { logFault } from "~/middleware/error-response.server";
 import { requestContext } from "~/middleware/request-context";
+import { NonceContext } from "~/ui/nonce";
 
 export const streamTimeout = 8_000;
 
@@ -24,7 +25,9 @@ export default function handleRequest(
     const ready: keyof RenderToPipeableStreamOptions =
       isbot(request.headers.get("user-agent") ?? "") || entry.isSpaMode ? "onAllReady" : "onShellReady";
     const { pipe, abort } = renderToPipeableStream(
-      <ServerRouter context={entry} url={request.url} nonce={nonce} />,
+      <NonceContext value={nonce}>
+        <ServerRouter context={entry} url={request.url} nonce={nonce} />
+      </NonceContext>,
       {
         nonce,
         [ready]() {

@@ -1,4 +1,4 @@
-import type { ReactNode } from "react";
+import { type ReactNode, useContext } from "react";
 import {
   isRouteErrorResponse,
   Links,
@@ -11,6 +11,7 @@ import {
 import { guardAccess } from "~/middleware/access";
 import { ButtonLink, Page, PageHeading, SkipLink, TopBar } from "~/ui";
 import { fontPreloads } from "~/ui/fonts";
+import { NonceContext } from "~/ui/nonce";
 import "./app.css";
 
 export const middleware = [guardAccess];
@@ -31,6 +32,8 @@ export function Layout({ children }: { children: ReactNode }) {
         <meta charSet="utf-8" />
         <meta name="viewport" content="width=device-width, initial-scale=1, viewport-fit=cover" />
         <meta name="theme-color" content="#17202f" />
+        {/* Where the interface's parts that add a style element find the nonce. */}
+        <meta property="csp-nonce" nonce={useContext(NonceContext)} suppressHydrationWarning />
         <Meta />
         <Links />
       </head>

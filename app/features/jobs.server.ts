@@ -1,7 +1,9 @@
 import { env } from "~/platform/env.server";
 import { schedule, stopQueue, work } from "~/platform/jobs/queue.server";
+import { log } from "~/platform/log.server";
 import { type FakeResend, startFakeResend } from "~/platform/mail/fake-resend.server";
 import { composeInvitationDelivery } from "./accounts/invitations.server";
+import { sealAllAudits } from "./audit/audit.server";
 import { runImportJob } from "./imports/imports.server";
 import { composeFreshLinkDelivery, composeNoticeDelivery } from "./notices/composing.server";
 import { type Composer, deliver, sweepOutbox, type Template } from "./outbox/outbox.server";
@@ -33,6 +35,12 @@ export async function startWorkers() {
   await work("import", runImportJob);
   await work("sweep", sweepOutbox);
   await schedule("sweep", "* * * * *");
+  await work("seal", sealAllAudits);
+  await schedule("seal", "*/5 * * * *");
+  // What was left waiting while no process ran goes out now, not with the next minute.
+  await sweepOutbox().catch((error: unknown) =>
+    log.error({ error: error instanceof Error ? error.name : "unknown" }, "first sweep"),
+  );
 }
 
 export async function stopWorkers() {

@@ -49,7 +49,9 @@ export function gapsOf(facts: GapFacts): Gap[] {
   const missing = (when: boolean, field: string, label: string) => {
     if (when) gaps.push({ field, label });
   };
-  missing(!facts.sessionId && !facts.outsideSport, "session", "the session, or outside organised sport");
+  // A gradual injury belongs to no one session; it is counted by its team's weeks.
+  const needsSession = facts.onset !== "gradual" && !facts.outsideSport;
+  missing(needsSession && !facts.sessionId, "session", "the session, or outside organised sport");
   missing(facts.side === "unknown" && hasSides(facts.bodyArea), "side", "the side");
   missing(
     facts.couldContinue === null && !facts.outsideSport,

@@ -85,7 +85,12 @@ export function FamilyQuestion({
       <p className="mb-5 max-w-prose text-[1.2rem]">
         It is about an athlete in your care. To keep it safe, we ask one thing that you know.
       </p>
-      <Form reloadDocument errors={answer?.errors} values={answer?.values}>
+      <Form
+        reloadDocument
+        errors={answer?.errors}
+        values={answer?.values}
+        summaryTitle="It has not opened yet"
+      >
         <Field
           name="answer"
           label="When was the athlete born?"
@@ -96,7 +101,7 @@ export function FamilyQuestion({
         <Button look="primary" size="large" name="intent" value="answer">
           Open the news
         </Button>
-        {left < 5 ? (
+        {left < 5 && !answer?.errors ? (
           <p className="mt-3 text-soft">
             You can try {left} more {left === 1 ? "time" : "times"}. Then this link closes.
           </p>

@@ -2,8 +2,8 @@ import type { Compliance, Share } from "./compliance";
 
 type Interval = { estimate: number; lower: number; upper: number };
 
-/** "62 %". */
-export const percent = (value: number) => `${Math.round(value * 100)} %`;
+/** "62 %", never broken over two lines. */
+export const percent = (value: number) => `${Math.round(value * 100)}\u00a0%`;
 
 /** "62 % (51 to 72)", the interval in the same unit. */
 export const shareWords = ({ estimate, lower, upper }: Interval) =>

@@ -57,7 +57,7 @@ export const isCompliant = (session: ComplianceSession) =>
 /**
  * Session compliance = sessions with at least the target share of blocks done / sessions held.
  * `ofRecorded`: of the sessions with a warm-up record, done or skipped. `ofHeld`: of all sessions held, counting
- * the unrecorded as not done. Wilson intervals. Their distance is what missing records could hide.
+ * the unrecorded as not done, the lowest it can be. Wilson intervals.
  */
 export function sessionCompliance(sessions: readonly ComplianceSession[]) {
   const compliant = sessions.filter(isCompliant).length;

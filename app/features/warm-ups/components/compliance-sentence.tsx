@@ -1,5 +1,6 @@
 import { Interval, Lede } from "~/ui";
 import type { Compliance } from "../compliance";
+import { percent } from "../compliance-words";
 
 const limit = (value: number) => String(Math.round(value * 100));
 const sessionsOf = (count: number) =>
@@ -12,7 +13,7 @@ export function ComplianceSentence({ compliance, whose }: { compliance: Complian
     return <Lede>No session was held in this season yet, so there is no compliance to show.</Lede>;
   const unknown =
     notRecorded > 0
-      ? `${sessionsOf(notRecorded)} of ${sessions.toLocaleString("en-GB")} held ${notRecorded === 1 ? "has" : "have"} no warm-up record: that is not the same as skipped, and the true share lies between the two figures.`
+      ? `${sessionsOf(notRecorded)} of ${sessions.toLocaleString("en-GB")} held ${notRecorded === 1 ? "has" : "have"} no warm-up record, which is not the same as skipped. The first figure is right if those were done as often as the recorded ones, the second if none was done.`
       : "Every session held has a warm-up record.";
   if (!ofRecorded.estimate || !ofHeld.estimate)
     return (
@@ -24,12 +25,12 @@ export function ComplianceSentence({ compliance, whose }: { compliance: Complian
     <Lede note={unknown}>
       {whose} did the warm-up as targeted in{" "}
       <strong>
-        {ofRecorded.successes} of {recorded} recorded sessions, {limit(ofRecorded.estimate.estimate)} %
+        {ofRecorded.successes} of {recorded} recorded sessions, {percent(ofRecorded.estimate.estimate)}
       </strong>{" "}
       <Interval lower={limit(ofRecorded.estimate.lower)} upper={limit(ofRecorded.estimate.upper)} />
       {notRecorded > 0 ? (
         <>
-          ; counting the unrecorded as not done, <strong>{limit(ofHeld.estimate.estimate)} %</strong>{" "}
+          ; counting the unrecorded as not done, <strong>{percent(ofHeld.estimate.estimate)}</strong>{" "}
           <Interval lower={limit(ofHeld.estimate.lower)} upper={limit(ofHeld.estimate.upper)} />
         </>
       ) : null}

@@ -59,9 +59,14 @@ module.exports = {
     },
     {
       name: "sql-in-queries-only",
-      comment: "The only SQL of a feature is in its <name>.queries.server.ts.",
+      comment:
+        "The only SQL of a feature is in its <name>.queries.server.ts. Two exceptions: the visibility rule, which is a condition that every feature's queries put in, and identity, which has a pool of its own.",
       severity: "error",
-      from: { path: "^(app|imports)/", pathNot: "^app/platform/|\\.queries\\.server\\.ts$" },
+      from: {
+        path: "^(app|imports)/",
+        pathNot:
+          "^app/platform/|\\.queries\\.server\\.ts$|^app/features/roster/visibility\\.server\\.ts$|^app/features/accounts/identity\\.server\\.ts$",
+      },
       to: { path: "(^|/)node_modules/(drizzle-orm|postgres|pg)/", dependencyTypesNot: ["type-only"] },
     },
     {

@@ -1,7 +1,6 @@
-import { and, asc, desc, eq, inArray, isNull } from "drizzle-orm";
 import { notFound } from "~/platform/errors";
 import type { Scope, Tx } from "~db/client.server";
-import { seasons, teams } from "~db/schema";
+import { findSeasons, findTeamsOf } from "./viewing.queries.server";
 
 export type Season = { id: string; name: string; startsOn: string; endsOn: string };
 export type TeamChoice = { id: string; name: string; sport: string; sex: string; underAge: number | null };
@@ -17,18 +16,7 @@ export type Viewing = {
 
 /** The teams a member covers, archived ones left out. */
 export async function findOwnTeams(tx: Tx, scope: Scope): Promise<TeamChoice[]> {
-  if (scope.teams !== "all" && scope.teams.length === 0) return [];
-  return tx
-    .select({ id: teams.id, name: teams.name, sport: teams.sport, sex: teams.sex, underAge: teams.underAge })
-    .from(teams)
-    .where(
-      and(
-        eq(teams.organisationId, scope.organisationId),
-        isNull(teams.archivedAt),
-        scope.teams === "all" ? undefined : inArray(teams.id, [...scope.teams]),
-      ),
-    )
-    .orderBy(asc(teams.name));
+  return scope.teams !== "all" && scope.teams.length === 0 ? [] : findTeamsOf(tx, scope);
 }
 
 /**
@@ -37,11 +25,7 @@ export async function findOwnTeams(tx: Tx, scope: Scope): Promise<TeamChoice[]> 
  */
 export async function resolveViewing(tx: Tx, url: URL): Promise<Viewing> {
   const { scope } = tx;
-  const seasonRows = await tx
-    .select({ id: seasons.id, name: seasons.name, startsOn: seasons.startsOn, endsOn: seasons.endsOn })
-    .from(seasons)
-    .where(eq(seasons.organisationId, scope.organisationId))
-    .orderBy(desc(seasons.startsOn));
+  const seasonRows = await findSeasons(tx);
   const ownTeams = await findOwnTeams(tx, scope);
   const seasonId = url.searchParams.get("season");
   const teamId = url.searchParams.get("team");

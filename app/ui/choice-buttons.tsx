@@ -24,7 +24,7 @@ type Props = {
 
 const face =
   "choice-face flex h-full w-full cursor-pointer items-center border-edge bg-paper text-ink select-none " +
-  "hover:bg-lagoon-wash peer-checked:border-ink peer-checked:bg-ink peer-checked:text-chalk " +
+  "hover:bg-lagoon-wash peer-checked:hover:bg-ink peer-checked:border-ink peer-checked:bg-ink peer-checked:text-chalk " +
   "peer-focus-visible:outline-3 peer-focus-visible:outline-offset-2 peer-focus-visible:outline-focus " +
   "peer-disabled:cursor-not-allowed peer-disabled:text-soft";
 

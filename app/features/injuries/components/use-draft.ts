@@ -14,17 +14,35 @@ export function useDraft(action: string, form: string, savedAt: string | null) {
   const [draft, setDraft] = useState<DraftState>({ savedAt, state: "idle" });
   const timer = useRef<ReturnType<typeof setTimeout>>(undefined);
   const running = useRef<AbortController>(undefined);
+  /** The form whose last words are not sent yet. */
+  const waiting = useRef<HTMLFormElement | null>(null);
 
   const cancel = useCallback(() => {
     clearTimeout(timer.current);
     running.current?.abort();
+    waiting.current = null;
   }, []);
   useEffect(() => cancel, [cancel]);
+
+  useEffect(() => {
+    // A phone that is locked or a page that is left within the pause: the last words go with a beacon.
+    const flush = () => {
+      if (!waiting.current) return;
+      const body = new FormData(waiting.current);
+      body.set("draft-form", form);
+      waiting.current = null;
+      navigator.sendBeacon(action, body);
+    };
+    window.addEventListener("pagehide", flush);
+    return () => window.removeEventListener("pagehide", flush);
+  }, [action, form]);
 
   const keep = useCallback(
     (element: HTMLFormElement) => {
       cancel();
+      waiting.current = element;
       timer.current = setTimeout(async () => {
+        waiting.current = null;
         const controller = new AbortController();
         running.current = controller;
         const body = new FormData(element);

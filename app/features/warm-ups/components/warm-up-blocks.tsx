@@ -7,7 +7,7 @@ type Props = { shown: Fields; disabled: boolean; onChange: (fields: Fields) => v
 
 const face =
   "relative flex min-h-target-large w-full cursor-pointer items-center gap-2 rounded-md border border-edge bg-paper px-3.5 py-2 " +
-  "leading-tight select-none hover:bg-lagoon-wash has-checked:border-lagoon has-checked:bg-lagoon has-checked:text-on-lagoon " +
+  "leading-tight select-none hover:bg-lagoon-wash has-checked:border-lagoon has-checked:bg-lagoon has-checked:text-on-lagoon has-checked:hover:bg-lagoon " +
   "has-focus-visible:outline-3 has-focus-visible:outline-offset-2 has-focus-visible:outline-focus " +
   "has-disabled:cursor-not-allowed has-disabled:border-dashed";
 

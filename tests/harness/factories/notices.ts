@@ -1,5 +1,6 @@
 import { randomUUID } from "node:crypto";
 import { expiryInDays, hashToken, linkToken } from "~/features/accounts/tokens.server";
+import { answerText, type NoticeContent } from "~/features/notices/notice-content";
 import { masterKey, sealer } from "~/platform/crypto/keys.server";
 import { keyedHash } from "~/platform/crypto/sealing.server";
 import { type Scope, write } from "~db/client.server";
@@ -7,17 +8,36 @@ import { deliveries, noticeEvents, noticeLinks, notices } from "~db/schema";
 import { only } from "./rows";
 
 /**
- * A notice with an open link and a waiting delivery, as rows. The feature's own use case writes what a guardian
- * really reads; this is enough for tests of access.
+ * A notice with an open link and a waiting delivery, as rows: for tests of who reaches it. What a guardian is really
+ * told is written by the feature's own use case, `sendNotices`. `part` is the last part of the link's path.
  */
 export function makeNotice(
   scope: Scope,
-  given: { injuryId: string; athleteId: string; guardianId: string; content?: string; answer?: string },
+  given: {
+    injuryId: string;
+    athleteId: string;
+    guardianId: string;
+    content?: Partial<NoticeContent>;
+    answer?: string;
+  },
 ) {
   const { organisationId, personId } = scope;
   const id = randomUUID();
   return write(scope, async (tx) => {
     const seals = await sealer(tx);
+    const content: NoticeContent = {
+      childName: "Ines",
+      day: scope.today,
+      time: "17:30",
+      where: null,
+      happened: "Ines hurt her knee at training.",
+      done: "We cooled it and she rested.",
+      doNow: "Let her rest today.",
+      watchFor: "Swelling that grows.",
+      emergency: "Call the emergency services if her foot turns cold or pale.",
+      call: { name: "Trainer", phone: "+44 1632 960100", hours: null },
+      ...given.content,
+    };
     const place = { table: "notices", column: "content", row: id, version: 1 };
     const notice = only(
       await tx
@@ -30,8 +50,8 @@ export function makeNotice(
           guardianId: given.guardianId,
           urgency: "routine",
           language: "en",
-          content: seals.sealRequired(place, given.content ?? "Content"),
-          answerHash: keyedHash(masterKey(), "notice answer", `${id} ${given.answer ?? "2010-05-17"}`),
+          content: seals.sealRequired(place, JSON.stringify(content)),
+          answerHash: keyedHash(masterKey(), "notice answer", answerText(id, given.answer ?? "2010-05-17")),
           createdBy: personId,
         })
         .returning(),
@@ -58,6 +78,6 @@ export function makeNotice(
         })
         .returning(),
     );
-    return { notice, linkId, token, delivery };
+    return { notice, linkId, part: `${id}.${token}`, delivery };
   });
 }

@@ -36,6 +36,7 @@ export async function recordsOf(club: Club, team = club.team, athlete = club.ath
     organisation: organisation.slug,
     organisationId: organisation.id,
     token: invitation.part,
+    familyToken: told.part,
     athlete: athlete.id,
     session: session.id,
     injury: injury.id,
@@ -48,7 +49,8 @@ export async function recordsOf(club: Club, team = club.team, athlete = club.ath
 
 /** A pattern with its parameters filled in. */
 export function fill(pattern: string, parameters: Parameters): string {
-  return pattern.replace(/:(\w+)/g, (_, name: string) => {
+  const named = pattern.startsWith("/families/") ? pattern.replace(":token", ":familyToken") : pattern;
+  return named.replace(/:(\w+)/g, (_, name: string) => {
     const value = parameters[name];
     if (value === undefined) throw new Error(`Nothing stands for :${name} of ${pattern}.`);
     return value;

@@ -1,27 +1,15 @@
 import { createHash } from "node:crypto";
-import {
-  appendFileSync,
-  chownSync,
-  existsSync,
-  mkdirSync,
-  readdirSync,
-  readFileSync,
-  renameSync,
-  rmSync,
-  statSync,
-  truncateSync,
-  writeFileSync,
-} from "node:fs";
+import { existsSync, mkdirSync, readdirSync, readFileSync, rmSync, writeFileSync } from "node:fs";
 import { join } from "node:path";
-import { run } from "../../app/platform/machine/command.mjs";
 import { isRoot } from "../../app/platform/machine/debian.mjs";
-import { Failure, failureFrom } from "../../app/platform/machine/failure.mjs";
 import { bornOf, withLock } from "../../app/platform/machine/lock.mjs";
-import { logFile, ROOT } from "../../app/platform/machine/places.mjs";
-import { ensureBinaries, environmentOf } from "./binaries.mjs";
-import { findFreePort, isPortFree } from "./ports.mjs";
-import { DATABASE, databaseStatements, roleStatements } from "./roles.mjs";
+import { ROOT } from "../../app/platform/machine/places.mjs";
+import { ensureBinaries } from "./binaries.mjs";
+import { makeData } from "./cluster-data.mjs";
+import { postgresUser } from "./programs.mjs";
+import { DATABASE } from "./roles.mjs";
 import { makeSecrets, readSecrets, writeSecrets } from "./secrets.mjs";
+import { isRunning, rememberedPort, startServer, stopServer } from "./server-process.mjs";
 
 /**
  * A PostgreSQL cluster of this checkout, on 127.0.0.1 only.
@@ -30,10 +18,6 @@ import { makeSecrets, readSecrets, writeSecrets } from "./secrets.mjs";
  * PostgreSQL refuses to run as root and that user cannot enter root's own folders. Beside the data (`data`) lie
  * its secrets, its port and the list of runs that use it; the last run to leave stops the server.
  */
-
-/** The longest path of a Unix socket on Linux (`sun_path`, 108 bytes with the closing zero). */
-const LONGEST_SOCKET = 107;
-const LARGEST_LOG = 10_000_000;
 
 /**
  * @typedef {object} Cluster
@@ -89,9 +73,11 @@ export async function openCluster({ name, lasting = true, secrets, keep = false,
 
       const leave = () => leaveCluster(binaries, home);
       onStart?.(leave);
-      enterUser(home, keep);
       const started = !isRunning(data);
-      const port = started ? await start(binaries, home, lasting) : rememberedPort(home);
+      // After a restart of the machine nobody uses it, whatever the list says.
+      if (started) rmSync(join(home, "users"), { recursive: true, force: true });
+      enterUser(home, keep);
+      const port = started ? await startServer(binaries, home, lasting) : rememberedPort(home);
       return {
         home,
         port,
@@ -116,7 +102,7 @@ export async function stopCluster(name) {
   const data = join(home, "data");
   if (!existsSync(data)) return;
   rmSync(join(home, "users"), { recursive: true, force: true });
-  if (isRunning(data)) await stop(await ensureBinaries({ major: majorOf(data) }), home);
+  if (isRunning(data)) await stopServer(await ensureBinaries({ major: majorOf(data) }), home);
 }
 
 /**
@@ -171,113 +157,6 @@ export function clusterUrls({ port, secrets }) {
 }
 
 /**
- * Make the data folder aside and put it in place only when it is whole, so that a killed run leaves nothing that
- * looks like a cluster. Single-user mode sets it up before anybody can connect to it.
- *
- * @param {import("./binaries.mjs").Binaries} binaries
- * @param {string} home
- * @param {import("./secrets.mjs").Secrets} secrets
- * @param {boolean} lasting
- */
-async function makeData(binaries, home, secrets, lasting) {
-  const aside = join(home, "data.new");
-  rmSync(aside, { recursive: true, force: true });
-  mkdirSync(aside, { mode: 0o700 });
-  handOver(aside);
-  const password = join(home, "password.new");
-  writeFileSync(password, secrets.superuser, { mode: 0o600 });
-  handOver(password);
-  try {
-    await must(binaries, "Making the local database", "initdb", [
-      ...["-D", aside, "-U", "postgres", "-E", "UTF8", "--locale=C.UTF-8", `--pwfile=${password}`],
-      ...["--auth-local=scram-sha-256", "--auth-host=scram-sha-256", ...(lasting ? [] : ["--no-sync"])],
-    ]);
-  } finally {
-    rmSync(password, { force: true });
-  }
-  appendFileSync(join(aside, "postgresql.conf"), "\ninclude 'haleside.conf'\n");
-  writeOwned(join(aside, "haleside.conf"), "");
-  const fast = lasting ? [] : ["-c", "fsync=off"];
-  for (const [database, statements] of /** @type {const} */ ([
-    ["postgres", roleStatements(secrets)],
-    [DATABASE, databaseStatements()],
-  ])) {
-    // In -j mode a statement ends with a semicolon and an empty line.
-    const input = statements.map((statement) => `${statement};\n\n`).join("");
-    const options = [
-      "-c",
-      "exit_on_error=on",
-      "-c",
-      "password_encryption=scram-sha-256",
-      "-c",
-      "log_statement=none",
-    ];
-    await must(
-      binaries,
-      "Setting up the local database",
-      "postgres",
-      ["--single", "-j", "-D", aside, ...options, ...fast, database],
-      input,
-    );
-  }
-  renameSync(aside, join(home, "data"));
-}
-
-/**
- * @param {import("./binaries.mjs").Binaries} binaries
- * @param {string} home
- * @param {boolean} lasting
- * @returns {Promise<number>} its port
- */
-async function start(binaries, home, lasting) {
-  const data = join(home, "data");
-  const log = join(data, "server.log");
-  if (existsSync(log) && statSync(log).size > LARGEST_LOG) truncateSync(log);
-  const wanted = rememberedPort(home);
-  const port = (await isPortFree(wanted)) ? wanted : await findFreePort(wanted + 1);
-  writeFileSync(join(home, "port"), `${port}\n`);
-  const socketFits = Buffer.byteLength(join(data, `.s.PGSQL.${port}`)) <= LONGEST_SOCKET;
-  writeOwned(
-    join(data, "haleside.conf"),
-    [
-      "listen_addresses = '127.0.0.1'",
-      `port = ${port}`,
-      `unix_socket_directories = '${socketFits ? data.replaceAll("'", "''") : ""}'`,
-      "password_encryption = 'scram-sha-256'",
-      "max_connections = 200",
-      "timezone = 'UTC'",
-      "log_timezone = 'UTC'",
-      // Its library is large and not unpacked; the queries here are too short to gain from it.
-      "jit = off",
-      ...(lasting ? [] : ["fsync = off", "synchronous_commit = off", "full_page_writes = off"]),
-      "",
-    ].join("\n"),
-  );
-  forgetOtherProcess(data);
-  const args = ["start", "-D", data, "-l", log, "-w", "-t", "120", "-s"];
-  const { code, output } = await program(binaries, "pg_ctl", args, { untouched: true });
-  if (code !== 0) {
-    const said = existsSync(log) ? readFileSync(log, "utf8").split("\n").slice(-40).join("\n") : "";
-    throw failureFrom("Starting the local database", `${output}\n${said}`, log);
-  }
-  return port;
-}
-
-/**
- * @param {import("./binaries.mjs").Binaries} binaries
- * @param {string} home
- */
-async function stop(binaries, home) {
-  const args = ["stop", "-D", join(home, "data"), "-m", "fast", "-w", "-t", "60", "-s"];
-  const { code } = await program(binaries, "pg_ctl", args, { untouched: true });
-  if (code !== 0 && isRunning(join(home, "data"))) {
-    await program(binaries, "pg_ctl", ["stop", "-D", join(home, "data"), "-m", "immediate", "-w", "-s"], {
-      untouched: true,
-    });
-  }
-}
-
-/**
  * Runs while a stop is under way too, perhaps while the server is still starting: the lock orders the two.
  *
  * @param {import("./binaries.mjs").Binaries} binaries
@@ -290,7 +169,7 @@ function leaveCluster(binaries, home) {
     () => {},
     async () => {
       rmSync(join(home, "users", String(process.pid)), { force: true });
-      if (usersOf(home).length === 0 && isRunning(join(home, "data"))) await stop(binaries, home);
+      if (usersOf(home).length === 0 && isRunning(join(home, "data"))) await stopServer(binaries, home);
     },
   );
 }
@@ -314,101 +193,7 @@ function usersOf(home) {
   });
 }
 
-/** Whether the server of a data folder runs: the process it names must really be that server. @param {string} data */
-export function isRunning(data) {
-  return namedProcess(data)?.includes(data) ?? false;
-}
-
-/**
- * A killed server leaves a file that names its process. When that number belongs to another program by now,
- * PostgreSQL would believe itself running and refuse to start.
- *
- * @param {string} data
- */
-function forgetOtherProcess(data) {
-  const words = namedProcess(data);
-  if (words && !words.includes(data)) rmSync(join(data, "postmaster.pid"), { force: true });
-}
-
-/** The command line of the living process that `postmaster.pid` names. @param {string} data */
-function namedProcess(data) {
-  const file = join(data, "postmaster.pid");
-  if (!existsSync(file)) return undefined;
-  const pid = Number(readFileSync(file, "utf8").split("\n")[0]);
-  if (bornOf(pid) === "") return undefined;
-  try {
-    return readFileSync(`/proc/${pid}/cmdline`, "utf8").split("\0");
-  } catch {
-    return undefined;
-  }
-}
-
-/** @param {string} home */
-function rememberedPort(home) {
-  const file = join(home, "port");
-  const port = existsSync(file) ? Number(readFileSync(file, "utf8")) : Number.NaN;
-  if (Number.isInteger(port) && port > 1023 && port < 65_536) return port;
-  // Spread over a range, so that two checkouts seldom meet; below the range that the system hands out itself.
-  return 25_000 + (createHash("sha256").update(home).digest().readUInt16BE() % 5000);
-}
-
 /** @param {string} data */
 function majorOf(data) {
   return Number.parseInt(readFileSync(join(data, "PG_VERSION"), "utf8"), 10);
-}
-
-/**
- * @param {import("./binaries.mjs").Binaries} binaries
- * @param {string} what
- * @param {string} name
- * @param {readonly string[]} args
- * @param {string} [input]
- */
-async function must(binaries, what, name, args, input) {
-  const log = logFile("database");
-  const { code, output } = await program(binaries, name, args, {
-    log,
-    ...(input === undefined ? {} : { input }),
-  });
-  if (code !== 0 || /^.*(ERROR|FATAL):/m.test(output)) throw failureFrom(what, output, log);
-}
-
-/**
- * @param {import("./binaries.mjs").Binaries} binaries
- * @param {string} name
- * @param {readonly string[]} args
- * @param {import("../../app/platform/machine/command.mjs").RunOptions} options
- */
-function program(binaries, name, args, options) {
-  const file = join(binaries.folder, name);
-  const common = { ...options, cwd: "/", env: environmentOf(binaries) };
-  if (!isRoot) return run(file, args, common);
-  return run("runuser", ["-u", "postgres", "--", file, ...args], common);
-}
-
-/** @param {string} path @param {string} text */
-function writeOwned(path, text) {
-  writeFileSync(path, text, { mode: 0o600 });
-  handOver(path);
-}
-
-/** Give a file to the user that PostgreSQL runs as. @param {string} path */
-function handOver(path) {
-  if (!isRoot) return;
-  const user = postgresUser();
-  if (!user) {
-    throw new Failure(
-      "PostgreSQL refuses to run as root, and this machine has no user `postgres`.",
-      "Install Debian's postgresql (it makes that user), or run this as an ordinary user.",
-    );
-  }
-  chownSync(path, user.uid, user.gid);
-}
-
-function postgresUser() {
-  const line = readFileSync("/etc/passwd", "utf8")
-    .split("\n")
-    .find((entry) => entry.startsWith("postgres:"));
-  const [, , uid, gid, , home] = line?.split(":") ?? [];
-  return uid && gid && home ? { uid: Number(uid), gid: Number(gid), home } : undefined;
 }

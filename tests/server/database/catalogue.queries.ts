@@ -1,3 +1,4 @@
+import type postgres from "postgres";
 import { owner } from "../../harness";
 
 /** What PostgreSQL's own catalogue says of the schema `public`, leaving out what the extensions brought. */
@@ -53,8 +54,8 @@ export type PolicyRow = {
   check: string | null;
 };
 
-export function listPolicies() {
-  return owner().unsafe<PolicyRow[]>(`
+export function listPolicies(sql: Pick<postgres.Sql, "unsafe"> = owner()) {
+  return sql.unsafe<PolicyRow[]>(`
     select tablename as table, policyname as name, permissive, roles::text[] as roles, lower(cmd) as command,
       qual as using, with_check as check
     from pg_policies where schemaname = 'public' order by 1, 2`);

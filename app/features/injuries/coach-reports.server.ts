@@ -215,3 +215,9 @@ export function findNamedAthlete(scope: MemberScope, id: string | null) {
     return athlete ? { id: athlete.id, label: `${athlete.givenName} ${athlete.familyName}` } : null;
   });
 }
+
+/** Puts the chosen athlete's name in place of what was searched for, so that a form sent back shows who is meant. */
+export async function nameAthlete(scope: MemberScope, form: FormData) {
+  const athlete = await findNamedAthlete(scope, String(form.get("athlete") ?? ""));
+  if (athlete) form.set("athlete-text", athlete.label);
+}

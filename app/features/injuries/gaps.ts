@@ -29,6 +29,9 @@ export type Gap = {
   label: string;
 };
 
+/** The edit form's input that fills a gap, as the anchor of its address. */
+export const gapAnchor = (field: string) => `field-${field === "pathology" ? "diagnosisPair" : field}`;
+
 const midline = [
   "head",
   "neck",

@@ -53,7 +53,7 @@ function facts(report: Report): Description[] {
     ],
     ["Body area", siteWords(report.bodyArea, report.side)],
     ["Could continue", yesNo(report.couldContinue)],
-    ["Suspected concussion", yesNo(report.suspectedConcussion)],
+    ["Suspected concussion", report.suspectedConcussion ? "yes" : null],
     ["Signs", report.signs.map((sign) => signWords[sign]).join(", ") || "none chosen"],
     ["Who was phoned", report.phoned],
     ["What the coach saw", report.note],

@@ -13,6 +13,7 @@ import {
 import { draftWords, useDraft } from "~/features/injuries/components/use-draft";
 import { discardDraft, editDraft } from "~/features/injuries/drafts.server";
 import { editInjury } from "~/features/injuries/edit-injury.server";
+import { gapAnchor } from "~/features/injuries/gaps";
 import { editSchema } from "~/features/injuries/injuries.schema";
 import { openEditForm } from "~/features/injuries/read-injury.server";
 import { answersOfForm, answersOfValues } from "~/features/injuries/seen";
@@ -79,7 +80,7 @@ export default function EditInjury({ loaderData, actionData }: Route.ComponentPr
             {missing.map(({ field, label }) => (
               <li key={field}>
                 <a
-                  href={`#field-${field === "pathology" ? "diagnosisPair" : field}`}
+                  href={`#${gapAnchor(field)}`}
                   className="inline-flex min-h-target items-center text-lagoon underline underline-offset-4"
                 >
                   {sentenceCase(label)}

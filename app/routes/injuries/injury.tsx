@@ -1,5 +1,5 @@
 import { useState } from "react";
-import { redirect, useNavigation, useSearchParams } from "react-router";
+import { Link, redirect, useNavigation, useSearchParams } from "react-router";
 import { formObject } from "~/features/accounts/accounts.schema";
 import { availabilityChangeSchema } from "~/features/availability/availability.schema";
 import { AvailabilityFields } from "~/features/availability/components/availability-fields";
@@ -9,6 +9,7 @@ import { InjuryFacts, type InjuryPage } from "~/features/injuries/components/inj
 import { InjuryHistory, Signature } from "~/features/injuries/components/injury-history";
 import { RelationNote } from "~/features/injuries/components/relation-note";
 import { addNote, changeInjuryAvailability, withdrawInjury } from "~/features/injuries/edit-injury.server";
+import { gapAnchor } from "~/features/injuries/gaps";
 import { noteSchema, withdrawReasons, withdrawSchema } from "~/features/injuries/injuries.schema";
 import { readInjury } from "~/features/injuries/read-injury.server";
 import { severityWords, siteWords, timeLossWords, withdrawWords } from "~/features/injuries/summary";
@@ -90,7 +91,7 @@ export default function Injury({ loaderData, actionData }: Route.ComponentProps)
     <Page>
       <PageHeading
         above={<TextLink to={`${base}/injuries`}>Injuries</TextLink>}
-        below={`${siteWords(revision.bodyArea, revision.side)}, ${formatDay(revision.onsetDay)}${injury.teams.length > 0 ? `, ${injury.teams.join(", ")}` : ""}`}
+        below={`${sentenceCase(siteWords(revision.bodyArea, revision.side))}, ${formatDay(revision.onsetDay)}${injury.teams.length > 0 ? `, ${injury.teams.join(", ")}` : ""}`}
         actions={
           revision.withdrawn ? null : (
             <>
@@ -175,9 +176,12 @@ function Gaps({ gaps, here }: { gaps: InjuryPage["gaps"]; here: string }) {
       <ul className="flex max-w-prose flex-wrap gap-x-6">
         {gaps.map(({ field, label }) => (
           <li key={field}>
-            <TextLink to={field === "availability" ? "#availability" : `${here}/edit#field-${field}`}>
+            <Link
+              to={field === "availability" ? "#availability" : `${here}/edit#${gapAnchor(field)}`}
+              className="inline-flex min-h-target items-center text-lagoon underline underline-offset-4"
+            >
               {sentenceCase(label)}
-            </TextLink>
+            </Link>
           </li>
         ))}
       </ul>
@@ -194,8 +198,10 @@ function Course({ injury, refused }: { injury: InjuryPage; refused: Refused }) {
         <AvailabilityMark state={own.state} limits={own} expectedOn={own.expectedOn} />
       </p>
       <p className="mt-2 max-w-prose">
-        Time loss: <strong>{timeLossWords(timeLoss)}</strong>, {severityWords[severity]}.
-        {timeLoss.ongoing ? " Counted from the day after the onset to today." : ""}
+        Time loss: <strong>{timeLossWords(timeLoss)}</strong>
+        {timeLoss.ongoing
+          ? `, counted from the day after the onset to today${timeLoss.days > 0 ? `; severity so far: ${severityWords[severity]}` : ""}.`
+          : `, ${severityWords[severity]}.`}
         {whole === own.state
           ? ""
           : ` For all reasons together ${injury.name} is ${availabilityWords[whole]} today.`}

@@ -2,7 +2,7 @@ import { randomUUID } from "node:crypto";
 import { useState } from "react";
 import { data, redirect, useNavigation, useSearchParams } from "react-router";
 import { formObject } from "~/features/accounts/accounts.schema";
-import { addEncounter, findNamedAthlete } from "~/features/injuries/coach-reports.server";
+import { addEncounter, findNamedAthlete, nameAthlete } from "~/features/injuries/coach-reports.server";
 import { encounterSchema } from "~/features/injuries/injuries.schema";
 import { searchOptions } from "~/features/roster/roster.server";
 import { sentenceCase } from "~/features/vocabulary";
@@ -37,6 +37,7 @@ export const action = memberAction(async ({ scope, form }) => {
     const matches = await searchOptions(scope, String(form.get("athlete-text") ?? ""));
     return data({ errors: null, values: formValues(form), matches });
   }
+  await nameAthlete(scope, form);
   await addEncounter(scope, encounterSchema.parse(formObject(form)));
   return redirect(`/${scope.slug}/encounters/new?saved=yes`);
 });

@@ -2,6 +2,7 @@ import { useState } from "react";
 import { data, redirect, useNavigation } from "react-router";
 import { formObject } from "~/features/accounts/accounts.schema";
 import { cautionsFor, safeDefaultReasons } from "~/features/injuries/cautions";
+import { nameAthlete } from "~/features/injuries/coach-reports.server";
 import { CautionNotes } from "~/features/injuries/components/caution-notes";
 import { NowFields } from "~/features/injuries/components/now-fields";
 import { draftWords, useDraft } from "~/features/injuries/components/use-draft";
@@ -46,6 +47,7 @@ export const action = memberAction(async ({ scope, form, url }) => {
     const matches = await searchOptions(scope, String(form.get("athlete-text") ?? ""));
     return data({ errors: null, values: formValues(form), matches });
   }
+  await nameAthlete(scope, form);
   const { id } = await logInjury(scope, logSchema.parse(formObject(form)));
   return redirect(`/${scope.slug}/injuries/${id}?saved=new`);
 });

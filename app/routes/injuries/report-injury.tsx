@@ -3,7 +3,12 @@ import { data, redirect, useNavigation } from "react-router";
 import { z } from "zod";
 import { formObject } from "~/features/accounts/accounts.schema";
 import { cautionsFor, safeDefaultReasons } from "~/features/injuries/cautions";
-import { openReportForm, readReceipt, sendCoachReport } from "~/features/injuries/coach-reports.server";
+import {
+  nameAthlete,
+  openReportForm,
+  readReceipt,
+  sendCoachReport,
+} from "~/features/injuries/coach-reports.server";
 import { CautionNotes } from "~/features/injuries/components/caution-notes";
 import { NowFields } from "~/features/injuries/components/now-fields";
 import { useSessions } from "~/features/injuries/components/use-sessions";
@@ -41,6 +46,7 @@ export const action = memberAction(async ({ scope, form }) => {
     const matches = await searchOptions(scope, String(form.get("athlete-text") ?? ""));
     return data({ errors: null, values: formValues(form), matches });
   }
+  await nameAthlete(scope, form);
   const input = reportSchema.parse(formObject(form));
   await sendCoachReport(scope, input);
   // The address carries the operation alone: what to do now is shown to its sender and to nobody else.

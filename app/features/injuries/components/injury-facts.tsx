@@ -36,7 +36,8 @@ export function InjuryFacts({ injury }: { injury: InjuryPage }) {
     ["Session", where],
     ["Body area", bodyAreaWords[revision.bodyArea]],
     ["Side", revision.side !== "none" && sideWords[revision.side]],
-    ["Suspected concussion", yesNo(revision.suspectedConcussion)],
+    // Only a suspicion is stated: the column cannot tell "no" from "not asked".
+    ["Suspected concussion", revision.suspectedConcussion && "yes"],
     ["Could continue", yesNo(revision.couldContinue)],
     ["Onset", revision.onset && onsetWords[revision.onset]],
     ["Contact", revision.contact && contactWords[revision.contact]],

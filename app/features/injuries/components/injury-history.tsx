@@ -19,7 +19,7 @@ export function Signature({ day, time, by }: Stamped) {
 export function InjuryHistory({ history }: Pick<InjuryPage, "history">) {
   return (
     <Disclosure
-      summary={`History: ${history.length === 1 ? "1 entry" : `${history.length} entries`}, nothing is overwritten`}
+      summary={`${history.length === 1 ? "1 entry" : `${history.length} entries`}, nothing is overwritten`}
     >
       <ol className="max-w-3xl">
         {history.map((entry) => (

@@ -106,9 +106,8 @@ export default function Teams({ loaderData, actionData }: Route.ComponentProps) 
       ) : null}
       {teams.map((team) => {
         const editing = actionData?.values.team === team.id ? actionData : undefined;
-        const words = <TeamWords team={team} />;
         return mayWrite ? (
-          <Disclosure key={team.id} summary={words} open={editing !== undefined}>
+          <Disclosure key={team.id} summary={<TeamWords team={team} />} open={editing !== undefined}>
             <Form {...(editing ?? {})} idPrefix={`team-${team.id}`}>
               <input type="hidden" name="team" value={team.id} />
               <TeamFields {...team} />
@@ -124,7 +123,7 @@ export default function Teams({ loaderData, actionData }: Route.ComponentProps) 
           </Disclosure>
         ) : (
           <p key={team.id} className="border-0 border-b border-line py-2.5">
-            {words}
+            <TeamWords team={team} />
           </p>
         );
       })}

@@ -1,6 +1,7 @@
 import { data } from "react-router";
 import { ZodError } from "zod";
 import { DomainError } from "~/platform/errors";
+import { describeFault } from "~/platform/fault.server";
 import { log } from "~/platform/log.server";
 import { sqlState } from "~db/client.server";
 
@@ -64,17 +65,5 @@ export function errorResponse(error: unknown, pattern = "") {
 }
 
 export function logFault(error: unknown) {
-  // The message of a database error can hold values; its code cannot.
-  const state = sqlState(error);
-  log.error(
-    state
-      ? { sqlState: state }
-      : {
-          error:
-            error instanceof Error
-              ? `${error.name}: ${error.stack?.split("\n")[1]?.trim() ?? ""}`
-              : "unknown",
-        },
-    "fault",
-  );
+  log.error(describeFault(error), "fault");
 }

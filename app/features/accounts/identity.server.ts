@@ -3,6 +3,7 @@ import { drizzleAdapter } from "better-auth/adapters/drizzle";
 import { drizzle } from "drizzle-orm/postgres-js";
 import postgres from "postgres";
 import { env } from "~/platform/env.server";
+import { log } from "~/platform/log.server";
 import { account, attempt, session, user, verification } from "~db/schema/auth";
 import { sendIdentityMail } from "./identity-mail.server";
 import { isCommonPassword } from "./passwords.server";
@@ -48,6 +49,8 @@ function makeIdentity() {
       cookieCache: { enabled: false },
     },
     rateLimit: { enabled: false },
+    // Its messages are fixed texts; what it hands along with them may hold addresses, and is left out.
+    logger: { level: "warn", log: (level, message) => log[level]({ identity: message }, "identity") },
     advanced: {
       database: { generateId: () => crypto.randomUUID() },
       disableOriginCheck: false,

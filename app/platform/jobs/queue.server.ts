@@ -2,6 +2,7 @@ import { sql } from "drizzle-orm";
 import PgBoss from "pg-boss";
 import { rawClient, type Tx } from "~db/client.server";
 import { env } from "../env.server";
+import { describeFault } from "../fault.server";
 import { log } from "../log.server";
 import { type QueueName, queueSchema } from "./queue-schema.server";
 
@@ -17,7 +18,7 @@ async function queue() {
     max: 3,
     application_name: "haleside jobs",
   });
-  started.on("error", (error) => log.error({ error: error.message }, "job queue"));
+  started.on("error", (error) => log.error(describeFault(error), "job queue"));
   await started.start();
   boss = started;
   return started;
@@ -77,8 +78,10 @@ export async function work(name: QueueName, handle: (data: Record<string, string
         try {
           await handle(job.data);
         } catch (error) {
-          log.error({ queue: name, error: error instanceof Error ? error.message : "unknown" }, "job failed");
-          throw error;
+          const fault = describeFault(error);
+          log.error({ queue: name, ...fault }, "job failed");
+          // The queue keeps what is thrown, in clear and outside the organisations' tables.
+          throw new Error(Object.values(fault).join(" "));
         }
       }
     },

@@ -49,6 +49,12 @@ export default function handleRequest(
   });
 }
 
+/** What the framework fetches for a navigation holds what the page holds, and is kept as little. */
+export function handleDataRequest(response: Response) {
+  response.headers.set("Cache-Control", "no-store");
+  return response;
+}
+
 export function handleError(error: unknown, { request }: { request: Request }) {
   if (!request.signal.aborted) logFault(error);
 }

@@ -1,6 +1,6 @@
 import { data } from "react-router";
 import { ZodError } from "zod";
-import { DomainError } from "~/platform/errors";
+import { DomainError, notFound } from "~/platform/errors";
 import { describeFault } from "~/platform/fault.server";
 import { log } from "~/platform/log.server";
 import { sqlState } from "~db/client.server";
@@ -12,6 +12,8 @@ const databaseErrors: Record<string, DomainError> = {
     "conflict",
     "That already exists. Open the existing one, or change what makes them equal.",
   ),
+  // An id that is none, from a form or an address: it answers like that of an absent record.
+  "22P02": notFound("What this is about"),
   "40001": new DomainError("conflict", "Somebody else changed this at the same moment. Try again."),
   "40P01": new DomainError("conflict", "Somebody else changed this at the same moment. Try again."),
   "55P03": new DomainError(
@@ -52,7 +54,10 @@ export function problem(error: unknown): Response {
       ? { errors: error.issues.map(({ path, message }) => ({ field: path.join("."), message })) }
       : {}),
   };
-  return Response.json(body, { status, headers: { "Content-Type": "application/problem+json" } });
+  return Response.json(body, {
+    status,
+    headers: { "Content-Type": "application/problem+json", "Cache-Control": "no-store" },
+  });
 }
 
 /** What to throw from a loader or the middleware: a status with code and plain words, or the fault itself. */

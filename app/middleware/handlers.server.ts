@@ -84,14 +84,15 @@ export async function answerForm<T>(request: Request, run: (form: FormData) => P
   }
 }
 
+/** Answers about people are kept by no cache. */
+const noStore = { headers: { "Cache-Control": "no-store" } };
+
 /** A loader of the JSON API: problem details for errors. */
 export function apiLoader(run: (args: MemberArgs) => Promise<unknown>) {
   return async (args: LoaderFunctionArgs): Promise<Response> => {
     try {
       const result = await run(memberArgs(args));
-      return result instanceof Response
-        ? result
-        : Response.json(result, { headers: { "Cache-Control": "no-store" } });
+      return result instanceof Response ? result : Response.json(result, noStore);
     } catch (error) {
       return problem(error);
     }
@@ -116,7 +117,7 @@ export function apiAction<S extends z.ZodType>(
         throw new DomainError("invalid", "The body is not JSON.");
       }
       const result = await run({ ...memberArgs(args), body: schema.parse(json) });
-      return result instanceof Response ? result : Response.json(result);
+      return result instanceof Response ? result : Response.json(result, noStore);
     } catch (error) {
       return problem(error);
     }

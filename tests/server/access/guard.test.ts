@@ -93,6 +93,36 @@ describe("what the framework fetches for a navigation", () => {
   });
 });
 
+describe("what is kept of an answer", () => {
+  it("is nothing, of a page, of what a navigation fetches and of the API, refused or not", async () => {
+    const cookie = await cookieOf(club.people.trainer);
+    const coach = await cookieOf(club.people.coach);
+    const injury = at(`injuries/${own.injury}`);
+    const asked: [string, string][] = [
+      [injury, cookie],
+      [`${injury}.data`, cookie],
+      [`${injury}.data`, coach],
+      [`/api/${club.organisation.slug}/athletes?q=a`, cookie],
+      [`/api/${club.organisation.slug}/incidence`, coach],
+      [at("injuries/export.csv"), cookie],
+    ];
+    for (const [path, who] of asked)
+      expect([path, (await get(path, who)).headers["cache-control"]]).toEqual([path, "no-store"]);
+  });
+});
+
+describe("an id in a form that is none", () => {
+  it.each([
+    ["roster/:athlete", { intent: "end-alert", alert: "nonsense" }],
+    ["roster/:athlete/guardians", { intent: "end", guardian: "nonsense" }],
+    ["settings/people", { intent: "revoke", invitation: "nonsense" }],
+    ["settings/people", { intent: "end", person: "nonsense" }],
+  ])("answers at %s like that of an absent record", async (pattern, form) => {
+    const cookie = await cookieOf(club.people.admin);
+    expect((await post(http, fill(at(pattern), own), form, cookie)).status).toBe(404);
+  });
+});
+
 describe("a person's rights", () => {
   it("are gone with the next request after a role is removed", async () => {
     const person = await makePerson(club.organisation, { roles: ["coach", "trainer"] });

@@ -5,7 +5,7 @@ import { qualified } from "~db/qualified";
 /** Named with its table: inside the rule's sub-selects a bare "id" would mean another table's. */
 const named = (column: SQL | Column) => (is(column, Column) ? qualified(column) : column);
 
-/** Days for which a visitor stays visible to the teams they trained with. */
+/** Days for which somebody stays visible to a team that they visited. */
 const visitorDays = 14;
 
 const idList = (ids: readonly string[]) =>
@@ -16,8 +16,9 @@ const idList = (ids: readonly string[]) =>
 
 /**
  * The one visibility rule: whether an athlete is visible to a scope on a day. All teams: everyone. Listed teams: who is
- * on the roster of one of them on that day (transfers and two teams included), and visitors who took part in one of
- * their sessions within two weeks. Use it in every query that shows athletes.
+ * on the roster of one of them on that day (transfers and two teams included), and who visited: took part in one of
+ * their sessions within two weeks without being on that team's roster that day. A former athlete is no visitor, so
+ * having trained before a transfer shows them to nobody. Use it in every query that shows athletes.
  * @param athleteId the SQL column holding the athlete's id
  */
 export function visibleAthletes(scope: Scope, athleteId: SQL | Column, day = scope.today): SQL {
@@ -38,8 +39,17 @@ export function visibleAthletes(scope: Scope, athleteId: SQL | Column, day = sco
         on visible_session.organisation_id = visible_part.organisation_id and visible_session.id = visible_part.session_id
       where visible_part.organisation_id = ${scope.organisationId}::uuid
         and visible_part.athlete_id = ${athlete}
+        and visible_part.presence = 'took_part'
         and visible_session.team_id in ${teams}
         and visible_session.day between ${day}::date - ${visitorDays}::int and ${day}::date
+        and not exists (
+          select 1 from roster_entries home_entry
+          where home_entry.organisation_id = visible_part.organisation_id
+            and home_entry.athlete_id = visible_part.athlete_id
+            and home_entry.team_id = visible_session.team_id
+            and home_entry.from_day <= visible_session.day
+            and coalesce(home_entry.to_day, 'infinity'::date) >= visible_session.day
+        )
     ))`;
 }
 

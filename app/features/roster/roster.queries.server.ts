@@ -7,11 +7,16 @@ import { visibleAthletes } from "./visibility.server";
 
 const org = (tx: Tx) => tx.scope.organisationId;
 
-/** Words of a search, each found anywhere in the normalised name or at the start of the number. */
-function matches(words: readonly string[], raw: string): SQL | undefined {
+/** A search as typed, and its folded words. Numbers must not be found out by trying where they are not shown. */
+export type SearchText = { words: readonly string[]; raw: string; numbers: boolean };
+
+/** Words of a search, each found anywhere in the normalised name, or the start of the number. */
+function matches({ words, raw, numbers }: SearchText): SQL | undefined {
   if (words.length === 0 && !raw) return undefined;
   const byName = words.map((word) => sql`${athletes.nameKey} like ${`%${word.replace(/[%_\\]/g, "\\$&")}%`}`);
-  const byNumber = sql`${athletes.number} ilike ${`${raw.replace(/[%_\\]/g, "\\$&")}%`}`;
+  const byNumber = numbers
+    ? sql`${athletes.number} ilike ${`${raw.replace(/[%_\\]/g, "\\$&")}%`}`
+    : sql`false`;
   return words.length > 0 ? sql`((${sql.join(byName, sql` and `)}) or ${byNumber})` : byNumber;
 }
 
@@ -29,7 +34,7 @@ const onTeam = (tx: Tx, teamId: string | null, day: string) => sql`exists (
     and r.from_day <= ${day}::date and coalesce(r.to_day, 'infinity'::date) >= ${day}::date)`;
 
 /** Athletes for a search-as-you-type field, visible ones only. */
-export function searchAthletes(tx: Tx, words: readonly string[], raw: string, limit: number) {
+export function searchAthletes(tx: Tx, text: SearchText, limit: number) {
   return tx
     .select({
       id: athletes.id,
@@ -44,7 +49,7 @@ export function searchAthletes(tx: Tx, words: readonly string[], raw: string, li
       and(
         eq(athletes.organisationId, org(tx)),
         isNull(athletes.archivedAt),
-        matches(words, raw),
+        matches(text),
         visibleAthletes(tx.scope, athletes.id),
       ),
     )
@@ -52,9 +57,7 @@ export function searchAthletes(tx: Tx, words: readonly string[], raw: string, li
     .limit(limit);
 }
 
-export type RosterFilter = {
-  words: readonly string[];
-  raw: string;
+export type RosterFilter = SearchText & {
   show: (typeof rosterViews)[number];
   teamId: string | null;
 };
@@ -67,7 +70,7 @@ export async function listAthletes(tx: Tx, filter: RosterFilter, page: number, p
     filter.show === "current" ? onTeam(tx, filter.teamId, tx.scope.today) : undefined,
     filter.show === "no-team" ? not(onTeam(tx, null, tx.scope.today)) : undefined,
     filter.show === "no-team" ? eq(athletes.visitor, false) : undefined,
-    matches(filter.words, filter.raw),
+    matches(filter),
     visibleAthletes(tx.scope, athletes.id),
   );
   const rows = await tx

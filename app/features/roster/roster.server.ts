@@ -10,11 +10,9 @@ import type { MemberScope } from "../accounts/scope.server";
 import { resolveViewing } from "../accounts/viewing.server";
 import { stateOfDay } from "../availability/availability.server";
 import {
-  closeEntry,
   endAlert,
   findAthlete,
   findAthleteByNumber,
-  findEntry,
   insertAlert,
   insertAthlete,
   insertEntry,
@@ -34,8 +32,6 @@ import type {
   alertSchema,
   athleteSchema,
   guardianSchema,
-  joinTeamSchema,
-  leaveTeamSchema,
   newAthleteSchema,
   rosterQuerySchema,
 } from "./roster.schema";
@@ -48,14 +44,18 @@ function need(scope: MemberScope, permission: Permission) {
   if (!may(scope.roles, permission)) throw forbidden();
 }
 
-const searchWords = (text: string) => foldText(text).split(" ").filter(Boolean);
+const searchText = (scope: MemberScope, text: string) => ({
+  words: foldText(text).split(" ").filter(Boolean),
+  raw: text.trim(),
+  numbers: may(scope.roles, "roster.contacts"),
+});
 
 /** Options of the athlete search: a name, with what tells two of one name apart. */
 export function searchOptions(scope: MemberScope, text: string) {
   need(scope, "roster.read");
   const contacts = may(scope.roles, "roster.contacts");
   return read(scope, async (tx) => {
-    const rows = await searchAthletes(tx, searchWords(text), text.trim(), searchLimit);
+    const rows = await searchAthletes(tx, searchText(scope, text), searchLimit);
     return rows.map(({ id, givenName, familyName, number, visitor, teams }) => ({
       id,
       label: `${givenName} ${familyName}`,
@@ -66,21 +66,20 @@ export function searchOptions(scope: MemberScope, text: string) {
   });
 }
 
-/** The roster of the season and team in the address. Coaches get names, numbers and teams, nothing of the family. */
+/** The roster of the season and team in the address. Coaches get names and teams, nothing of the family. */
 export function listRoster(scope: MemberScope, url: URL, query: z.output<typeof rosterQuerySchema>) {
   need(scope, "roster.read");
   return read(scope, async (tx) => {
     const viewing = await resolveViewing(tx, url);
+    const contacts = may(scope.roles, "roster.contacts");
     const filter = {
-      words: searchWords(query.q),
-      raw: query.q,
+      ...searchText(scope, query.q),
       show: query.show,
       teamId: viewing.team?.id ?? null,
     };
     const { rows, total } = await listAthletes(tx, filter, query.page, rosterPageSize);
-    const contacts = may(scope.roles, "roster.contacts");
     return {
-      rows: rows.map((row) => (contacts ? row : { ...row, dateOfBirth: null })),
+      rows: rows.map((row) => (contacts ? row : { ...row, number: null, dateOfBirth: null })),
       total,
       team: viewing.team,
       teams: viewing.teams,
@@ -107,9 +106,13 @@ export function readAthlete(scope: MemberScope, url: URL, id: string) {
     return {
       athlete: contacts
         ? athlete
-        : { ...athlete, dateOfBirth: null, researchConsent: false, dominantLeg: "unknown" },
+        : { ...athlete, number: null, dateOfBirth: null, researchConsent: false, dominantLeg: "unknown" },
       entries: await listEntries(tx, id),
-      alerts: await listAlerts(tx, id),
+      alerts: (await listAlerts(tx, id)).map((alert) => ({
+        id: alert.id,
+        text: alert.text,
+        agreedWith: contacts ? alert.agreedWith : null,
+      })),
       guardians: contacts
         ? (await listGuardians(tx, id)).map(({ legalLimits, ...shown }) => ({
             ...shown,
@@ -190,39 +193,6 @@ export function archiveAthlete(scope: MemberScope, id: string, archived: boolean
       action: archived ? "athlete.archive" : "athlete.restore",
       subjectId: id,
       athleteId: id,
-    });
-  });
-}
-
-/** Puts an athlete on a team from a day. Overlaps with the same team are refused by the database. */
-export function joinTeam(scope: MemberScope, athleteId: string, input: z.output<typeof joinTeamSchema>) {
-  need(scope, "roster.write");
-  if (!coversTeam(scope, input.team)) throw notFound("That team");
-  return write(scope, async (tx) => {
-    await requireAthlete(tx, athleteId);
-    const { team, fromDay, toDay } = input;
-    await insertEntry(tx, { id: randomUUID(), athleteId, teamId: team, fromDay, toDay });
-    await audit(tx, { action: "roster.join", subjectId: team, athleteId, fields: { fromDay } });
-  });
-}
-
-/** Ends a membership of a team with its last day. The days before stay as they are. */
-export function leaveTeam(scope: MemberScope, athleteId: string, input: z.output<typeof leaveTeamSchema>) {
-  need(scope, "roster.write");
-  return write(scope, async (tx) => {
-    await requireAthlete(tx, athleteId);
-    const entry = await findEntry(tx, athleteId, input.entry);
-    if (!entry || !coversTeam(scope, entry.teamId)) throw notFound("That membership");
-    if (input.toDay < entry.fromDay)
-      throw new DomainError("invalid", "", {
-        fields: { toDay: ["The last day lies before the first. Enter a later one."] },
-      });
-    await closeEntry(tx, entry.id, input.toDay);
-    await audit(tx, {
-      action: "roster.leave",
-      subjectId: entry.teamId,
-      athleteId,
-      fields: { toDay: input.toDay },
     });
   });
 }

@@ -1,7 +1,7 @@
 import { Button, Disclosure, Field, Form, type FormErrors, type FormValues, Note, TextInput } from "~/ui";
 
 type Props = {
-  alerts: { id: string; text: string; agreedWith: string }[];
+  alerts: { id: string; text: string; agreedWith: string | null }[];
   mayWrite: boolean;
   actionData: { errors: FormErrors; values: FormValues } | undefined;
 };
@@ -13,7 +13,7 @@ export function ActionAlerts({ alerts, mayWrite, actionData }: Props) {
     <>
       {alerts.map(({ id, text, agreedWith }) => (
         <Note key={id} kind="attention" title={text}>
-          <p className="text-soft">Agreed with {agreedWith}, for coaches to see.</p>
+          <p className="text-soft">Agreed with {agreedWith ?? "the family"}, for coaches to see.</p>
           {mayWrite ? (
             <Form>
               <input type="hidden" name="alert" value={id} />

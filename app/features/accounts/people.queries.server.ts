@@ -177,8 +177,13 @@ export function confirmRoles(tx: Tx, personId: string, confirmedBy: string) {
     );
 }
 
-export function endMembership(tx: Tx, personId: string) {
-  return tx
+/** Ends a membership with its roles and teams, so that a later invitation gives what it says and nothing of before. */
+export async function endMembership(tx: Tx, personId: string) {
+  await tx
+    .delete(membershipRoles)
+    .where(and(eq(membershipRoles.organisationId, org(tx)), eq(membershipRoles.personId, personId)));
+  await replaceTeams(tx, personId, false, []);
+  await tx
     .update(memberships)
     .set({ endedAt: new Date(), version: sql`${memberships.version} + 1` })
     .where(and(eq(memberships.organisationId, org(tx)), eq(memberships.personId, personId)));

@@ -115,6 +115,7 @@ export function confirmMember(scope: MemberScope, personId: string) {
   need(scope, "people.confirm");
   if (personId === scope.personId) throw forbidden();
   return write(scope, async (tx) => {
+    requireMember(await listMembers(tx), personId);
     await confirmRoles(tx, personId, scope.personId);
     await audit(tx, { action: "role.confirm", subjectId: personId });
   });
@@ -123,8 +124,7 @@ export function confirmMember(scope: MemberScope, personId: string) {
 export function changeTeams(scope: MemberScope, personId: string, input: z.output<typeof changeTeamsSchema>) {
   need(scope, "people.manage");
   return write(scope, async (tx) => {
-    const member = (await listMembers(tx)).find((row) => row.personId === personId && !row.endedAt);
-    if (!member) throw notFound("That person");
+    requireMember(await listMembers(tx), personId);
     const known = await findOwnTeams(tx, { ...scope, teams: "all" });
     if (input.teams.some((id) => !known.some((team) => team.id === id))) throw notFound("That team");
     await replaceTeams(tx, personId, input.reach === "all", input.teams);
@@ -136,8 +136,7 @@ export function changeTeams(scope: MemberScope, personId: string, input: z.outpu
 export function grantRole(scope: MemberScope, personId: string, role: Role) {
   need(scope, "people.manage");
   return write(scope, async (tx) => {
-    const member = (await listMembers(tx)).find((row) => row.personId === personId && !row.endedAt);
-    if (!member) throw notFound("That person");
+    requireMember(await listMembers(tx), personId);
     await insertRole(tx, {
       personId,
       role,
@@ -153,7 +152,9 @@ export function grantRole(scope: MemberScope, personId: string, role: Role) {
 export function removeRole(scope: MemberScope, personId: string, role: Role) {
   need(scope, "people.manage");
   return write(scope, async (tx) => {
-    await refuseLast(await listMembers(tx), personId, [role]);
+    const members = await listMembers(tx);
+    requireMember(members, personId);
+    refuseLast(members, personId, [role]);
     await deleteRole(tx, personId, role);
     await audit(tx, { action: "role.remove", subjectId: personId, fields: { role } });
   });
@@ -163,17 +164,21 @@ export function removeRole(scope: MemberScope, personId: string, role: Role) {
 export function endMember(scope: MemberScope, personId: string) {
   need(scope, "people.manage");
   return write(scope, async (tx) => {
-    await refuseLast(await listMembers(tx), personId, ["admin", "lead"]);
+    const members = await listMembers(tx);
+    requireMember(members, personId);
+    refuseLast(members, personId, ["admin", "lead"]);
     await endMembership(tx, personId);
     await audit(tx, { action: "membership.end", subjectId: personId });
   });
 }
 
-async function refuseLast(
-  members: Awaited<ReturnType<typeof listMembers>>,
-  personId: string,
-  removed: readonly Role[],
-) {
+type Members = Awaited<ReturnType<typeof listMembers>>;
+
+function requireMember(members: Members, personId: string) {
+  if (!members.some((row) => row.personId === personId && !row.endedAt)) throw notFound("That person");
+}
+
+function refuseLast(members: Members, personId: string, removed: readonly Role[]) {
   for (const role of removed.filter((name) => name === "admin" || name === "lead")) {
     const holders = members.filter(
       (member) =>

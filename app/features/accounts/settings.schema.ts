@@ -71,6 +71,8 @@ const bands = z.string().transform((text, context) => {
   };
   const wrong = lines.find((_, index) => parsed[index] === null);
   if (wrong) return refuse(`“${wrong}” is not an age band. Write 13-14, under 10 or over 25.`);
+  const reversed = parsed.find((band) => band && band.to !== null && band.to < band.from);
+  if (reversed) return refuse(`“${reversed.label}” ends before it begins. Write the younger age first.`);
   const sorted = parsed.flatMap((band) => band ?? []).sort((a, b) => a.from - b.from);
   if (sorted[0]?.from !== 0)
     return refuse("The first band must begin with under …, so that nobody is left out.");

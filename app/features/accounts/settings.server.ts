@@ -48,7 +48,7 @@ export function editOrganisation(
     if (!saved)
       throw new DomainError(
         "conflict",
-        "Somebody else changed the settings while you were typing. Open the page again to see them, then save yours.",
+        "Somebody else changed the settings while you were typing. What you typed is still here: open the settings in another window to compare, then save again to replace theirs.",
       );
     await audit(tx, { action: "organisation.edit" });
   });

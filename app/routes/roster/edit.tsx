@@ -1,4 +1,4 @@
-import { redirect } from "react-router";
+import { redirect, type ShouldRevalidateFunctionArgs } from "react-router";
 import { formObject } from "~/features/accounts/accounts.schema";
 import { AthleteFields } from "~/features/roster/components/athlete-fields";
 import { athleteSchema } from "~/features/roster/roster.schema";
@@ -25,6 +25,10 @@ export const action = memberAction(async ({ scope, form, id }) => {
   }
   return redirect(`/${scope.slug}/roster/${athleteId}`);
 });
+
+/** After a conflict the page takes the newer version, so that saving again is possible. */
+export const shouldRevalidate = ({ actionStatus, defaultShouldRevalidate }: ShouldRevalidateFunctionArgs) =>
+  actionStatus === 409 || defaultShouldRevalidate;
 
 export default function EditAthlete({ loaderData, actionData }: Route.ComponentProps) {
   const { athlete, base } = loaderData;

@@ -1,4 +1,4 @@
-import { redirect, useSearchParams } from "react-router";
+import { redirect, type ShouldRevalidateFunctionArgs, useSearchParams } from "react-router";
 import { formObject } from "~/features/accounts/accounts.schema";
 import { SettingsLinks } from "~/features/accounts/components/settings-links";
 import { may } from "~/features/accounts/permissions";
@@ -32,6 +32,10 @@ export const action = memberAction(async ({ scope, form }) => {
   await editOrganisation(scope, Number(form.get("version")), organisationSchema.parse(formObject(form)));
   return redirect(`/${scope.slug}/settings?done=1`);
 });
+
+/** After a conflict the page takes the newer version, so that saving again is possible. */
+export const shouldRevalidate = ({ actionStatus, defaultShouldRevalidate }: ShouldRevalidateFunctionArgs) =>
+  actionStatus === 409 || defaultShouldRevalidate;
 
 export default function Settings({ loaderData, actionData }: Route.ComponentProps) {
   const { organisation, base, mayWrite } = loaderData;

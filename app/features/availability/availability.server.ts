@@ -4,7 +4,7 @@ import { audit } from "~/platform/audit.server";
 import { DomainError, forbidden, notFound } from "~/platform/errors";
 import type { Scope, Tx } from "~db/client.server";
 import type { availabilityCauses } from "~db/schema/codes";
-import { type Contribution, type DayState, fullState, stateFromContributions } from "./availability";
+import { type Contribution, type DayState, fullState, holdsOn, stateFromContributions } from "./availability";
 import {
   findChanges,
   findContributionsOn,
@@ -103,7 +103,7 @@ export async function openReason(
     action: "availability.change",
     subjectId: id,
     athleteId: input.athleteId,
-    fields: { state: input.change.state, from: input.change.fromDay, cause: input.cause },
+    fields: { state: input.change.state, from: input.change.fromDay },
   });
   return id;
 }
@@ -204,6 +204,29 @@ export const fullFrom = (fromDay: string): AvailabilityChange => ({
   fromDay,
   expectedOn: null,
 });
+
+/**
+ * The safe default of an injury that has come to a reason for it: unavailable from the onset where nothing was entered,
+ * else from today, whatever was planned before the reason was known. What already keeps the athlete out without an end
+ * stays as it is, with the day expected.
+ */
+export async function makeUnavailable(
+  tx: Tx,
+  injury: { id: string; athleteId: string; onsetDay: string },
+): Promise<void> {
+  const { today } = tx.scope;
+  const reason = await findReasonOf(tx, { injuryId: injury.id });
+  if (!reason) {
+    const change = unavailableFrom(injury.onsetDay);
+    await openReason(tx, { athleteId: injury.athleteId, cause: "injury", injuryId: injury.id, change });
+    return;
+  }
+  const parts = await findReasonContributions(tx, [reason.id]);
+  const ahead = parts.filter(({ toDay }) => toDay === null || toDay >= today);
+  const isOut =
+    ahead.some((part) => holdsOn(part, today)) && ahead.every(({ state }) => state === "unavailable");
+  if (!isOut) await changeAvailability(tx, reason.id, unavailableFrom(today));
+}
 
 /** A change cannot be dated before the onset of the injury it belongs to. */
 export function requireFrom(change: AvailabilityChange, onsetDay: string) {

@@ -97,7 +97,7 @@ export function sendCoachReport(scope: MemberScope, input: ReportInput): Promise
         action: "coach_report.send",
         subjectId: id,
         athleteId: athlete.id,
-        fields: { safeDefault: reasons },
+        fields: { safeDefault: reasons.length > 0 },
       });
       return { cautions: cautionsFor(input).map(({ kind }) => kind), unavailable: reasons.length > 0 };
     }),

@@ -7,12 +7,11 @@ import {
   changeAvailability,
   contributionsOfInjuries,
   fullFrom,
-  listChanges,
+  makeUnavailable,
   moveOnset,
   openReason,
   reasonOf,
   requireFrom,
-  unavailableFrom,
 } from "~/features/availability/availability.server";
 import { audit } from "~/platform/audit.server";
 import { type Sealer, sealer } from "~/platform/crypto/keys.server";
@@ -26,6 +25,7 @@ import { changedKeys } from "./history";
 import {
   advanceVersion,
   findInjuryRow,
+  findRevisions,
   findSessionsOf,
   type InjuryRow,
   insertNote,
@@ -106,23 +106,17 @@ async function checkClosing(tx: Tx, row: InjuryRow, input: EditInput) {
     );
 }
 
-/** An edit that brings the first safe-default condition makes the athlete unavailable; what a clinical role lifted stays. */
+/**
+ * An edit that brings a reason for the safe default which no earlier revision had makes the athlete unavailable, also
+ * when something else had been lifted; a reason that was known when a clinical role lifted it stays lifted.
+ */
 async function applySafeDefault(tx: Tx, row: InjuryRow, input: EditInput & { signs: EditInput["signs"] }) {
-  const newly =
-    safeDefaultReasons(row.revision).length === 0 && safeDefaultReasons(input).length > 0 && !input.closedOn;
-  if (!newly) return;
-  const reason = await reasonOf(tx, { injuryId: row.id });
-  // Every change counts here, those set aside too: lifting on the very day leaves no contribution behind.
-  const changes = reason ? await listChanges(tx, [reason.id]) : [];
-  if (changes.some(({ state }) => state === "unavailable")) return;
-  if (reason) await changeAvailability(tx, reason.id, unavailableFrom(tx.scope.today));
-  else
-    await openReason(tx, {
-      athleteId: row.athleteId,
-      cause: "injury",
-      injuryId: row.id,
-      change: unavailableFrom(input.day),
-    });
+  if (input.closedOn) return;
+  const known = (await findRevisions(tx, row.id))
+    .filter(({ revision }) => revision.version <= row.revision.version)
+    .flatMap(({ revision }) => safeDefaultReasons(revision));
+  if (safeDefaultReasons(input).every((reason) => known.includes(reason))) return;
+  await makeUnavailable(tx, { id: row.id, athleteId: row.athleteId, onsetDay: input.day });
 }
 
 /**

@@ -1,19 +1,14 @@
 import { randomUUID } from "node:crypto";
 import { may } from "~/features/accounts/permissions";
 import type { MemberScope } from "~/features/accounts/scope.server";
-import {
-  changeAvailability,
-  openReason,
-  takeOverReport,
-  unavailableFrom,
-} from "~/features/availability/availability.server";
+import { makeUnavailable, moveOnset, takeOverReport } from "~/features/availability/availability.server";
 import { audit } from "~/platform/audit.server";
 import { sealer } from "~/platform/crypto/keys.server";
 import { DomainError, forbidden, notFound } from "~/platform/errors";
 import { once } from "~/platform/operations.server";
 import type { FormValues } from "~/ui";
 import { read, type Tx, write } from "~db/client.server";
-import { safeDefaultReasons, signGroups } from "./cautions";
+import { type SafeDefaultReason, safeDefaultReasons, signGroups } from "./cautions";
 import { findReport, insertOutcome, type ReportRow, reportPlace } from "./coach-reports.queries.server";
 import { dropDraft, logDraft, readDraft } from "./drafts.server";
 import { findAthlete, findSessionsOf, insertInjury, insertRevision } from "./injuries.queries.server";
@@ -103,7 +98,7 @@ export function logInjury(scope: MemberScope, input: LogInput): Promise<{ id: st
         ...unanswered,
         ...told,
       });
-      const reasons = await setAvailability(
+      const safeDefault = await setAvailability(
         tx,
         { id, athleteId: athlete.id, onsetDay: onset.onsetDay },
         input,
@@ -114,7 +109,7 @@ export function logInjury(scope: MemberScope, input: LogInput): Promise<{ id: st
         action: "injury.create",
         subjectId: id,
         athleteId: athlete.id,
-        fields: { safeDefault: reasons },
+        fields: { safeDefault },
       });
       return { id };
     }),
@@ -179,8 +174,9 @@ async function takeReport(tx: Tx, reportId: string, athleteId: string) {
 }
 
 /**
- * The safe default of a new injury. What a coach's report had set is taken over; signs that the report did not have
- * make the athlete unavailable from today even if a clinical role had changed what the report set.
+ * The safe default of a new injury. What a coach's report had set is taken over, and moved where the onset was another
+ * day; signs that the report did not have make the athlete unavailable even if a clinical role had changed what it set.
+ * @returns whether there is a reason for it
  */
 async function setAvailability(
   tx: Tx,
@@ -189,16 +185,16 @@ async function setAvailability(
   report: ReportRow | undefined,
 ) {
   const reasons = safeDefaultReasons(input);
-  const of = { injuryId: injury.id, athleteId: injury.athleteId };
-  let reasonId: string | null = null;
+  let settled: readonly SafeDefaultReason[] = [];
   if (report) {
-    const settled = await insertOutcome(tx, { reportId: report.id, injuryId: injury.id, reason: null });
-    if (!settled) throw new DomainError("conflict", "Somebody has already dealt with this report.");
-    reasonId = await takeOverReport(tx, { reportId: report.id, ...of });
+    if (!(await insertOutcome(tx, { reportId: report.id, injuryId: injury.id, reason: null })))
+      throw new DomainError("conflict", "Somebody has already dealt with this report.");
+    const { athleteId, id: injuryId } = injury;
+    if (await takeOverReport(tx, { reportId: report.id, injuryId, athleteId })) {
+      await moveOnset(tx, injuryId, report.onsetDay, injury.onsetDay);
+      settled = safeDefaultReasons(report);
+    }
   }
-  if (reasons.length === 0) return reasons;
-  if (!reasonId) await openReason(tx, { cause: "injury", ...of, change: unavailableFrom(injury.onsetDay) });
-  else if (report && safeDefaultReasons(report).length === 0)
-    await changeAvailability(tx, reasonId, unavailableFrom(tx.scope.today));
-  return reasons;
+  if (reasons.some((reason) => !settled.includes(reason))) await makeUnavailable(tx, injury);
+  return reasons.length > 0;
 }

@@ -311,6 +311,26 @@ describe("the record", () => {
     expect(await stateOf(club.scopes.coach, athlete.id)).toMatchObject({ state: "full" });
   });
 
+  it("applies the safe default again to an edit that brings a reason nobody knew when it was lifted", async () => {
+    const athlete = await freshAthlete();
+    const { id } = await logInjury(club.scopes.trainer, logOf(athlete.id, { couldContinue: "no" }));
+    await changeInjuryAvailability(club.scopes.trainer, id, changeOf({}));
+    expect(await stateOf(club.scopes.coach, athlete.id)).toMatchObject({ state: "full" });
+    await editInjury(club.scopes.trainer, id, await editOf(id, { suspectedConcussion: "yes" }));
+    expect(await stateOf(club.scopes.coach, athlete.id)).toMatchObject({ state: "unavailable" });
+  });
+
+  it("leaves the expected day of an athlete who is out already when an edit brings a further reason", async () => {
+    const { today } = club.scopes.trainer;
+    const athlete = await freshAthlete();
+    const { id } = await logInjury(club.scopes.trainer, logOf(athlete.id, { couldContinue: "no" }));
+    const expectedOn = addDays(today, 20);
+    const change = changeOf({ state: "unavailable", expectedOn: day(expectedOn) });
+    await changeInjuryAvailability(club.scopes.trainer, id, change);
+    await editInjury(club.scopes.trainer, id, await editOf(id, { signs: ["pop"] }));
+    expect(await stateOf(club.scopes.coach, athlete.id)).toMatchObject({ state: "unavailable", expectedOn });
+  });
+
   it("keeps a withdrawn record, counts it nowhere, and sets its availability aside", async () => {
     const athlete = await freshAthlete();
     const { id } = await logInjury(club.scopes.trainer, logOf(athlete.id, { couldContinue: "no" }));
@@ -479,6 +499,55 @@ describe("coaches' reports", () => {
       { code: "conflict" },
     );
     expect((await readReport(club.scopes.trainer, report?.id ?? "")).injuryId).toBe(id);
+  });
+
+  it("makes the athlete unavailable again when the trainer sees a sign that the lifted report did not have", async () => {
+    const athlete = await freshAthlete();
+    await sendCoachReport(club.scopes.coach, reportOf(athlete.id, { signs: [] }));
+    const { reasons } = await readAthleteAvailability(club.scopes.trainer, athlete.id);
+    await setAthleteAvailability(
+      club.scopes.trainer,
+      athlete.id,
+      { reasonId: reasons[0]?.id ?? "" },
+      changeOf({}),
+    );
+    expect(await stateOf(club.scopes.coach, athlete.id)).toMatchObject({ state: "full" });
+    const report = (await readQueue(club.scopes.trainer)).find(({ athleteId }) => athleteId === athlete.id);
+    const form = await openLogForm(club.scopes.trainer, { athleteId: null, reportId: report?.id ?? null });
+    const answers = { ...form.values, operation: form.operation, report: form.reportId };
+    await logInjury(club.scopes.trainer, logSchema.parse({ ...answers, suspectedConcussion: "yes" }));
+    expect(await stateOf(club.scopes.coach, athlete.id)).toMatchObject({ state: "unavailable" });
+  });
+
+  it("counts from the true onset when the trainer corrects the day of a report", async () => {
+    const { today } = club.scopes.trainer;
+    const athlete = await freshAthlete();
+    await sendCoachReport(club.scopes.coach, reportOf(athlete.id));
+    const report = (await readQueue(club.scopes.trainer)).find(({ athleteId }) => athleteId === athlete.id);
+    const form = await openLogForm(club.scopes.trainer, { athleteId: null, reportId: report?.id ?? null });
+    const input = logSchema.parse({
+      ...form.values,
+      operation: form.operation,
+      report: form.reportId,
+      when: "earlier",
+      day: day(addDays(today, -3)),
+      time: "",
+    });
+    const { id } = await logInjury(club.scopes.trainer, input);
+    expect((await readInjury(club.scopes.trainer, id)).timeLoss).toEqual({ days: 3, ongoing: true });
+    expect(await stateOf(club.scopes.coach, athlete.id, addDays(today, -2))).toMatchObject({
+      state: "unavailable",
+    });
+  });
+
+  it("leaves no word of what was seen in the audit, which administrators read", async () => {
+    const athlete = await freshAthlete();
+    await sendCoachReport(club.scopes.coach, reportOf(athlete.id, { suspectedConcussion: "yes" }));
+    await logInjury(club.scopes.trainer, logOf(athlete.id, { suspectedConcussion: "yes" }));
+    const rows = await maintenance()<{ fields: unknown }[]>`
+      select fields from audit_events where athlete_id = ${athlete.id}`;
+    expect(rows.length).toBeGreaterThan(2);
+    expect(JSON.stringify(rows)).not.toMatch(/concussion|knee|emergency|injury|illness|report/);
   });
 
   it("can be closed with a reason, which lifts what it set only when that is said", async () => {

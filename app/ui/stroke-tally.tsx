@@ -3,7 +3,7 @@ import { joinClasses } from "./classes";
 type Props = {
   /** One entry per stroke, in order; the last is drawn across the others. */
   done: boolean[];
-  /** The words instead of the picture; "3 of 5" unless given. */
+  /** The words instead of the picture; "3 of 5" unless given, none when the words stand right beside it. */
   label?: string;
   size?: "inline" | "large";
   /** Writes "3/5" beside the large tally. */
@@ -60,9 +60,13 @@ export function StrokeTally({ done, label, size = "inline", showCount = size ===
     <span
       className={joinClasses("inline-flex items-center", size === "large" ? "max-w-full gap-4" : "gap-2")}
     >
-      <span role="img" aria-label={label ?? `${count} of ${done.length}`} className="inline-flex min-w-0">
-        {picture}
-      </span>
+      {label === "" ? (
+        picture
+      ) : (
+        <span role="img" aria-label={label ?? `${count} of ${done.length}`} className="inline-flex min-w-0">
+          {picture}
+        </span>
+      )}
       {showCount ? (
         <span aria-hidden="true" className="text-lg font-semibold tabular-nums">
           {count}/{done.length}

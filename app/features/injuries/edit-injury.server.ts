@@ -24,12 +24,14 @@ import { dropDraft, editDraft } from "./drafts.server";
 import { changedKeys } from "./history";
 import {
   advanceVersion,
+  findInjuriesOf,
   findInjuryRow,
   findRevisions,
   findSessionsOf,
   type InjuryRow,
   insertNote,
   insertRevision,
+  lockInjury,
   type NewRevision,
 } from "./injuries.queries.server";
 import type { EditInput, withdrawReasons } from "./injuries.schema";
@@ -38,8 +40,9 @@ import { type Opened, openRevision, revisionPlace } from "./overview.server";
 const refuse = (field: string, message: string) =>
   new DomainError("invalid", "", { fields: { [field]: [message] } });
 
-/** The injury to change, if nobody changed it since the form was opened. */
+/** The injury to change, held for this transaction, if nobody changed it since the form was opened. */
 async function takeInjury(tx: Tx, id: string, version?: number): Promise<InjuryRow> {
+  await lockInjury(tx, id);
   const row = await findInjuryRow(tx, id);
   if (!row) throw notFound("That injury");
   if (row.revision.withdrawn)
@@ -94,6 +97,15 @@ async function sessionOf(tx: Tx, row: InjuryRow, input: EditInput) {
   return { sessionId: input.session, outsideSport: false };
 }
 
+/** The injury that this one follows is one of the same athlete. */
+async function checkSubsequentTo(tx: Tx, row: InjuryRow, { subsequentTo }: EditInput) {
+  if (!subsequentTo) return;
+  if (subsequentTo === row.id) throw refuse("subsequentTo", "An injury cannot follow from itself.");
+  const own = await findInjuriesOf(tx, [row.athleteId]);
+  if (!own.some(({ id }) => id === subsequentTo))
+    throw refuse("subsequentTo", "This is no longer an injury of this athlete. Choose again.");
+}
+
 async function checkClosing(tx: Tx, row: InjuryRow, input: EditInput) {
   if (!input.closedOn) return;
   if (input.closedOn > tx.scope.today) throw refuse("closedOn", "This day has not come yet.");
@@ -131,7 +143,7 @@ export function editInjury(scope: MemberScope, id: string, given: EditInput): Pr
     once(tx, input.operation, { edit: id, input }, async () => {
       const row = await takeInjury(tx, id, input.version);
       if (input.day > scope.today) throw refuse("day", "This day has not come yet.");
-      if (input.subsequentTo === id) throw refuse("subsequentTo", "An injury cannot follow from itself.");
+      await checkSubsequentTo(tx, row, input);
       const place = await sessionOf(tx, row, input);
       await checkClosing(tx, row, input);
       const seals = await sealer(tx);

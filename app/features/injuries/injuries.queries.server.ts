@@ -135,6 +135,15 @@ function shaped(row: Selected): InjuryRow {
   };
 }
 
+/** Holds an injury for this transaction, so that two writes about one injury follow each other. */
+export async function lockInjury(tx: Tx, id: string) {
+  await tx
+    .select({ id: injuries.id })
+    .from(injuries)
+    .where(and(eq(injuries.organisationId, org(tx)), eq(injuries.id, id)))
+    .for("update");
+}
+
 export async function findInjuryRow(tx: Tx, id: string): Promise<InjuryRow | undefined> {
   const [row] = await selectCurrent(tx, eq(injuries.id, id));
   return row && shaped(row);

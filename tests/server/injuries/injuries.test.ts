@@ -311,6 +311,27 @@ describe("the record", () => {
     expect(await stateOf(club.scopes.coach, athlete.id)).toMatchObject({ state: "full" });
   });
 
+  it("gives an injury one reason when two people enter its availability at once", async () => {
+    const athlete = await freshAthlete();
+    const { id } = await logInjury(club.scopes.trainer, logOf(athlete.id));
+    const change = changeOf({ state: "unavailable" });
+    await Promise.all(
+      [club.scopes.trainer, club.scopes.lead].map((scope) => changeInjuryAvailability(scope, id, change)),
+    );
+    await changeInjuryAvailability(club.scopes.trainer, id, changeOf({}));
+    expect(await stateOf(club.scopes.coach, athlete.id)).toMatchObject({ state: "full" });
+  });
+
+  it("does not let an injury follow another athlete's", async () => {
+    const [athlete, another] = [await freshAthlete(), await freshAthlete()];
+    const { id } = await logInjury(club.scopes.trainer, logOf(athlete.id));
+    const foreign = await logInjury(club.scopes.trainer, logOf(another.id));
+    for (const subsequentTo of [foreign.id, id, randomUUID()])
+      await expect(
+        editInjury(club.scopes.trainer, id, await editOf(id, { subsequentTo })),
+      ).rejects.toMatchObject({ fields: { subsequentTo: expect.anything() } });
+  });
+
   it("applies the safe default again to an edit that brings a reason nobody knew when it was lifted", async () => {
     const athlete = await freshAthlete();
     const { id } = await logInjury(club.scopes.trainer, logOf(athlete.id, { couldContinue: "no" }));

@@ -6,6 +6,7 @@ import { joinTeamSchema, leaveTeamSchema } from "~/features/roster/roster.schema
 import { listRoster, readAthlete, searchOptions } from "~/features/roster/roster.server";
 import { joinTeam, leaveTeam } from "~/features/roster/team-memberships.server";
 import { addDays } from "~/platform/clock";
+import { foldText } from "~/platform/fold-text";
 import { read } from "~db/client.server";
 import {
   makeAthlete,
@@ -202,7 +203,6 @@ describe("the search", () => {
       ["Under", "Score", "50_off"],
       ["Plain", "Number", "50xoff"],
     ] as const) {
-      const { foldText } = await import("~/platform/fold-text");
       await makeAthlete(club.staff, {
         givenName,
         familyName,

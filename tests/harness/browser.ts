@@ -158,7 +158,11 @@ export async function signIn(page: Page, person: TestPerson) {
 
 /** No violation of WCAG 2.2 A and AA or of axe's best practices on the page as it stands. */
 export async function axe(page: Page) {
-  const { violations } = await new AxeBuilder({ page }).analyze();
+  const builder = new AxeBuilder({ page });
+  // The preview of a mail stands in a frame without scripts, where the checker cannot run either.
+  if ((await page.locator("iframe[sandbox]").count()) > 0)
+    builder.setLegacyMode(true).exclude("iframe").options({ iframes: false });
+  const { violations } = await builder.analyze();
   const told = violations.map(
     ({ id, help, nodes }) => `${id}: ${help}\n  ${nodes.map(({ html }) => html).join("\n  ")}`,
   );

@@ -220,20 +220,30 @@ export function insertGuardianship(tx: Tx, row: Omit<typeof guardianships.$infer
   return tx.insert(guardianships).values({ organisationId: org(tx), ...row });
 }
 
-export function updateGuardian(tx: Tx, id: string, set: Partial<typeof guardians.$inferInsert>) {
-  return tx
+/** @returns false when the version is no longer the one that was seen */
+export async function updateGuardian(
+  tx: Tx,
+  id: string,
+  version: number,
+  set: Partial<typeof guardians.$inferInsert>,
+) {
+  const rows = await tx
     .update(guardians)
     .set({ ...set, version: sql`${guardians.version} + 1` })
-    .where(and(eq(guardians.organisationId, org(tx)), eq(guardians.id, id)));
+    .where(and(eq(guardians.organisationId, org(tx)), eq(guardians.id, id), eq(guardians.version, version)))
+    .returning({ id: guardians.id });
+  return rows.length === 1;
 }
 
-export function updateGuardianship(
+/** @returns false when the version is no longer the one that was seen */
+export async function updateGuardianship(
   tx: Tx,
   athleteId: string,
   guardianId: string,
+  version: number,
   set: Partial<typeof guardianships.$inferInsert>,
 ) {
-  return tx
+  const rows = await tx
     .update(guardianships)
     .set({ ...set, version: sql`${guardianships.version} + 1` })
     .where(
@@ -241,8 +251,11 @@ export function updateGuardianship(
         eq(guardianships.organisationId, org(tx)),
         eq(guardianships.athleteId, athleteId),
         eq(guardianships.guardianId, guardianId),
+        eq(guardianships.version, version),
       ),
-    );
+    )
+    .returning({ id: guardianships.guardianId });
+  return rows.length === 1;
 }
 
 /** Action alerts in force: what a family lets coaches see. */

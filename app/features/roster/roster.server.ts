@@ -249,11 +249,20 @@ export function addGuardian(scope: MemberScope, athleteId: string, input: Guardi
   });
 }
 
-/** Changes a guardian's contact and bond. A new address starts fresh: an earlier stop was of the old one. */
+/** What a form for editing a guardian was opened with: the versions of the contact and of the bond. */
+export const guardianVersionOf = (row: { guardianVersion: number; version: number }) =>
+  `${row.guardianVersion}.${row.version}`;
+
+/**
+ * Changes a guardian's contact and bond. A new address starts fresh: an earlier stop was of the old one.
+ * @param seen the version the form was opened with: a page left open must not take back a limit entered since
+ * @throws DomainError conflict when somebody else, or the guardian's own wish, changed it meanwhile
+ */
 export function editGuardian(
   scope: MemberScope,
   athleteId: string,
   guardianId: string,
+  seen: string,
   input: GuardianInput,
 ) {
   need(scope, "roster.write");
@@ -264,9 +273,17 @@ export function editGuardian(
     const { seal } = await sealer(tx);
     const { person, bond } = splitGuardian(input);
     const emailStoppedAt = person.email === before.email ? before.emailStoppedAt : null;
-    await updateGuardian(tx, guardianId, { ...person, emailStoppedAt });
+    const contact = { ...person, emailStoppedAt };
     const legalLimits = seal(limitsPlace(athleteId, guardianId, 1), input.legalLimits);
-    await updateGuardianship(tx, athleteId, guardianId, { ...bond, legalLimits });
+    const saved =
+      seen === guardianVersionOf(before) &&
+      (await updateGuardian(tx, guardianId, before.guardianVersion, contact)) &&
+      (await updateGuardianship(tx, athleteId, guardianId, before.version, { ...bond, legalLimits }));
+    if (!saved)
+      throw new DomainError(
+        "conflict",
+        "This guardian was changed since you opened the page, perhaps by the guardian's own wish. What you typed is still here and nothing is saved: open the page anew, look at what stands there, and enter it again.",
+      );
     await audit(tx, { action: "guardian.edit", subjectId: guardianId, athleteId });
   });
 }
@@ -276,7 +293,11 @@ export function endGuardianship(scope: MemberScope, athleteId: string, guardianI
   need(scope, "roster.write");
   return write(scope, async (tx) => {
     await requireAthlete(tx, athleteId);
-    await updateGuardianship(tx, athleteId, guardianId, { endedAt: new Date() });
+    const before = (await listGuardians(tx, athleteId)).find(({ id }) => id === guardianId);
+    if (!before) throw notFound("That guardian");
+    const ended = { endedAt: new Date() };
+    if (!(await updateGuardianship(tx, athleteId, guardianId, before.version, ended)))
+      throw new DomainError("conflict", "Somebody else changed this at the same moment. Try again.");
     await audit(tx, { action: "guardian.end", subjectId: guardianId, athleteId });
   });
 }

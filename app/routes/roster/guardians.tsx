@@ -20,9 +20,10 @@ export const action = memberAction(async ({ scope, form, id }) => {
   const guardianId = String(form.get("guardian") ?? "");
   const intent = form.get("intent");
   if (intent === "end") await endGuardianship(scope, athleteId, guardianId);
-  else if (intent === "edit")
-    await editGuardian(scope, athleteId, guardianId, guardianSchema.parse(formObject(form)));
-  else await addGuardian(scope, athleteId, guardianSchema.parse(formObject(form)));
+  else if (intent === "edit") {
+    const seen = String(form.get("version") ?? "");
+    await editGuardian(scope, athleteId, guardianId, seen, guardianSchema.parse(formObject(form)));
+  } else await addGuardian(scope, athleteId, guardianSchema.parse(formObject(form)));
   return redirect(`/${scope.slug}/roster/${athleteId}/guardians?done=1`);
 });
 
@@ -58,6 +59,7 @@ export default function Guardians({ loaderData, actionData }: Route.ComponentPro
             ) : null}
             <Form {...(editing ?? {})} idPrefix={`guardian-${guardian.id}`}>
               <input type="hidden" name="guardian" value={guardian.id} />
+              <input type="hidden" name="version" value={`${guardian.guardianVersion}.${guardian.version}`} />
               <GuardianFields values={guardian} />
               <div className="flex flex-wrap gap-3">
                 <Button look="primary" name="intent" value="edit">

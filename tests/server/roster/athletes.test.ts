@@ -9,6 +9,7 @@ import {
   editAthlete,
   editGuardian,
   endGuardianship,
+  guardianVersionOf,
   listRoster,
   readAthlete,
   readGuardians,
@@ -157,6 +158,29 @@ describe("guardians", () => {
   const guardian = (given: Record<string, string> = {}) =>
     guardianSchema.parse({ name: "Ottilie Ashdown", phone: "+44 1632 960155", mayBeTold: "yes", ...given });
 
+  /** What the form of the athlete's first guardian would carry. */
+  async function versionOf(athleteId: string) {
+    const [row] = (await readGuardians(club.scopes.trainer, athleteId)).guardians;
+    return row ? guardianVersionOf(row) : "";
+  }
+
+  it("does not let a page left open take back a limit, or the guardian's own wish, entered since", async () => {
+    const { id } = await makeAthlete(club.staff, { teamId: club.team.id });
+    const input = guardian({ wantsEmail: "yes", email: "home@example.org" });
+    const guardianId = await addGuardian(club.scopes.trainer, id, input);
+    const opened = await versionOf(id);
+    const edit = (seen: string, given: typeof input) =>
+      editGuardian(club.scopes.trainer, id, guardianId, seen, given);
+    await edit(opened, { ...input, mayBeTold: false, legalLimits: limits });
+    await expect(edit(opened, input)).rejects.toMatchObject({ code: "conflict" });
+    const again = await versionOf(id);
+    await maintenance()`update guardians set wants_email = false, version = version + 1 where id = ${guardianId}`;
+    await expect(edit(again, input)).rejects.toMatchObject({ code: "conflict" });
+    expect((await readGuardians(club.scopes.trainer, id)).guardians).toMatchObject([
+      { mayBeTold: false, legalLimits: limits, wantsEmail: false },
+    ]);
+  });
+
   it("keeps legal limits sealed, opens them for those who keep contacts, and says nothing of them elsewhere", async () => {
     const { id } = await makeAthlete(club.staff, { teamId: club.team.id });
     const guardianId = await addGuardian(club.scopes.trainer, id, guardian({ legalLimits: limits }));
@@ -192,6 +216,7 @@ describe("guardians", () => {
         club.scopes.trainer,
         id,
         stopped.id,
+        await versionOf(id),
         guardian({ email, legalLimits: "None by post." }),
       );
       return (await readGuardians(club.scopes.trainer, id)).guardians[0];
@@ -211,7 +236,7 @@ describe("guardians", () => {
     await endGuardianship(club.scopes.trainer, one.id, both.id);
     expect((await readGuardians(club.scopes.trainer, one.id)).guardians).toEqual([]);
     expect((await readGuardians(club.scopes.trainer, other.id)).guardians).toHaveLength(1);
-    await expect(editGuardian(club.scopes.trainer, one.id, both.id, guardian())).rejects.toMatchObject(
+    await expect(editGuardian(club.scopes.trainer, one.id, both.id, "1.1", guardian())).rejects.toMatchObject(
       absent,
     );
   });

@@ -275,5 +275,10 @@ export const listFilterSchema = z.object({
     .default(""),
   severity: z.enum(["", "0", "1-7", "8-28", ">28"]).catch("").default(""),
   q: z.string().trim().max(100).catch("").default(""),
+  /** One athlete's injuries of every season. */
+  athlete: z
+    .union([z.uuid(), z.literal("")])
+    .catch("")
+    .default(""),
 });
 export type ListFilter = z.output<typeof listFilterSchema>;

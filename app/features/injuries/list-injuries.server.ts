@@ -1,6 +1,6 @@
 import { may } from "~/features/accounts/permissions";
 import type { MemberScope } from "~/features/accounts/scope.server";
-import { resolveViewing } from "~/features/accounts/viewing.server";
+import { lastListedDay, resolveViewing, type Viewing } from "~/features/accounts/viewing.server";
 import {
   availabilityWords,
   bodyAreaWords,
@@ -18,11 +18,11 @@ import {
 import { audit } from "~/platform/audit.server";
 import { sealer } from "~/platform/crypto/keys.server";
 import { writeCsv } from "~/platform/csv";
-import { forbidden } from "~/platform/errors";
+import { forbidden, notFound } from "~/platform/errors";
 import { foldText } from "~/platform/fold-text";
 import { ageOn } from "~/statistics";
 import { type Tx, write } from "~db/client.server";
-import { findInjuryRows } from "./injuries.queries.server";
+import { findAthlete, findInjuryRows } from "./injuries.queries.server";
 import { type ListFilter, listFilterSchema } from "./injuries.schema";
 import { type InjuryOverview, openRevision, overviewsOf } from "./overview.server";
 import { siteWords } from "./summary";
@@ -51,14 +51,28 @@ function hasWords({ athlete, revision, diagnosis, teams }: Line, words: readonly
   return words.every((word) => text.includes(word));
 }
 
-/** The injuries of the viewing's season and team under a filter. */
+/** The injuries that a list is of: one athlete's, or those of the viewing's season and team. */
+async function findListed(tx: Tx, viewing: Viewing, athleteId: string) {
+  if (athleteId) {
+    const athlete = await findAthlete(tx, athleteId);
+    if (!athlete) throw notFound("That athlete");
+    return { athlete, rows: await findInjuryRows(tx, { athleteId }) };
+  }
+  const { season, team } = viewing;
+  const to = lastListedDay(viewing);
+  const rows = await findInjuryRows(tx, {
+    ...(season ? { from: season.startsOn } : {}),
+    ...(to ? { to } : {}),
+    ...(team ? { teamIds: [team.id] } : {}),
+  });
+  return { athlete: null, rows };
+}
+
+/** The lines of a list under the filter of its address. */
 async function findLines(tx: Tx, url: URL) {
   const viewing = await resolveViewing(tx, url);
   const filter = listFilterOf(url);
-  const rows = await findInjuryRows(tx, {
-    ...(viewing.season ? { from: viewing.season.startsOn, to: viewing.season.endsOn } : {}),
-    ...(viewing.team ? { teamIds: [viewing.team.id] } : {}),
-  });
+  const { athlete, rows } = await findListed(tx, viewing, filter.athlete);
   const seals = await sealer(tx);
   const words = foldText(filter.q).split(" ").filter(Boolean);
   const all = (await overviewsOf(tx, rows)).map(
@@ -71,19 +85,21 @@ async function findLines(tx: Tx, url: URL) {
       (filter.severity === "" || row.severity === filter.severity) &&
       hasWords(row, words),
   );
-  return { viewing, filter, all, lines };
+  return { viewing, athlete, filter, all, lines };
 }
 
 /** The list of injuries: lines, and the counts of its sentence. */
 export function listInjuries(scope: MemberScope, url: URL) {
   if (!may(scope.roles, "injuries.read")) throw forbidden();
   return write(scope, async (tx) => {
-    const { viewing, filter, all, lines } = await findLines(tx, url);
+    const { viewing, athlete, filter, all, lines } = await findLines(tx, url);
     await audit(tx, { action: "injury.list", fields: { count: lines.length } });
     return {
       filter,
-      season: viewing.season?.name ?? null,
-      team: viewing.team?.name ?? null,
+      /** Whose injuries they are, where the list is of one athlete; then of every season and team. */
+      athlete: athlete && `${athlete.givenName} ${athlete.familyName}`,
+      season: athlete ? null : (viewing.season?.name ?? null),
+      team: athlete ? null : (viewing.team?.name ?? null),
       total: all.length,
       open: lines.filter(({ open }) => open).length,
       limiting: lines.filter(({ today }) => today.state !== "full").length,

@@ -3,6 +3,7 @@ import { may } from "~/features/accounts/permissions";
 import type { MemberScope } from "~/features/accounts/scope.server";
 import { listChanges, reasonOf, stateOfDay } from "~/features/availability/availability.server";
 import { certaintyWords, pathologyWords } from "~/features/vocabulary";
+import { proposeWarmedUp } from "~/features/warm-ups/warm-up-part.server";
 import { audit } from "~/platform/audit.server";
 import { dayIn, timeIn } from "~/platform/clock";
 import { type Sealer, sealer } from "~/platform/crypto/keys.server";
@@ -147,6 +148,15 @@ export function openEditForm(scope: MemberScope, id: string) {
     const further = (await readFurther(tx, seals, id)).filter(({ version }) => version === revision.version);
     const { earlier, suggestion } = await relateToEarlier(tx, seals, overview);
     const sessions = await findSessionsOf(tx, overview.athleteId, revision.onsetDay);
+    const { session } = overview;
+    const proposed =
+      revision.warmedUp === null && session && revision.sessionId
+        ? await proposeWarmedUp(
+            tx,
+            { id: revision.sessionId, startTime: session.startTime },
+            { athleteId: overview.athleteId, onsetTime: revision.onsetTime },
+          )
+        : null;
     const draft = await readDraft(tx, scope.personId, editDraft(id));
     // A draft of an older revision would undo what was entered since.
     const usable = draft && draft.values.version === String(revision.version) ? draft : null;
@@ -167,7 +177,7 @@ export function openEditForm(scope: MemberScope, id: string) {
       minuteOfPlay: revision.minuteOfPlay === null ? "" : String(revision.minuteOfPlay),
       surface: revision.surface ?? overview.session?.surface ?? "",
       footwear: revision.footwear ?? "",
-      warmedUp: yesNo(revision.warmedUp),
+      warmedUp: yesNo(revision.warmedUp ?? proposed),
       signs: among(signGroups.joint),
       emergencySigns: among(signGroups.limb),
       headSigns: among(signGroups.head),
@@ -207,6 +217,8 @@ export function openEditForm(scope: MemberScope, id: string) {
         startTime: startTime?.slice(0, 5) ?? null,
       })),
       sessionSurface: overview.session?.surface ?? null,
+      /** What the session's record proposes, while nobody has confirmed it. */
+      warmedUpProposed: proposed,
       relation: suggestion,
       earlier: earlier.map(({ id: earlierId, bodyArea, side, pathology, onsetDay, year }) => ({
         id: earlierId,

@@ -102,7 +102,7 @@ export default function EditInjury({ loaderData, actionData }: Route.ComponentPr
         <input type="hidden" name="operation" value={operation} />
         <input type="hidden" name="version" value={version} />
         <WhenAndWhere page={page} />
-        <HowItHappened />
+        <HowItHappened warmedUpProposed={page.warmedUpProposed} />
         <SignsAndCare headOpen={answers.signs.some((sign) => !signGroups.joint.includes(sign))} />
         <div aria-live="polite">
           <CautionNotes cautions={cautionsFor(answers)} reasons={[]} saved />

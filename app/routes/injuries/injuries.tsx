@@ -71,8 +71,10 @@ const columns: Column<Line>[] = [
 const counted = (count: number, one: string, many: string) => `${count} ${count === 1 ? one : many}`;
 
 function Sentence({ data }: { data: Data }) {
-  const { lines, filter, total, open, limiting, season, team } = data;
-  const whose = `${season ? ` in season ${season}` : ""}${team ? `, ${team}` : ""}`;
+  const { lines, filter, total, open, limiting, season, team, athlete } = data;
+  const whose = athlete
+    ? ` of ${athlete}, of every season`
+    : `${season ? ` in season ${season}` : ""}${team ? `, ${team}` : ""}`;
   const narrowed = filter.state !== "all" || filter.area || filter.severity || filter.q;
   const parts = [
     filter.area ? `of the ${bodyAreaWords[filter.area]}` : "",
@@ -96,7 +98,7 @@ function Sentence({ data }: { data: Data }) {
 }
 
 export default function Injuries({ loaderData }: Route.ComponentProps) {
-  const { lines, total, filter, base } = loaderData;
+  const { lines, total, filter, base, athlete } = loaderData;
   const [params] = useSearchParams();
   return (
     <Page>
@@ -111,7 +113,7 @@ export default function Injuries({ loaderData }: Route.ComponentProps) {
       </PageHeading>
       {total === 0 ? (
         <EmptyState
-          title="No injury is logged here yet"
+          title={athlete ? `No injury of ${athlete} is logged` : "No injury is logged here yet"}
           actions={
             <ButtonLink to={`${base}/injuries/new`} look="primary">
               Log the first injury

@@ -43,7 +43,7 @@ export function ListFilters({ filter }: { filter: ListFilter }) {
         if (event.target instanceof HTMLSelectElement) submit(event.currentTarget, { replace: true });
       }}
     >
-      {["season", "team"].map((name) =>
+      {["season", "team", "athlete"].map((name) =>
         params.get(name) ? (
           <input key={name} type="hidden" name={name} value={params.get(name) ?? ""} />
         ) : null,

@@ -85,7 +85,12 @@ export function WhenAndWhere({ page }: { page: EditPage }) {
   );
 }
 
-export function HowItHappened() {
+/** @param warmedUpProposed what the session's record says, to be confirmed by saving */
+export function HowItHappened({ warmedUpProposed = null }: { warmedUpProposed?: boolean | null }) {
+  const proposal =
+    warmedUpProposed === null
+      ? ""
+      : ` The session's record says ${warmedUpProposed ? "yes" : "no"}; saving confirms it, so correct it if it was otherwise.`;
   return (
     <Fieldset legend="How it happened">
       <ChoiceButtons name="onset" legend="Onset" optional choices={choicesOf(onsetWords)} />
@@ -103,7 +108,7 @@ export function HowItHappened() {
       <ChoiceButtons
         name="warmedUp"
         legend="Had this athlete warmed up?"
-        help="This athlete, not the team: a late arrival, or who is hurt during the warm-up, had not."
+        help={`This athlete, not the team: a late arrival, or who is hurt during the warm-up, had not.${proposal}`}
         optional
         layout="segments"
         choices={yesNo}

@@ -1,3 +1,4 @@
+import { addDays } from "~/platform/clock";
 import { notFound } from "~/platform/errors";
 import type { Scope, Tx } from "~db/client.server";
 import { findSeasons, findTeamsOf } from "./viewing.queries.server";
@@ -34,6 +35,16 @@ export async function resolveViewing(tx: Tx, url: URL): Promise<Viewing> {
   const team = teamId ? ownTeams.find(({ id }) => id === teamId) : null;
   if (season === undefined || team === undefined) throw notFound("That season or team");
   return { seasons: seasonRows, season, teams: ownTeams, team };
+}
+
+/**
+ * The last day of what lists show under the season of a viewing: what falls between two seasons stands with the one
+ * before, so that nothing is in no list. Null: no end. Rates keep to the season's own days.
+ */
+export function lastListedDay({ season, seasons }: Viewing): string | null {
+  const later = seasons.map(({ startsOn }) => startsOn).filter((day) => season && day > season.startsOn);
+  const next = later.sort()[0];
+  return next ? addDays(next, -1) : null;
 }
 
 /** Team ids of a viewing, for queries: the one chosen, or all that the person covers. */

@@ -1,12 +1,12 @@
 import { audit } from "~/platform/audit.server";
-import { instantOf } from "~/platform/clock";
+import { addDays, instantOf } from "~/platform/clock";
 import { DomainError, forbidden, notFound } from "~/platform/errors";
 import { once } from "~/platform/operations.server";
 import { read, type Tx, write } from "~db/client.server";
 import { findDisplayNames } from "../accounts/people.server";
 import { may } from "../accounts/permissions";
 import type { MemberScope } from "../accounts/scope.server";
-import { resolveViewing } from "../accounts/viewing.server";
+import { lastListedDay, resolveViewing } from "../accounts/viewing.server";
 import { openContent, toldNow } from "./composing.server";
 import { noticesSentence, noticeWay } from "./notice-state";
 import {
@@ -72,9 +72,15 @@ async function linesOf(tx: Tx, rows: readonly NoticeRow[]): Promise<NoticeLine[]
 export function listNotices(scope: MemberScope, url: URL, show: NoticeFilter) {
   if (!may(scope.roles, "notices.read")) throw forbidden();
   return read(scope, async (tx) => {
-    const { season, team } = await resolveViewing(tx, url);
-    const since = season ? instantOf(scope.timeZone, season.startsOn, "00:00") : new Date(0);
-    const rows = await findNotices(tx, { since, ...(team ? { teamIds: [team.id] } : {}) });
+    const viewing = await resolveViewing(tx, url);
+    const { season, team } = viewing;
+    const lastDay = lastListedDay(viewing);
+    const startOf = (day: string) => instantOf(scope.timeZone, day, "00:00");
+    const rows = await findNotices(tx, {
+      since: season ? startOf(season.startsOn) : new Date(0),
+      ...(lastDay ? { until: startOf(addDays(lastDay, 1)) } : {}),
+      ...(team ? { teamIds: [team.id] } : {}),
+    });
     const lines = await linesOf(tx, rows);
     const sentence = noticesSentence(lines);
     const shown = {

@@ -97,7 +97,7 @@ async function clinicalTasks(tx: Tx, base: string, since: string): Promise<TaskG
         to: `${base}/injuries/${row.injuryId}`,
         step: "Update",
       })),
-      `${base}/injuries?open=open`,
+      `${base}/injuries?state=open`,
     ),
     ...groupOf(
       "gaps",

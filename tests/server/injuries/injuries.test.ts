@@ -36,7 +36,7 @@ import { openEditForm, readInjury } from "~/features/injuries/read-injury.server
 import { addDays } from "~/platform/clock";
 import { formatDay } from "~/platform/days";
 import { read, type Scope } from "~db/client.server";
-import { maintenance, makeAthlete, makeClub, makeInjury, makeSession } from "../../harness";
+import { maintenance, makeAthlete, makeClub, makeInjury, makeSeason, makeSession } from "../../harness";
 
 type Club = Awaited<ReturnType<typeof makeClub>>;
 let club: Club;
@@ -640,6 +640,40 @@ describe("lists", () => {
     const csv = await exportInjuries(scope, url("?area=ankle"));
     expect(csv).toContain("'=cmd Test");
     expect(csv.trim().split("\r\n")).toHaveLength(2);
+  });
+
+  it("is of one athlete and of every season where the address names one", async () => {
+    const { trainer } = club.scopes;
+    const [athlete, another] = [await freshAthlete(), await freshAthlete()];
+    const years = addDays(trainer.today, -2000);
+    const old = await logInjury(trainer, logOf(athlete.id, { day: day(years) }));
+    const fresh = await logInjury(trainer, logOf(athlete.id));
+    await logInjury(trainer, logOf(another.id));
+    const list = await listInjuries(trainer, url(`?athlete=${athlete.id}`));
+    expect(list.lines.map(({ id }) => id)).toEqual([fresh.id, old.id]);
+    expect(list).toMatchObject({ athlete: `${athlete.givenName} ${athlete.familyName}`, season: null });
+    const csv = await exportInjuries(trainer, url(`?athlete=${athlete.id}`));
+    expect(csv.trim().split("\r\n")).toHaveLength(3);
+    await expect(listInjuries(trainer, url(`?athlete=${club.otherAthlete.id}`))).rejects.toMatchObject({
+      code: "not_found",
+    });
+  });
+
+  it("keeps an injury after the season's last day in the list of that season", async () => {
+    const summer = await makeClub();
+    const { trainer } = summer.scopes;
+    const { startsOn } = summer.season;
+    await maintenance()`update seasons set ends_on = ${addDays(trainer.today, -1)} where id = ${summer.season.id}`;
+    const { id } = await makeInjury(summer.staff, { athleteId: summer.athlete.id, onsetDay: trainer.today });
+    const ids = async (season: string) =>
+      (await listInjuries(trainer, url(`?season=${season}`))).lines.map((line) => line.id);
+    expect(await ids(summer.season.id)).toEqual([id]);
+    const before = {
+      name: "The one before",
+      startsOn: addDays(startsOn, -300),
+      endsOn: addDays(startsOn, -30),
+    };
+    expect(await ids((await makeSeason(summer.staff, before)).id)).toEqual([]);
   });
 
   it("gives today's injuries, the gaps, and the open ones nobody touched for 14 days", async () => {

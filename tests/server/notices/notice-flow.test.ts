@@ -11,7 +11,7 @@ import {
 import { sendNotices } from "~/features/notices/writing.server";
 import { formatDay } from "~/platform/days";
 import { read } from "~db/client.server";
-import { maintenance, openMailbox } from "../../harness";
+import { maintenance, makeSeason, openMailbox } from "../../harness";
 import { bodyAreas, clinicalWords, findWords } from "../mail/clinical-words";
 import { arrives, browserAt, deliveriesOf, formOf, mailTo, makeFamily, send, until } from "./family";
 
@@ -213,6 +213,20 @@ describe("from the injury to the family", () => {
     expect((await browser.get()).state).toBe("open");
     const { inbox } = await openMailbox();
     expect(inbox.list(family.first.email ?? "")).toHaveLength(2);
+  });
+
+  it("stands under the season it was written in and under no earlier one", async () => {
+    const family = await makeFamily();
+    await send(family);
+    const { scopes } = family.club;
+    const earlier = await makeSeason(family.club.staff, {
+      name: "Years ago",
+      startsOn: "2015-09-01",
+      endsOn: "2016-06-30",
+    });
+    const inSeason = (id: string) => listNotices(scopes.lead, new URL(`${url.href}?season=${id}`), "all");
+    expect((await inSeason(family.club.season.id)).lines).toHaveLength(2);
+    expect((await inSeason(earlier.id)).lines).toEqual([]);
   });
 
   it("is closed to coaches, administrators and trainers of other teams", async () => {

@@ -6,7 +6,6 @@ import { env } from "~/platform/env.server";
 import { log } from "~/platform/log.server";
 import { account, attempt, session, user, verification } from "~db/schema/auth";
 import { sendIdentityMail } from "./identity-mail.server";
-import { isCommonPassword } from "./passwords.server";
 
 export const passwordLength = { min: 12, max: 128 };
 
@@ -95,5 +94,3 @@ export async function currentPerson(request: Request): Promise<Person | undefine
     sessionId: found.session.id,
   };
 }
-
-export { isCommonPassword };

@@ -65,6 +65,9 @@ export const newAthleteSchema = athleteSchema
       context.addIssue({ code: "custom", path: ["fromDay"], message: "Enter the day of joining the team." });
   });
 
+/** The id under which a form is carried out once, however often it arrives. */
+export const operationSchema = z.uuid("This form is not complete. Open it again.");
+
 export const joinTeamSchema = z
   .object({ team: z.uuid("Choose a team."), fromDay: requiredDay, toDay: optionalDay })
   .refine(({ fromDay, toDay }) => !toDay || toDay >= fromDay, {

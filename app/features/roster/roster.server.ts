@@ -4,6 +4,7 @@ import { audit } from "~/platform/audit.server";
 import { sealer } from "~/platform/crypto/keys.server";
 import { DomainError, forbidden, notFound } from "~/platform/errors";
 import { foldText } from "~/platform/fold-text";
+import { once } from "~/platform/operations.server";
 import { read, type Tx, write } from "~db/client.server";
 import { may, type Permission } from "../accounts/permissions";
 import type { MemberScope } from "../accounts/scope.server";
@@ -143,7 +144,16 @@ async function refuseTakenNumber(tx: Tx, number: string | null, ownId?: string) 
 const nameKeyOf = (input: { givenName: string; familyName: string }) =>
   foldText(`${input.givenName} ${input.familyName}`);
 
-export function addAthlete(scope: MemberScope, input: z.output<typeof newAthleteSchema>) {
+/**
+ * Adds an athlete, once per operation: a second one of the same name would share the first one's exposure and injuries.
+ * @param operation the form's id
+ * @returns the athlete's id, the same on a replay
+ */
+export function addAthlete(
+  scope: MemberScope,
+  input: z.output<typeof newAthleteSchema>,
+  operation: string = randomUUID(),
+): Promise<string> {
   need(scope, "roster.write");
   const { team, fromDay, ...person } = input;
   if (team && !coversTeam(scope, team)) throw notFound("That team");
@@ -151,14 +161,17 @@ export function addAthlete(scope: MemberScope, input: z.output<typeof newAthlete
     throw new DomainError("invalid", "", {
       fields: { team: ["Choose one of your teams: you could not see a visitor without one afterwards."] },
     });
-  return write(scope, async (tx) => {
-    await refuseTakenNumber(tx, person.number);
-    const id = randomUUID();
-    await insertAthlete(tx, { id, ...person, nameKey: nameKeyOf(person) });
-    if (team && fromDay) await insertEntry(tx, { id: randomUUID(), athleteId: id, teamId: team, fromDay });
-    await audit(tx, { action: "athlete.add", subjectId: id, athleteId: id });
-    return id;
-  });
+  return write(scope, (tx) =>
+    once(tx, operation, { athlete: input }, async () => {
+      await refuseTakenNumber(tx, person.number);
+      const fresh = randomUUID();
+      await insertAthlete(tx, { id: fresh, ...person, nameKey: nameKeyOf(person) });
+      if (team && fromDay)
+        await insertEntry(tx, { id: randomUUID(), athleteId: fresh, teamId: team, fromDay });
+      await audit(tx, { action: "athlete.add", subjectId: fresh, athleteId: fresh });
+      return { id: fresh };
+    }),
+  ).then(({ id }) => id);
 }
 
 const changedMeanwhile = () =>
@@ -234,19 +247,30 @@ function splitGuardian(input: GuardianInput) {
   };
 }
 
-export function addGuardian(scope: MemberScope, athleteId: string, input: GuardianInput) {
+/**
+ * Adds a guardian, once per operation: whoever stands there twice is told twice.
+ * @param operation the form's id
+ */
+export function addGuardian(
+  scope: MemberScope,
+  athleteId: string,
+  input: GuardianInput,
+  operation: string = randomUUID(),
+): Promise<string> {
   need(scope, "roster.write");
-  return write(scope, async (tx) => {
-    await requireAthlete(tx, athleteId);
-    const { seal } = await sealer(tx);
-    const guardianId = randomUUID();
-    const { person, bond } = splitGuardian(input);
-    await insertGuardian(tx, { id: guardianId, ...person });
-    const legalLimits = seal(limitsPlace(athleteId, guardianId, 1), input.legalLimits);
-    await insertGuardianship(tx, { athleteId, guardianId, ...bond, legalLimits });
-    await audit(tx, { action: "guardian.add", subjectId: guardianId, athleteId });
-    return guardianId;
-  });
+  return write(scope, (tx) =>
+    once(tx, operation, { guardian: input, athleteId }, async () => {
+      await requireAthlete(tx, athleteId);
+      const { seal } = await sealer(tx);
+      const guardianId = randomUUID();
+      const { person, bond } = splitGuardian(input);
+      await insertGuardian(tx, { id: guardianId, ...person });
+      const legalLimits = seal(limitsPlace(athleteId, guardianId, 1), input.legalLimits);
+      await insertGuardianship(tx, { athleteId, guardianId, ...bond, legalLimits });
+      await audit(tx, { action: "guardian.add", subjectId: guardianId, athleteId });
+      return { id: guardianId };
+    }),
+  ).then(({ id }) => id);
 }
 
 /** What a form for editing a guardian was opened with: the versions of the contact and of the bond. */

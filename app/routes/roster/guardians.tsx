@@ -1,7 +1,8 @@
+import { randomUUID } from "node:crypto";
 import { redirect, useSearchParams } from "react-router";
 import { formObject } from "~/features/accounts/accounts.schema";
 import { GuardianFields } from "~/features/roster/components/guardian-fields";
-import { guardianSchema } from "~/features/roster/roster.schema";
+import { guardianSchema, operationSchema } from "~/features/roster/roster.schema";
 import { addGuardian, editGuardian, endGuardianship, readGuardians } from "~/features/roster/roster.server";
 import { relationWords } from "~/features/vocabulary";
 import { memberAction, memberLoader } from "~/middleware/handlers.server";
@@ -13,6 +14,7 @@ export const meta = () => [{ title: "Guardians - Haleside" }];
 export const loader = memberLoader(async ({ scope, id }) => ({
   ...(await readGuardians(scope, id("athlete"))),
   base: `/${scope.slug}/roster`,
+  operation: randomUUID(),
 }));
 
 export const action = memberAction(async ({ scope, form, id }) => {
@@ -23,12 +25,15 @@ export const action = memberAction(async ({ scope, form, id }) => {
   else if (intent === "edit") {
     const seen = String(form.get("version") ?? "");
     await editGuardian(scope, athleteId, guardianId, seen, guardianSchema.parse(formObject(form)));
-  } else await addGuardian(scope, athleteId, guardianSchema.parse(formObject(form)));
+  } else {
+    const operation = operationSchema.parse(form.get("operation"));
+    await addGuardian(scope, athleteId, guardianSchema.parse(formObject(form)), operation);
+  }
   return redirect(`/${scope.slug}/roster/${athleteId}/guardians?done=1`);
 });
 
 export default function Guardians({ loaderData, actionData }: Route.ComponentProps) {
-  const { athlete, guardians, base } = loaderData;
+  const { athlete, guardians, base, operation } = loaderData;
   const [params] = useSearchParams();
   const adding = actionData && !actionData.values.guardian ? actionData : undefined;
   return (
@@ -79,6 +84,7 @@ export default function Guardians({ loaderData, actionData }: Route.ComponentPro
       })}
       <Region heading="Add a guardian">
         <Form {...(adding ?? {})} idPrefix="new">
+          <input type="hidden" name="operation" value={operation} />
           <GuardianFields values={{ phoneOrder: guardians.length + 1 }} />
           <Button look="primary" name="intent" value="add">
             Add the guardian

@@ -1,8 +1,9 @@
+import { randomUUID } from "node:crypto";
 import { redirect } from "react-router";
 import { formObject } from "~/features/accounts/accounts.schema";
 import { resolveViewing } from "~/features/accounts/viewing.server";
 import { AthleteFields } from "~/features/roster/components/athlete-fields";
-import { newAthleteSchema } from "~/features/roster/roster.schema";
+import { newAthleteSchema, operationSchema } from "~/features/roster/roster.schema";
 import { addAthlete } from "~/features/roster/roster.server";
 import { memberAction, memberLoader } from "~/middleware/handlers.server";
 import { formatDay } from "~/platform/days";
@@ -14,20 +15,28 @@ export const meta = () => [{ title: "Add an athlete - Haleside" }];
 
 export const loader = memberLoader(async ({ scope, url }) => {
   const viewing = await read(scope, (tx) => resolveViewing(tx, url));
-  return { base: `/${scope.slug}/roster`, teams: viewing.teams, team: viewing.team, today: scope.today };
+  return {
+    base: `/${scope.slug}/roster`,
+    teams: viewing.teams,
+    team: viewing.team,
+    today: scope.today,
+    operation: randomUUID(),
+  };
 });
 
 export const action = memberAction(async ({ scope, form }) => {
-  const id = await addAthlete(scope, newAthleteSchema.parse(formObject(form)));
+  const operation = operationSchema.parse(form.get("operation"));
+  const id = await addAthlete(scope, newAthleteSchema.parse(formObject(form)), operation);
   return redirect(`/${scope.slug}/roster/${id}`);
 });
 
 export default function NewAthlete({ loaderData, actionData }: Route.ComponentProps) {
-  const { base, teams, team, today } = loaderData;
+  const { base, teams, team, today, operation } = loaderData;
   return (
     <Page width="form">
       <PageHeading>Add an athlete</PageHeading>
       <Form {...(actionData ?? {})}>
+        <input type="hidden" name="operation" value={operation} />
         <AthleteFields />
         <Field name="team" label="Team" optional help="Leave empty for a visitor or a try-out.">
           <Select

@@ -55,6 +55,20 @@ describe("adding an athlete", () => {
     expect(entries).toMatchObject([{ teamId: club.team.id, fromDay: "2026-09-01", toDay: null }]);
   });
 
+  it("adds one athlete, and one guardian, however often the form is pressed", async () => {
+    const [first, second] = [randomUUID(), randomUUID()];
+    const input = typedNew({ givenName: "Pressed", familyName: "Twice" });
+    const press = () => addAthlete(club.scopes.trainer, input, first);
+    const [id, again] = await Promise.all([press(), press()]);
+    expect(again).toBe(id);
+    const rows = await maintenance()`select 1 from athletes where given_name = 'Pressed'`;
+    expect(rows).toHaveLength(1);
+    const guardian = guardianSchema.parse({ name: "Ottilie Ashdown", phone: "+44 1632 960155" });
+    const add = () => addGuardian(club.scopes.trainer, id, guardian, second);
+    await Promise.all([add(), add()]);
+    expect((await readGuardians(club.scopes.trainer, id)).guardians).toHaveLength(1);
+  });
+
   it("names who has a number already, and stores nothing", async () => {
     await addAthlete(club.scopes.trainer, typedNew({ givenName: "Holder", number: "0042" }));
     const before = await maintenance()`select count(*) from athletes`;

@@ -125,6 +125,12 @@ export function findNextSessions(tx: Tx, day: string, limit: number) {
     .limit(limit);
 }
 
+/** Lets the people who add a session of one team, day and kind go one after the other, until their transactions end. */
+export async function takeTurnToAdd(tx: Tx, like: { teamId: string; day: string; kind: string }) {
+  const place = `session:${like.teamId}:${like.day}:${like.kind}`;
+  await tx.execute(sql`select pg_advisory_xact_lock(hashtextextended(${place}, 0))`);
+}
+
 /** A session of the same team, day and kind that is not cancelled: perhaps the one another phone added. */
 export async function findSameSession(tx: Tx, like: { teamId: string; day: string; kind: string }) {
   const [row] = await selectSessions(tx)

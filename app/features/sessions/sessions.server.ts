@@ -23,6 +23,7 @@ import {
   lockSession,
   type SessionChange,
   type SessionRow,
+  takeTurnToAdd,
   updateSession,
 } from "./sessions.queries.server";
 import type { NewSessionInput } from "./sessions.schema";
@@ -144,6 +145,7 @@ export async function insertNewSession(
   const teams = await findOwnTeams(tx, tx.scope);
   if (!teams.some((team) => team.id === input.teamId)) throw notFound("That team");
   await requireVenue(tx, input.venueId);
+  await takeTurnToAdd(tx, input);
   const same = another ? undefined : await findSameSession(tx, input);
   if (same)
     throw new DomainError(

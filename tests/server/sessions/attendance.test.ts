@@ -315,6 +315,25 @@ describe("own teams only", () => {
     expect(next).toMatchObject({ teamId: club.team.id, day: club.staff.today });
   });
 
+  it("is added once by two people who press at the same moment", async () => {
+    const input = {
+      teamId: club.team.id,
+      day: addDays(club.scopes.coach.today, 9),
+      startTime: "18:00",
+      kind: "training" as const,
+      plannedMinutes: 90,
+      surface: null,
+      venueId: null,
+    };
+    const both = await Promise.allSettled(
+      [club.scopes.coach, club.scopes.trainer].map((scope) => addSession(scope, input)),
+    );
+    expect(both.map(({ status }) => status).sort()).toEqual(["fulfilled", "rejected"]);
+    const rows = await maintenance()`
+      select 1 from sessions where team_id = ${club.team.id} and day = ${input.day}`;
+    expect(rows).toHaveLength(1);
+  });
+
   it("keeps a guest of another team in the audit", async () => {
     const session = await planned();
     const guest = club.otherAthlete.id;

@@ -83,7 +83,7 @@ export function AttendanceRows({ athletes }: { athletes: readonly ShownAthlete[]
       </ul>
       {unavailable.length > 0 ? (
         <>
-          <h3 className="mt-6 font-medium">Unavailable</h3>
+          <h2 className="mt-6 text-base font-medium">Unavailable</h2>
           {unavailable.some(({ part }) => part?.presence === "took_part") ? (
             <Note kind="attention">
               An unavailable athlete is entered as taking part. If that is right, tell the athletic trainer

@@ -13,6 +13,7 @@ import {
   findNotice,
   findSender,
   findStanding,
+  isWithdrawn,
   markEmailStopped,
 } from "./notices.queries.server";
 import { type Told, whoIsTold } from "./recipients";
@@ -44,8 +45,10 @@ export async function openContent(
 /** Whether this notice's guardian may be told at this moment, and how. Needs a scope that reads the roster. */
 export async function toldNow(
   tx: Tx,
-  notice: { athleteId: string; guardianId: string },
+  notice: { injuryId: string; athleteId: string; guardianId: string },
 ): Promise<{ told: Told; email: string | null }> {
+  if (await isWithdrawn(tx, notice.injuryId))
+    return { told: { way: "nobody", why: "withdrawn" }, email: null };
   const [guardian] = await findGuardians(tx, notice.athleteId, notice.guardianId);
   if (!guardian) return { told: { way: "nobody", why: "ended" }, email: null };
   const told = whoIsTold(await findStanding(tx, notice.athleteId), guardian, tx.scope.today);

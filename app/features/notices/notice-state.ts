@@ -130,7 +130,9 @@ function mailState(delivery: DeliveryFact, facts: NoticeFactsOfState, now: Date,
       };
     case "stopped": {
       // Nobody is to be phoned either where the law or a hold says so.
-      const nobody = ["on_hold", "of_age", "ended", "limited", "not_to_be_told"].includes(lastError ?? "");
+      const nobody = ["withdrawn", "on_hold", "of_age", "ended", "limited", "not_to_be_told"].includes(
+        lastError ?? "",
+      );
       return {
         code: "stopped",
         at: createdAt,

@@ -67,6 +67,23 @@ export async function findHow(tx: Tx, injuryId: string) {
   return row;
 }
 
+/** Whether the injury was recorded in error: perhaps of another child altogether. */
+export async function isWithdrawn(tx: Tx, injuryId: string) {
+  const rows = await tx
+    .select({ withdrawn: injuryRevisions.withdrawn })
+    .from(injuries)
+    .innerJoin(
+      injuryRevisions,
+      and(
+        eq(injuryRevisions.organisationId, injuries.organisationId),
+        eq(injuryRevisions.injuryId, injuries.id),
+        eq(injuryRevisions.version, injuries.version),
+      ),
+    )
+    .where(and(eq(injuries.organisationId, org(tx)), eq(injuries.id, injuryId)));
+  return rows.some(({ withdrawn }) => withdrawn);
+}
+
 /** Holds an injury for this transaction, so that its notices are written by one person at a time. */
 export function lockInjury(tx: Tx, injuryId: string) {
   return tx

@@ -26,8 +26,8 @@ export type GuardianStanding = {
   emailStoppedAt: Date | null;
 };
 
-/** Why nobody may tell this guardian anything. */
-export type Refusal = "on_hold" | "of_age" | "ended" | "limited" | "not_to_be_told";
+/** Why nobody may tell this guardian anything. "withdrawn" is of the injury: it was recorded in error. */
+export type Refusal = "withdrawn" | "on_hold" | "of_age" | "ended" | "limited" | "not_to_be_told";
 /** Why this guardian is phoned and not written to. */
 export type PhoneReason = "no_birth_date" | "no_address" | "email_not_wanted" | "email_stopped";
 export type StopCode = Refusal | PhoneReason;
@@ -51,6 +51,7 @@ export function whoIsTold(athlete: AthleteStanding, guardian: GuardianStanding, 
 }
 
 const stopCodes: Record<StopCode, true> = {
+  withdrawn: true,
   on_hold: true,
   of_age: true,
   ended: true,
@@ -66,6 +67,8 @@ export const isStopCode = (code: string): code is StopCode => Object.hasOwn(stop
 /** Why a guardian is not written to, for the clinical roles. Never shown to a guardian: it would speak of another. */
 export function explainStop(code: StopCode, names: { athlete: string; ownDecisionAge: number }): string {
   switch (code) {
+    case "withdrawn":
+      return "The injury was recorded in error and withdrawn. Nothing more is sent about it.";
     case "on_hold":
       return `There is a safeguarding hold on ${names.athlete}. Nobody is told until a clinical role lifts it.`;
     case "of_age":

@@ -1,4 +1,5 @@
 import { describe, expect, it } from "vitest";
+import { withdrawInjury } from "~/features/injuries/edit-injury.server";
 import { composeFreshLinkDelivery, composeNoticeDelivery } from "~/features/notices/composing.server";
 import { listNoticesNeedingAction, readNotice } from "~/features/notices/notices.server";
 import { deliver, sweepOutbox } from "~/features/outbox/outbox.server";
@@ -206,6 +207,11 @@ describe("what is read at the moment of sending", () => {
       "on_hold",
       (family: Family) => maintenance()`insert into safeguarding_holds (organisation_id, id, athlete_id)
         values (${family.club.organisation.id}, ${crypto.randomUUID()}, ${family.athlete.id})`,
+    ],
+    [
+      "withdrawn",
+      ({ trainer, injury }: Family) =>
+        withdrawInjury(trainer, injury.id, { version: 1, reason: "wrong_athlete" }),
     ],
     ["not_to_be_told", setBond("may_be_told = false")],
     ["limited", setBond("may_be_told = false, legal_limits = '\\x01'")],

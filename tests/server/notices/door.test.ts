@@ -1,4 +1,5 @@
 import { beforeAll, describe, expect, it } from "vitest";
+import { withdrawInjury } from "~/features/injuries/edit-injury.server";
 import { composeFreshLinkDelivery, composeNoticeDelivery } from "~/features/notices/composing.server";
 import { readNotice } from "~/features/notices/notices.server";
 import { deliver } from "~/features/outbox/outbox.server";
@@ -186,6 +187,16 @@ describe("the family's door", () => {
     expect(Object.keys(await browser.get()).sort()).toEqual(["hours", "organisation", "phone", "state"]);
     expect((await browser.post({ intent: "acknowledge" })).status).toBe(409);
     expect((await browser.answer(family.dateOfBirth)).status).toBe(423);
+  });
+
+  it("closes a page already sent when the injury turns out to be of another child", async () => {
+    const { browser, family, noticeId } = await atTheDoor();
+    await browser.answer(family.dateOfBirth);
+    await withdrawInjury(family.trainer, family.injury.id, { version: 1, reason: "wrong_athlete" });
+    expect(Object.keys(await browser.get()).sort()).toEqual(["hours", "organisation", "phone", "state"]);
+    expect((await browser.answer(family.dateOfBirth)).status).toBe(423);
+    const page = await readNotice(family.trainer, noticeId);
+    expect(page).toMatchObject({ mayResend: false, whyNot: expect.stringContaining("recorded in error") });
   });
 
   it("stops e-mails of this guardian alone, and the clinical roles see it", async () => {

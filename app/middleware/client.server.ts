@@ -6,7 +6,14 @@ export function clientOf(request: Request, context: Readonly<RouterContextProvid
   return { request, clientAddress: context.get(requestContext).clientAddress };
 }
 
-/** A path of ours to go back to after signing in; anything else becomes the first page. */
+const ours = "http://ours.example.org";
+
+/**
+ * A path of ours to go back to after signing in; anything else becomes the first page. Read as a browser reads it,
+ * which drops tabs and line breaks: what then begins with two slashes names another site.
+ */
 export function safeNext(next: string | null | undefined) {
-  return next?.startsWith("/") && !next.startsWith("//") && !next.includes("\\") ? next : "/";
+  if (!next?.startsWith("/") || !URL.canParse(next, ours)) return "/";
+  const { origin, pathname, search } = new URL(next, ours);
+  return origin === ours && !pathname.startsWith("//") ? pathname + search : "/";
 }

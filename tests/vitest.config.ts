@@ -19,6 +19,8 @@ export default defineConfig({
         extends: true,
         test: {
           name: "unit",
+          // Properties run hundreds of cases; on a busy machine five seconds are not many.
+          testTimeout: 60_000,
           include: ["tests/**/*.test.{ts,tsx}"],
           exclude: ["tests/server/**", "tests/browser/**", "node_modules/**"],
         },

@@ -39,10 +39,13 @@ export function writeCsv(rows: readonly (readonly CsvValue[])[], options: CsvOpt
   const newline = options.newline ?? "\r\n";
   const start = options.bom ? Papa.BYTE_ORDER_MARK : "";
   if (rows.length === 0) return start;
+  // A lone empty cell would leave an empty line, which readers pass over: its quotation marks keep the row.
+  const lone = rows.every((row) => row.length === 1);
+  const needsQuotes = (value: unknown) => /[,;\t|"\r\n]/u.test(String(value)) || (lone && value === "");
   const text = Papa.unparse(
     rows.map((row) => row.map(escapeCsvCell)),
     // A semicolon inside a comma file would split into a second cell in half of Europe: quote it as well.
-    { delimiter: options.delimiter ?? ",", newline, quotes: (value) => /[,;\t|"\r\n]/u.test(String(value)) },
+    { delimiter: options.delimiter ?? ",", newline, quotes: needsQuotes },
   );
   return `${start}${text}${newline}`;
 }

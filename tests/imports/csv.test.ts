@@ -61,6 +61,11 @@ describe("files of an export", () => {
     expect(writeCsv([["x;=1+1", "a\tb", "c|d"]])).toBe('"x;=1+1","a\tb","c|d"\r\n');
   });
 
+  it("keep a row whose only cell is empty", () => {
+    expect(writeCsv([[""]])).toBe('""\r\n');
+    expect(writeCsv([["a"], [null]])).toBe('a\r\n""\r\n');
+  });
+
   it("are read back identical", () => {
     const table = fc.integer({ min: 1, max: 5 }).chain((width) =>
       fc.array(fc.array(fc.string({ unit: "grapheme" }), { minLength: width, maxLength: width }), {

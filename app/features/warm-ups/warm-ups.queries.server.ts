@@ -167,7 +167,8 @@ export async function findProgramme(tx: Tx, id: string, version: number) {
 
 /**
  * Sessions that were held, with their warm-up and their participations. Held: confirmed as held or abandoned, or
- * planned for a day that has come and with a warm-up done, since a warm-up shows that it took place.
+ * planned for a day that has come and with a warm-up record. Whether it was done or skipped, somebody was there to say so;
+ * to count the done ones alone would raise the share of a team that confirms nothing.
  */
 export async function findHeldSessions(
   tx: Tx,
@@ -206,7 +207,7 @@ export async function findHeldSessions(
         inArray(sessions.teamId, [...teamIds]),
         sql`${sessions.day} between ${from}::date and ${until}::date`,
         sql`(${sessions.state} in ('held', 'abandoned')
-          or ${sessions.state} = 'planned' and cardinality(${warmUps.blocks}) > 0)`,
+          or ${sessions.state} = 'planned' and ${warmUps.outcome} is not null)`,
       ),
     )
     .orderBy(asc(sessions.day), asc(sessions.startTime));

@@ -81,7 +81,7 @@ const definitions = [
   "Weekly dose: warm-ups with at least one block / weeks in which the team held a session.",
   "Completeness: mean share of the five blocks, over the warm-ups done in full or in part.",
   "Athlete dose: warmed-up participations / participations, where attendance is recorded.",
-  "Intervals: 95 %, Wilson for shares, exact Poisson for the weekly dose. Sessions not confirmed as held count only once a warm-up shows that they took place.",
+  "Intervals: 95 %, Wilson for shares, exact Poisson for the weekly dose. Sessions not confirmed as held count only once their warm-up is recorded as done or skipped.",
 ];
 
 export default function WarmUps({ loaderData }: Route.ComponentProps) {

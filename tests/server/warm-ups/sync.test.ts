@@ -302,6 +302,9 @@ describe("compliance by team", () => {
     await session(6, { state: "planned", minutes: {} });
     const shown = await session(7, { state: "planned", minutes: {} });
     await makeWarmUp(own.staff, { sessionId: shown.id });
+    const missed = await session(8, { state: "planned", minutes: {} });
+    const skip = { outcome: "skipped" as const, blocks: [], skipReason: "forgot" as const };
+    await makeWarmUp(own.staff, { sessionId: missed.id, ...skip });
     await makeSession(own.staff, { teamId: own.otherTeam.id, day: day(1) });
 
     const range = {
@@ -312,18 +315,18 @@ describe("compliance by team", () => {
     const [team, ...others] = await read(own.scopes.coach, (tx) => complianceByTeam(tx, range));
     expect(others).toEqual([]);
     expect(team?.compliance).toMatchObject({
-      sessions: 5,
-      recorded: 4,
+      sessions: 6,
+      recorded: 5,
       notRecorded: 1,
-      ofRecorded: { successes: 2, trials: 4 },
-      ofHeld: { successes: 2, trials: 5 },
+      ofRecorded: { successes: 2, trials: 5 },
+      ofHeld: { successes: 2, trials: 6 },
       completeness: { warmUps: 3 },
       athleteDose: { successes: 1, trials: 4 },
-      skipReasons: { weather: 1 },
+      skipReasons: { weather: 1, forgot: 1 },
     });
     const all = await read(own.scopes.lead, (tx) => complianceByTeam(tx, range));
     expect(all.map(({ compliance }) => compliance.sessions)).toEqual(
-      all.map(({ teamId }) => (teamId === own.team.id ? 5 : 1)),
+      all.map(({ teamId }) => (teamId === own.team.id ? 6 : 1)),
     );
   });
 });

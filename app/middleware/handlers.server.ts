@@ -55,13 +55,24 @@ function refusal(error: unknown, form: FormData) {
   return data({ errors: { ...form_, fields }, values }, { status: fault.status });
 }
 
+/** A form's fields. What is no form at all is the sender's fault, and answered as such. */
+async function readForm(request: Request): Promise<FormData> {
+  try {
+    return await request.formData();
+  } catch {
+    throw errorResponse(
+      new DomainError("unsupported", "This was not sent as a form. Go back and send it again."),
+    );
+  }
+}
+
 /**
  * A page's action. A zod error or a domain error comes back as `{ errors, values }` with its status, so that nothing
  * typed is lost; the page hands both to `Form`.
  */
 export function memberAction<T>(run: (args: MemberArgs & { form: FormData }) => Promise<T>) {
   return async (args: ActionFunctionArgs) => {
-    const form = await args.request.formData();
+    const form = await readForm(args.request);
     try {
       return await run({ ...memberArgs(args), form });
     } catch (error) {
@@ -74,7 +85,7 @@ export function memberAction<T>(run: (args: MemberArgs & { form: FormData }) => 
 
 /** Errors of a form outside an organisation (sign-in, invitation), answered the same way. */
 export async function answerForm<T>(request: Request, run: (form: FormData) => Promise<T>) {
-  const form = await request.formData();
+  const form = await readForm(request);
   try {
     return await run(form);
   } catch (error) {

@@ -120,7 +120,7 @@ export function readAthlete(scope: MemberScope, url: URL, id: string) {
             limited: legalLimits !== null,
           }))
         : [],
-      exposure: season ? await sumExposure(tx, id, season.startsOn, until) : null,
+      exposure: contacts && season ? await sumExposure(tx, id, season.startsOn, until) : null,
       season,
       teams,
       state: (await stateOfDay(tx, [id], scope.today)).get(id) ?? null,
@@ -201,7 +201,8 @@ export function archiveAthlete(scope: MemberScope, id: string, archived: boolean
   need(scope, "roster.write");
   return write(scope, async (tx) => {
     const athlete = await requireAthlete(tx, id);
-    await updateAthlete(tx, id, athlete.version, { archivedAt: archived ? new Date() : null });
+    if (!(await updateAthlete(tx, id, athlete.version, { archivedAt: archived ? new Date() : null })))
+      throw changedMeanwhile();
     await audit(tx, {
       action: archived ? "athlete.archive" : "athlete.restore",
       subjectId: id,

@@ -55,7 +55,7 @@ await shoot(trainer, "today", 1000);
 
 const coach = await open("coach", phone);
 await coach.goto(`${club}/sessions`);
-await coach.locator('a[href*="/sessions/"]').filter({ hasText: /./ }).first().click();
+await coach.locator('a[href*="/sessions/"]:not([href$="/new"])').first().click();
 await coach.waitForURL(/sessions\/[0-9a-f-]{36}/);
 await coach.goto(`${new URL(coach.url()).pathname.replace(/\/$/, "")}/warm-up`);
 await shoot(coach, "warm-up", 1000);

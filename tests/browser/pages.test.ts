@@ -72,7 +72,7 @@ async function fillClub({ staff, team, athlete }: Club) {
     unavailableFrom: staff.today,
   });
   await makeInjury(staff, { athleteId: athlete.id, contact: null, movement: null, tissue: null });
-  await makeCoachReport(staff, { athleteId: long.id, note: "Heard a pop.", suspectedConcussion: "yes" });
+  await makeCoachReport(staff, { athleteId: long.id, note: "Heard a pop.", suspectedConcussion: true });
   const minutes = { [athlete.id]: 90, [modified.id]: 30, [long.id]: 0 };
   const session = await makeSession(staff, { teamId: team.id, minutes, venueId: venue.id, kind: "match" });
   await makeWarmUp(staff, { sessionId: session.id, athleteIds: [athlete.id] });

@@ -62,6 +62,16 @@ await shoot(coach, "warm-up", 1000);
 
 const touchline = await open("trainer", phone);
 await touchline.goto(`${club}/injuries/new`);
+const search = touchline.getByRole("combobox", { name: "Athlete" });
+await search.click();
+await search.pressSequentially("Nia");
+await touchline.getByRole("option").first().waitFor();
+await search.press("ArrowDown");
+await search.press("Enter");
+await touchline
+  .locator("main form label", { hasText: /earlier/i })
+  .first()
+  .click();
 for (const words of ["Knee", "Right", "Cutting", "Pop felt or heard", "Swelling already"])
   await touchline
     .locator("main form label", { hasText: new RegExp(`^${words}$`) })
@@ -69,7 +79,7 @@ for (const words of ["Knee", "Right", "Cutting", "Pop felt or heard", "Swelling 
     .click();
 await touchline.getByRole("group", { name: "Could they continue?" }).locator("label").last().click();
 await touchline.mouse.move(0, 0);
-await shoot(touchline, "injury", 1500);
+await shoot(touchline, "injury", 1950);
 
 if (inbox) {
   await trainer.goto(`${club}/today`);

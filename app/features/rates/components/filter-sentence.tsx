@@ -50,9 +50,9 @@ function Part({ name, filters, label }: { name: Name; filters: RatesFilters; lab
   const current: string = filters[name];
   return (
     <details key={current} name="rates-filter" className="relative inline-block">
-      <summary className="editable-word inline-flex min-h-target cursor-pointer list-none items-center font-semibold">
+      <summary className="inline-flex min-h-target cursor-pointer list-none items-center">
         <span className="sr-only">{label}: </span>
-        {options[current]}
+        <span className="editable-word font-semibold">{options[current]}</span>
       </summary>
       <ul className="absolute left-0 z-30 w-72 max-w-[calc(100vw-3rem)] rounded-md border border-line bg-paper p-1 font-normal text-ink shadow-float">
         {Object.entries(options).map(([value, text]) => (

@@ -10,7 +10,7 @@ import { may } from "../accounts/permissions";
 import type { MemberScope } from "../accounts/scope.server";
 import { expiryInDays } from "../accounts/tokens.server";
 import { findInjuryForNotice, type InjuryForNotice } from "../injuries/injuries.server";
-import { limitsPlace } from "../roster/roster.server";
+import { limitsPlace } from "../roster/guardians.server";
 import { contentPlace } from "./composing.server";
 import { composeNotice } from "./emails/notice-email";
 import { mailNameProblem } from "./mail-safe";

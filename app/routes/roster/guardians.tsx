@@ -2,8 +2,13 @@ import { randomUUID } from "node:crypto";
 import { redirect, useSearchParams } from "react-router";
 import { formObject } from "~/features/accounts/accounts.schema";
 import { GuardianFields } from "~/features/roster/components/guardian-fields";
+import {
+  addGuardian,
+  editGuardian,
+  endGuardianship,
+  readGuardians,
+} from "~/features/roster/guardians.server";
 import { guardianSchema, operationSchema } from "~/features/roster/roster.schema";
-import { addGuardian, editGuardian, endGuardianship, readGuardians } from "~/features/roster/roster.server";
 import { relationWords } from "~/features/vocabulary";
 import { memberAction, memberLoader } from "~/middleware/handlers.server";
 import { Button, ConfirmButton, Disclosure, Form, Note, Page, PageHeading, Region, TextLink } from "~/ui";

@@ -1,4 +1,4 @@
-import { limitsPlace } from "~/features/roster/roster.server";
+import { limitsPlace } from "~/features/roster/guardians.server";
 import { foldText } from "~/platform/fold-text";
 import {
   actionAlerts,

@@ -1,18 +1,20 @@
 import { randomUUID } from "node:crypto";
 import { beforeAll, describe, expect, it } from "vitest";
+import {
+  addGuardian,
+  editGuardian,
+  endGuardianship,
+  guardianVersionOf,
+  readGuardians,
+} from "~/features/roster/guardians.server";
 import { athleteSchema, guardianSchema, newAthleteSchema } from "~/features/roster/roster.schema";
 import {
   addAlert,
   addAthlete,
-  addGuardian,
   archiveAthlete,
   editAthlete,
-  editGuardian,
-  endGuardianship,
-  guardianVersionOf,
   listRoster,
   readAthlete,
-  readGuardians,
   removeAlert,
 } from "~/features/roster/roster.server";
 import {

@@ -5,7 +5,7 @@ import { readReport } from "~/features/injuries/coach-reports.server";
 import { readInjury } from "~/features/injuries/read-injury.server";
 import { answerText } from "~/features/notices/notice-content";
 import { readNotice } from "~/features/notices/notices.server";
-import { readGuardians } from "~/features/roster/roster.server";
+import { readGuardians } from "~/features/roster/guardians.server";
 import { masterKey, sealer } from "~/platform/crypto/keys.server";
 import { keyedHash } from "~/platform/crypto/sealing.server";
 import { read } from "~db/client.server";

@@ -1,4 +1,5 @@
 import { z } from "zod";
+import { list } from "~/platform/form-fields";
 import { roles } from "~db/schema/codes";
 
 const email = z
@@ -33,10 +34,6 @@ export const changePasswordSchema = z.object({
   current: z.string().min(1, "Enter your current password."),
   password: newPassword,
 });
-
-/** One or several values of a form field as a list. */
-const list = <T extends z.ZodType>(item: T) =>
-  z.preprocess((value) => (value === undefined ? [] : Array.isArray(value) ? value : [value]), z.array(item));
 
 const reach = {
   reach: z.enum(["all", "listed"], "Choose all teams or the listed ones."),

@@ -1,14 +1,7 @@
 import { z } from "zod";
 import { isTimeZone } from "~/platform/clock";
-import { parseDay } from "~/platform/days";
+import { typedDay } from "~/platform/form-fields";
 import { sports, surfaces, teamSexes } from "~db/schema/codes";
-
-const day = z.string().transform((text, context) => {
-  const parsed = parseDay(text, "day-month-year");
-  if (parsed.ok) return parsed.day;
-  context.addIssue({ code: "custom", message: parsed.reason });
-  return z.NEVER;
-});
 
 const whole = (min: number, max: number) =>
   z.coerce
@@ -20,8 +13,8 @@ const whole = (min: number, max: number) =>
 export const seasonSchema = z
   .object({
     name: z.string().trim().min(1, "Enter a name, such as 2026/27.").max(40, "Use at most 40 characters."),
-    startsOn: day,
-    endsOn: day,
+    startsOn: typedDay(),
+    endsOn: typedDay(),
   })
   .refine(({ startsOn, endsOn }) => endsOn > startsOn, {
     path: ["endsOn"],

@@ -1,39 +1,6 @@
 import { z } from "zod";
-import { parseDay } from "~/platform/days";
+import { list, optionalDay, typedDay } from "~/platform/form-fields";
 import { availabilityStates, restrictions } from "~db/schema/codes";
-
-/** One or several values of a form field as a list. */
-const list = <T extends z.ZodType>(item: T) =>
-  z.preprocess(
-    (value) => (value === undefined || value === "" ? [] : Array.isArray(value) ? value : [value]),
-    z.array(item),
-  );
-
-/** A day as people type it, required. */
-export const typedDay = (missing: string) =>
-  z
-    .string(missing)
-    .trim()
-    .min(1, missing)
-    .transform((text, ctx) => {
-      const parsed = parseDay(text, "day-month-year");
-      if (parsed.ok) return parsed.day;
-      ctx.addIssue({ code: "custom", message: parsed.reason });
-      return z.NEVER;
-    });
-
-/** A day as people type it, or nothing. */
-export const optionalDay = z
-  .string()
-  .trim()
-  .optional()
-  .transform((text, ctx) => {
-    if (!text) return null;
-    const parsed = parseDay(text, "day-month-year");
-    if (parsed.ok) return parsed.day;
-    ctx.addIssue({ code: "custom", message: parsed.reason });
-    return z.NEVER;
-  });
 
 const minutes = z
   .string()

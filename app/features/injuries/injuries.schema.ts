@@ -1,6 +1,6 @@
 import { z } from "zod";
-import { optionalDay, typedDay } from "~/features/availability/availability.schema";
 import { pathologiesOf } from "~/features/vocabulary";
+import { list, optionalDay, typedDay } from "~/platform/form-fields";
 import {
   bodyAreas,
   certainties,
@@ -18,13 +18,6 @@ import {
   tissues,
 } from "~db/schema/codes";
 import { hasSides } from "./gaps";
-
-/** One or several values of a form field as a list. */
-const list = <T extends z.ZodType>(item: T) =>
-  z.preprocess(
-    (value) => (value === undefined || value === "" ? [] : Array.isArray(value) ? value : [value]),
-    z.array(item),
-  );
 
 /** A choice that may be left open: nothing or an empty answer is null. */
 const choice = <const T extends readonly [string, ...string[]]>(codes: T, message?: string) =>

@@ -1,12 +1,10 @@
 import { z } from "zod";
+import { list } from "~/platform/form-fields";
 
 const longest = 2000;
 
 const words = (message: string) =>
   z.string().trim().min(1, message).max(longest, `Use at most ${longest} characters.`);
-
-const list = <T extends z.ZodType>(item: T) =>
-  z.preprocess((value) => (value === undefined ? [] : Array.isArray(value) ? value : [value]), z.array(item));
 
 /** A phone number as people write it. */
 export const phone = z

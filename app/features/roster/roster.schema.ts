@@ -1,44 +1,6 @@
 import { z } from "zod";
-import { parseDay } from "~/platform/days";
+import { optionalDay, optionalText, ticked, typedDay } from "~/platform/form-fields";
 import { languages, legs, relations, sexes } from "~db/schema/codes";
-
-/** A text field that may be left empty: empty becomes null. */
-const optionalText = (max: number) =>
-  z
-    .string()
-    .trim()
-    .max(max, `Use at most ${max} characters.`)
-    .optional()
-    .transform((text) => text || null);
-
-/** A day as people type it; empty becomes null. */
-export const optionalDay = z
-  .string()
-  .optional()
-  .transform((text, context) => {
-    if (!text?.trim()) return null;
-    const parsed = parseDay(text, "day-month-year");
-    if (parsed.ok) return parsed.day;
-    context.addIssue({ code: "custom", message: parsed.reason });
-    return z.NEVER;
-  });
-
-export const requiredDay = z.string().transform((text, context) => {
-  if (!text.trim()) {
-    context.addIssue({ code: "custom", message: "Enter a day, such as 27 Mar 2014." });
-    return z.NEVER;
-  }
-  const parsed = parseDay(text, "day-month-year");
-  if (parsed.ok) return parsed.day;
-  context.addIssue({ code: "custom", message: parsed.reason });
-  return z.NEVER;
-});
-
-/** A tick box: present when ticked. */
-const ticked = z
-  .string()
-  .optional()
-  .transform((value) => value !== undefined && value !== "");
 
 export const athleteSchema = z.object({
   givenName: z.string().trim().min(1, "Enter the given name.").max(80, "Use at most 80 characters."),
@@ -69,13 +31,13 @@ export const newAthleteSchema = athleteSchema
 export const operationSchema = z.uuid("This form is not complete. Open it again.");
 
 export const joinTeamSchema = z
-  .object({ team: z.uuid("Choose a team."), fromDay: requiredDay, toDay: optionalDay })
+  .object({ team: z.uuid("Choose a team."), fromDay: typedDay(), toDay: optionalDay })
   .refine(({ fromDay, toDay }) => !toDay || toDay >= fromDay, {
     path: ["toDay"],
     message: "The last day lies before the first.",
   });
 
-export const leaveTeamSchema = z.object({ entry: z.uuid(), toDay: requiredDay });
+export const leaveTeamSchema = z.object({ entry: z.uuid(), toDay: typedDay() });
 
 export const guardianSchema = z
   .object({

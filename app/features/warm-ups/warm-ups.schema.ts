@@ -1,4 +1,5 @@
 import { z } from "zod";
+import { list } from "~/platform/form-fields";
 import { skipReasons, warmUpBlocks } from "~db/schema/codes";
 
 /** Names of a warm-up's flat fields and what each may hold: one schema for the form and the sync interface. */
@@ -32,9 +33,6 @@ const numberOrNothing = z.preprocess(
   (value) => (value === "" || value === undefined ? null : Number(value)),
   values.minutes,
 );
-
-const list = <T extends z.ZodType>(item: T) =>
-  z.preprocess((value) => (value === undefined ? [] : Array.isArray(value) ? value : [value]), z.array(item));
 
 /** The page's form as it is sent without script: everything at once. */
 export const warmUpFormSchema = z.object({

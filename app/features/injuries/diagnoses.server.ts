@@ -1,7 +1,8 @@
 import type { Sealer } from "~/platform/crypto/keys.server";
 import type { Tx } from "~db/client.server";
-import { findDiagnoses, insertDiagnoses } from "./injuries.queries.server";
+import { findDiagnoses } from "./injuries.queries.server";
 import { type EditInput, furtherDiagnoses } from "./injuries.schema";
+import { insertDiagnoses } from "./records.queries.server";
 
 /** Where the sealed words of a further diagnosis belong. */
 export const diagnosisPlace = (injuryId: string, version: number, position: number) => ({

@@ -23,19 +23,16 @@ import { carryFurther, writeFurther } from "./diagnoses.server";
 import { dropDraft, editDraft } from "./drafts.server";
 import { changedKeys } from "./history";
 import {
-  advanceVersion,
   findInjuriesOf,
   findInjuryRow,
   findRevisions,
   findSessionsOf,
   type InjuryRow,
-  insertNote,
-  insertRevision,
   lockInjury,
-  type NewRevision,
 } from "./injuries.queries.server";
 import type { EditInput, withdrawReasons } from "./injuries.schema";
 import { type Opened, openRevision, revisionPlace } from "./overview.server";
+import { advanceVersion, insertNote, insertRevision, type NewRevision } from "./records.queries.server";
 
 const refuse = (field: string, message: string) =>
   new DomainError("invalid", "", { fields: { [field]: [message] } });

@@ -11,10 +11,11 @@ import { read, type Tx, write } from "~db/client.server";
 import { type SafeDefaultReason, safeDefaultReasons, signGroups } from "./cautions";
 import { findReport, insertOutcome, type ReportRow, reportPlace } from "./coach-reports.queries.server";
 import { dropDraft, logDraft, readDraft } from "./drafts.server";
-import { findAthlete, findSessionsOf, insertInjury, insertRevision } from "./injuries.queries.server";
+import { findAthlete, findSessionsOf } from "./injuries.queries.server";
 import type { LogInput } from "./injuries.schema";
 import { resolveOnset } from "./onset.server";
 import { revisionPlace } from "./overview.server";
+import { insertInjury, insertRevision } from "./records.queries.server";
 import { commonAreas } from "./seen";
 
 /** What the log form starts from: a draft, a coach's report, or an athlete named in the address. */

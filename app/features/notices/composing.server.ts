@@ -6,10 +6,10 @@ import { linkToken } from "../accounts/tokens.server";
 import type { Composed, Composer } from "../outbox/outbox.server";
 import { composeFreshLink } from "./emails/fresh-link-email";
 import { composeNotice } from "./emails/notice-email";
+import { findLink } from "./links.queries.server";
 import { type NoticeContent, noticeContentSchema } from "./notice-content";
 import {
   findGuardians,
-  findLink,
   findNotice,
   findSender,
   findStanding,

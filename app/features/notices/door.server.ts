@@ -11,18 +11,9 @@ import { countAttempt } from "../accounts/attempts.server";
 import { openDoor } from "../accounts/doors.server";
 import { hashToken } from "../accounts/tokens.server";
 import { openContent, toldNow } from "./composing.server";
+import { countWrongAnswer, findLink, mostTries, openLink } from "./links.queries.server";
 import { answerText, type NoticeContent } from "./notice-content";
-import {
-  countWrongAnswer,
-  findEvents,
-  findLink,
-  findNotice,
-  findSender,
-  insertEvent,
-  mostTries,
-  openLink,
-  stopWantingEmail,
-} from "./notices.queries.server";
+import { findEvents, findNotice, findSender, insertEvent, stopWantingEmail } from "./notices.queries.server";
 import { addLinkAndMail, eventPlace } from "./records.server";
 
 /**

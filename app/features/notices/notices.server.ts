@@ -8,6 +8,7 @@ import { may } from "../accounts/permissions";
 import type { MemberScope } from "../accounts/scope.server";
 import { lastListedDay, resolveViewing } from "../accounts/viewing.server";
 import { openContent, toldNow } from "./composing.server";
+import { shutLinks } from "./links.queries.server";
 import { noticesSentence, noticeWay } from "./notice-state";
 import {
   findDeliveries,
@@ -20,7 +21,6 @@ import {
   findSender,
   findStanding,
   type NoticeRow,
-  shutLinks,
 } from "./notices.queries.server";
 import type { CallOutcome } from "./notices.schema";
 import { explainStop, whoIsTold } from "./recipients";

@@ -4,8 +4,9 @@ import { sealer } from "~/platform/crypto/keys.server";
 import type { Tx } from "~db/client.server";
 import { expiryInDays, hashToken, linkToken } from "../accounts/tokens.server";
 import { queueDelivery } from "../outbox/outbox.server";
+import { insertLink } from "./links.queries.server";
 import { type NoticeState, noticeState } from "./notice-state";
-import { findDeliveries, findEvents, insertEvent, insertLink } from "./notices.queries.server";
+import { findDeliveries, findEvents, insertEvent } from "./notices.queries.server";
 import type { CallOutcome } from "./notices.schema";
 import { sayWhenIn } from "./when";
 

@@ -39,6 +39,9 @@ async function open(role: string | null, viewport: { width: number; height: numb
 async function shoot(page: Page, name: string, height?: number) {
   await page.waitForLoadState("networkidle");
   const width = page.viewportSize()?.width ?? desk.width;
+  // On a page taken whole, what is fixed to the window's edge would lie across the middle.
+  for (const nav of await page.locator("nav.bottom-nav").all())
+    await nav.evaluate((element) => element.style.setProperty("position", "static"));
   await page.screenshot({
     path: here(name),
     fullPage: true,
@@ -62,10 +65,13 @@ await shoot(coach, "warm-up", 1000);
 
 const touchline = await open("trainer", phone);
 await touchline.goto(`${club}/injuries/new`);
+const draft = touchline.getByRole("button", { name: /^Throw the draft away/ });
+if (await draft.isVisible()) await draft.click();
+await touchline.getByText("The first group is enough to save.").waitFor();
 const search = touchline.getByRole("combobox", { name: "Athlete" });
 await search.click();
 await search.pressSequentially("Nia");
-await touchline.getByRole("option").first().waitFor();
+await touchline.getByRole("option", { name: /Nia/ }).first().waitFor();
 await search.press("ArrowDown");
 await search.press("Enter");
 await touchline

@@ -125,7 +125,7 @@ export default function EditInjury({ loaderData, actionData }: Route.ComponentPr
         </FormActions>
       </Form>
       {draft.savedAt ? (
-        <Form className="mt-6">
+        <Form reloadDocument onSubmit={cancel} className="mt-6">
           <Button look="quiet" name="intent" value="discard">
             Throw the draft away
           </Button>

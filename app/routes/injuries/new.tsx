@@ -126,7 +126,7 @@ export default function NewInjury({ loaderData, actionData }: Route.ComponentPro
         </FormActions>
       </Form>
       {draft.savedAt ? (
-        <Form className="mt-6">
+        <Form reloadDocument onSubmit={cancel} className="mt-6">
           <Button look="quiet" name="intent" value="discard">
             Throw the draft away and begin again
           </Button>

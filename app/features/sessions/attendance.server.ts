@@ -7,7 +7,8 @@ import { foldText } from "~/platform/fold-text";
 import { type FieldChange, mergeFields } from "~/platform/merge-fields";
 import { once } from "~/platform/operations.server";
 import { type Scope, type Tx, write } from "~db/client.server";
-import { type ExpectedAthlete, type Part, partField, partValue, stateWords } from "./attendance";
+import { stateWords } from "../availability/state-words";
+import { type ExpectedAthlete, type Part, partField, partValue } from "./attendance";
 import {
   deleteParticipation,
   findActionAlerts,

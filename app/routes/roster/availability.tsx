@@ -8,7 +8,8 @@ import {
 } from "~/features/availability/athlete-availability.server";
 import { availabilityChangeSchema } from "~/features/availability/availability.schema";
 import { AvailabilityFields } from "~/features/availability/components/availability-fields";
-import { AvailabilityMark, limitWords } from "~/features/availability/components/availability-mark";
+import { AvailabilityMark } from "~/features/availability/components/availability-mark";
+import { limitWords } from "~/features/availability/state-words";
 import { availabilityWords } from "~/features/vocabulary";
 import { memberAction, memberLoader } from "~/middleware/handlers.server";
 import { formatDay } from "~/platform/days";

@@ -1,5 +1,6 @@
 import { describe, expect, it } from "vitest";
-import { proposePart, stateWords } from "~/features/sessions/attendance";
+import { stateWords } from "~/features/availability/state-words";
+import { proposePart } from "~/features/sessions/attendance";
 import { readAttendanceForm } from "~/features/sessions/attendance-form";
 
 const athletes = [

@@ -1,27 +1,12 @@
-import { availabilityWords, restrictionWords, sentenceCase } from "~/features/vocabulary";
+import { availabilityWords, sentenceCase } from "~/features/vocabulary";
 import { formatDay } from "~/platform/days";
-import { type Spot, SpotMark } from "~/ui";
+import { SpotMark } from "~/ui";
 import type { AvailabilityState, Restriction } from "~db/schema/codes";
-
-export const spotOf: Record<AvailabilityState, Spot> = {
-  full: "filled",
-  modified: "half",
-  unavailable: "crossed",
-};
-
-type Limits = { restrictions: readonly Restriction[]; minutesLimit: number | null };
-
-/** "no cutting, no contact, at most 30 minutes"; empty without limits. */
-export function limitWords({ restrictions, minutesLimit }: Limits): string {
-  const words = restrictions
-    .filter((code) => code !== "minutes_limit" || minutesLimit === null)
-    .map((code) => restrictionWords[code]);
-  return [...words, ...(minutesLimit === null ? [] : [`at most ${minutesLimit} minutes`])].join(", ");
-}
+import { limitWords, spotOf } from "../state-words";
 
 type Props = {
   state: AvailabilityState;
-  limits?: Limits;
+  limits?: { restrictions: readonly Restriction[]; minutesLimit: number | null };
   /** ISO day on which full availability is expected. */
   expectedOn?: string | null;
 };

@@ -4,7 +4,7 @@ import { joinClasses, Note, SpotMark } from "~/ui";
 import { FieldError } from "~/ui/field";
 import { FormContext, fieldId } from "~/ui/form-context";
 import { inputClasses } from "~/ui/input-classes";
-import { spotOf } from "../attendance";
+import { spotOf } from "../../availability/state-words";
 import type { ShownAthlete } from "../attendance.server";
 import { minutesName, presenceName } from "../attendance-form";
 

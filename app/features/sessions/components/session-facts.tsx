@@ -1,7 +1,7 @@
 import { presenceWords, sentenceCase } from "~/features/vocabulary";
 import { DescriptionList, SpotMark, StrokeTally } from "~/ui";
 import { warmUpBlocks } from "~db/schema/codes";
-import { spotOf } from "../attendance";
+import { spotOf } from "../../availability/state-words";
 import type { ShownAthlete } from "../attendance.server";
 import type { Exposure } from "../exposure";
 import { fullTimeOf, sessionStatusWords } from "../session-state";

@@ -1,4 +1,4 @@
-import { spotOf } from "~/features/sessions/attendance";
+import { spotOf } from "~/features/availability/state-words";
 import { blockWords } from "~/features/vocabulary";
 import { SpotMark } from "~/ui";
 import type { Fields } from "../record-queue";

@@ -147,7 +147,7 @@ export const teams = pgTable(
     nameKey: text("name_key").notNull(),
     sport: text("sport").notNull(),
     sex: text("sex").notNull(),
-    /** The oldest age of the age group in years, null for senior teams. */
+    /** The age that all athletes of the team are under, in years (16 for an under-16 team); null for senior teams. */
     underAge: integer("under_age"),
     archivedAt: instant("archived_at"),
     createdAt: createdAt(),

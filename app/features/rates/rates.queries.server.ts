@@ -62,7 +62,7 @@ const countedSessions = (tx: Tx, { from, to, teamIds }: Range) => sql`
     left join lateral (
       select players_on_field, regulation_minutes from sport_rules
       where organisation_id = ${tx.scope.organisationId}::uuid and sport = g.sport
-        and from_age <= coalesce(g.under_age, 999)
+        and from_age < coalesce(g.under_age, 999)
       order by from_age desc limit 1
     ) r on g.grade = 'estimated'
   )`;
@@ -211,7 +211,7 @@ export async function tallySessions(tx: Tx, { from, to, teamIds }: Range): Promi
       select s.team_id, s.kind, s.day, s.state, s.state in ('held', 'abandoned') as held,
         case when ${countedGrade} = 'estimated' and not exists (
           select 1 from sport_rules r where r.organisation_id = s.organisation_id and r.sport = t.sport
-            and r.from_age <= coalesce(t.under_age, 999)
+            and r.from_age < coalesce(t.under_age, 999)
         ) then 'none' else ${countedGrade} end as grade
       from sessions s
       join teams t on t.organisation_id = s.organisation_id and t.id = s.team_id

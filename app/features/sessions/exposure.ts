@@ -43,11 +43,11 @@ const nothing = (grade: ExposureGrade): Exposure => ({
 });
 
 /**
- * The rule that counts for a team: the one from the highest age that is not above the team's. A senior team (null)
- * takes the highest.
+ * The rule that counts for a team: the one from the highest age that its athletes, all under `underAge`, can have.
+ * An under-16 team plays by the rule from 14, not by that from 16. A senior team (null) takes the highest.
  */
 export function ruleFor(rules: readonly SportRule[], underAge: number | null): SportRule | null {
-  const fitting = rules.filter(({ fromAge }) => underAge === null || fromAge <= underAge);
+  const fitting = rules.filter(({ fromAge }) => underAge === null || fromAge < underAge);
   return fitting.reduce<SportRule | null>(
     (best, rule) => (best && best.fromAge >= rule.fromAge ? best : rule),
     null,

@@ -12,6 +12,12 @@ export const underAgeOf = ({ label, maxAge }: Pick<AgeGroup, "label" | "maxAge">
 /** Older than any age group of the young, so that it is the rule of senior teams. */
 const seniorRuleAge = 19;
 
+/** The age from which a group's rule counts: the groups of the young span two years. */
+function ruleAgeOf(ageGroup: string) {
+  const under = /^under (\d+)$/.exec(ageGroup)?.[1];
+  return under === undefined ? seniorRuleAge : Number(under) - 2;
+}
+
 /** What the administrator enters: seasons, teams and who covers them, venues, the rules of play. */
 export async function loadSettings({ tx, own, organisationId, id, person }: Loading) {
   await insertRows(
@@ -66,7 +72,7 @@ export async function loadSettings({ tx, own, organisationId, id, person }: Load
       own.organisation.sports.map(({ sport, ageGroup, playersOnField, regulationMinutes }) => ({
         organisationId,
         sport,
-        fromAge: Number(/^under (\d+)$/.exec(ageGroup)?.[1] ?? seniorRuleAge),
+        fromAge: ruleAgeOf(ageGroup),
         playersOnField,
         regulationMinutes,
       })),

@@ -121,10 +121,12 @@ it("a planned or cancelled session has no exposure, whatever was entered", () =>
 
 describe("the rule of a team's age", () => {
   const rules = [{ ...adults, fromAge: 0 }, { ...adults, fromAge: 14 }, adults];
-  it("is the one from the highest age that is not above the team's", () => {
+  it("is the one from the highest age that the team's athletes can have", () => {
     expect(ruleFor(rules, 12)?.fromAge).toBe(0);
-    expect(ruleFor(rules, 14)?.fromAge).toBe(14);
-    expect(ruleFor(rules, 17)?.fromAge).toBe(14);
+    expect(ruleFor(rules, 14)?.fromAge).toBe(0);
+    expect(ruleFor(rules, 15)?.fromAge).toBe(14);
+    expect(ruleFor(rules, 18)?.fromAge).toBe(14);
+    expect(ruleFor(rules, 19)?.fromAge).toBe(18);
     expect(ruleFor(rules, null)?.fromAge).toBe(18);
     expect(ruleFor([], 12)).toBeNull();
   });

@@ -74,7 +74,7 @@ function sharesOf({ plan, rules }: World, session: Session): { grade: string; sh
   if (session.exposureGrade === "estimated") {
     if (session.kind !== "match") return none;
     const rule = rules
-      .filter((each) => each.sport === team?.sport && each.fromAge <= (team?.underAge ?? 1000))
+      .filter((each) => each.sport === team?.sport && each.fromAge < (team?.underAge ?? 1000))
       .sort((a, b) => b.fromAge - a.fromAge)[0];
     players = rule?.players ?? 0;
     minutes = rule?.minutes ?? 0;

@@ -1,23 +1,40 @@
 import { type AgeBand, ageBand } from "~/statistics";
-import type { ExposureGrade, Onset, SessionKind, SessionState, Sex, subsequences } from "~db/schema/codes";
+import type {
+  BodyArea,
+  Contact,
+  ExposureGrade,
+  Movement,
+  Onset,
+  pathologies,
+  SessionKind,
+  SessionState,
+  Sex,
+  Side,
+  subsequences,
+  tissues,
+} from "~db/schema/codes";
 import type { CaseDefinition, RateUnit, SessionChoice } from "./filters";
 
 /**
  * From records to counts: which injuries enter which numerator, and which exposure stands under it. Pure; the rows
- * come from rates.queries.server.ts. Everything that shows a rate of injuries counts through this file.
+ * come from the queries beside it. Everything that shows a rate of injuries counts through this file.
  */
 
 export type CountedGrade = Exclude<ExposureGrade, "none">;
 export const countedKinds = ["training", "match"] as const;
 export type CountedKind = (typeof countedKinds)[number];
+export type Tissue = (typeof tissues)[number];
+export type Pathology = (typeof pathologies)[number];
 export type CountedSex = Sex | "unknown";
 
 /**
- * Exposure of one team, kind, grade, sex and age, summed in the database. `aes` is 0 for the estimated grade. What
+ * Exposure of one team, day, kind, grade, sex and age, summed in the database. `aes` is 0 for the estimated grade. What
  * a headcount holds above the roster has the sex "unknown" and no age.
  */
 export type ExposureCell = {
   teamId: string;
+  /** ISO date of the sessions. */
+  day: string;
   kind: CountedKind;
   grade: CountedGrade;
   sex: CountedSex;
@@ -33,7 +50,21 @@ export type InjuryRow = {
   sex: Sex;
   /** Completed years on the day of onset; null without a date of birth. */
   age: number | null;
+  /** ISO date of the onset. */
+  onsetDay: string;
+  /** The day it is counted on: that of its session, for a gradual injury or without a session that of the onset. */
+  day: string;
+  sessionId: string | null;
   onset: Onset | null;
+  contact: Contact | null;
+  movement: Movement | null;
+  bodyArea: BodyArea;
+  side: Side;
+  /** The principal diagnosis; null until one is given. */
+  tissue: Tissue | null;
+  pathology: Pathology | null;
+  /** Whether this athlete had been warmed up, as the injury's own record says; null when it does not. */
+  warmedUp: boolean | null;
   subsequence: (typeof subsequences)[number] | null;
   outsideSport: boolean;
   withdrawn: boolean;
@@ -47,9 +78,9 @@ export type InjuryRow = {
   /** Whether the team's week of the onset has a training or match with exposure, in each unit. */
   weekAes: boolean;
   weekHours: boolean;
-  /** Days of time loss up to today, from the contributions to availability; onset is day 0. */
+  /** Days of time loss up to today, or up to the day the athlete left; onset is day 0. */
   daysLost: number;
-  /** Still not fully available: the days are the least it can end with. */
+  /** Still not fully available then: the days are the least it can end with. */
   ongoing: boolean;
 };
 

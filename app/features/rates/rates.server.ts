@@ -5,17 +5,15 @@ import { resolveViewing, type Viewing, viewedTeamIds } from "~/features/accounts
 import { complianceByTeam } from "~/features/warm-ups/warm-ups.server";
 import { read, type Scope, type Tx } from "~db/client.server";
 import { sumExposure } from "./counting";
+import { listExposedAthletes, type Range, sumExposureCells } from "./exposure.queries.server";
 import type { RatesFilters } from "./filters";
 import { fixTables } from "./fixed-tables";
+import { listInjuryRows } from "./injury-rows.queries.server";
 import { type Counts, computeRates, type RateRow } from "./rates";
 import {
   findCountingRules,
   listConfirmingTeams,
-  listExposedAthletes,
-  listInjuryRows,
   listRatedTeams,
-  type Range,
-  sumExposureCells,
   tallySessions,
 } from "./rates.queries.server";
 

@@ -2,6 +2,7 @@ import { sql } from "drizzle-orm";
 import { beforeAll, describe, expect, it } from "vitest";
 import { defaultAgeBands, defaultSportRules } from "~/features/accounts/founding.server";
 import { timeLossOf } from "~/features/availability/availability";
+import { ageInYears, sumExposureCells } from "~/features/rates/exposure.queries.server";
 import {
   caseDefinitions,
   groupings,
@@ -9,14 +10,9 @@ import {
   sessionChoices,
   units,
 } from "~/features/rates/filters";
+import { listInjuryRows } from "~/features/rates/injury-rows.queries.server";
 import { type Counts, computeRates, type Rates } from "~/features/rates/rates";
-import {
-  ageInYears,
-  listInjuryRows,
-  listRatedTeams,
-  sumExposureCells,
-  tallySessions,
-} from "~/features/rates/rates.queries.server";
+import { listRatedTeams, tallySessions } from "~/features/rates/rates.queries.server";
 import { ratesQuery } from "~/features/rates/rates.schema";
 import { incidenceOf } from "~/features/rates/rates.server";
 import { addDays } from "~/platform/clock";

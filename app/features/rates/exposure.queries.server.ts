@@ -1,0 +1,126 @@
+import { type SQL, sql } from "drizzle-orm";
+import type { Tx } from "~db/client.server";
+import type { ExposureCell } from "./counting";
+
+/** The SQL of exposure: what counts as one athlete-exposure, and how headcounts and estimates are shared out. */
+
+export type Range = {
+  /** ISO days, both included; `to` never after today. */
+  from: string;
+  to: string;
+  /** The teams looked at; null: every team of the organisation. */
+  teamIds: readonly string[] | null;
+};
+
+const uuids = (ids: readonly string[]) =>
+  sql`array[${sql.join(
+    ids.map((id) => sql`${id}`),
+    sql`, `,
+  )}]::uuid[]`;
+
+export function inTeams(column: SQL, teamIds: Range["teamIds"]): SQL {
+  if (teamIds === null) return sql`true`;
+  return teamIds.length === 0 ? sql`false` : sql`${column} = any(${uuids(teamIds)})`;
+}
+
+/**
+ * Completed years on a day, as `ageOn` of the statistics counts them: who is born on 29 February is a year older on
+ * 1 March in common years. A birth after the day gives null.
+ */
+export const ageInYears = (born: SQL, day: SQL) => sql`case when ${born} <= ${day} then
+    (extract(year from ${day}) - extract(year from ${born}))::int
+    - case when (extract(month from ${day}), extract(day from ${day}))
+                >= (extract(month from ${born}), extract(day from ${born})) then 0 else 1 end
+  end`;
+
+/** An estimate is for matches alone: whatever says so of a training has no exposure. */
+export const countedGrade = sql`case when s.kind <> 'match' and s.exposure_grade = 'estimated' then 'none' else s.exposure_grade end`;
+
+/**
+ * Trainings and matches that took place, with the grade of their exposure and, for a headcount or an estimate, its
+ * players and minutes each. The same rules as `exposureOfSession` of the sessions, for many sessions at once.
+ */
+export const countedSessions = (tx: Tx, { from, to, teamIds }: Range) => sql`
+  graded as (
+    select s.id, s.team_id, s.day, s.kind, t.sport, t.under_age, s.headcount, s.headcount_minutes,
+      case when s.state = 'abandoned' then s.abandoned_after end as stopped_after, ${countedGrade} as grade
+    from sessions s
+    join teams t on t.organisation_id = s.organisation_id and t.id = s.team_id
+    where s.organisation_id = ${tx.scope.organisationId}::uuid
+      and s.day between ${from}::date and ${to}::date
+      and s.state in ('held', 'abandoned') and s.kind in ('training', 'match')
+      and ${inTeams(sql`s.team_id`, teamIds)}
+  ),
+  counted as (
+    select g.id, g.team_id, g.day, g.kind, g.grade,
+      case g.grade when 'headcount' then g.headcount when 'estimated' then r.players_on_field end as players,
+      case g.grade when 'headcount' then g.headcount_minutes::float8
+        when 'estimated' then least(r.regulation_minutes, g.stopped_after) end as minutes
+    from graded g
+    left join lateral (
+      select players_on_field, regulation_minutes from sport_rules
+      where organisation_id = ${tx.scope.organisationId}::uuid and sport = g.sport
+        and from_age < coalesce(g.under_age, 999)
+      order by from_age desc limit 1
+    ) r on g.grade = 'estimated'
+  )`;
+
+/**
+ * One row per athlete and session: recorded minutes, or the share of a headcount or of an estimate that falls on
+ * each athlete of that day's roster who is not unavailable, so that a group's hours and its injuries stay together.
+ * What lies above the roster has no athlete.
+ */
+export const exposureParts = (tx: Tx, range: Range) => sql`
+  ${countedSessions(tx, range)},
+  unavailable as materialized (
+    select athlete_id, from_day, to_day from availability_contributions
+    where organisation_id = ${tx.scope.organisationId}::uuid and state = 'unavailable'
+  ),
+  sharing as (
+    select c.id, r.athlete_id, count(*) over (partition by c.id) as sharers
+    from counted c
+    join roster_entries r on r.organisation_id = ${tx.scope.organisationId}::uuid and r.team_id = c.team_id
+      and r.from_day <= c.day and (r.to_day is null or r.to_day >= c.day)
+    where c.players > 0 and c.minutes > 0 and not exists (
+      select 1 from unavailable u where u.athlete_id = r.athlete_id
+        and u.from_day <= c.day and (u.to_day is null or u.to_day >= c.day)
+    )
+  ),
+  parts as (
+    select c.team_id, c.day, c.kind, c.grade, p.athlete_id, 1::float8 as people, p.minutes::float8 as minutes
+    from counted c
+    join participations p on p.organisation_id = ${tx.scope.organisationId}::uuid and p.session_id = c.id
+    where c.grade = 'recorded' and p.presence = 'took_part' and p.minutes > 0
+    union all
+    select c.team_id, c.day, c.kind, c.grade, s.athlete_id, least(1, c.players::float8 / s.sharers), c.minutes
+    from counted c join sharing s on s.id = c.id
+    union all
+    select c.team_id, c.day, c.kind, c.grade, null, c.players - coalesce(s.sharers, 0), c.minutes
+    from counted c left join (select distinct id, sharers from sharing) s on s.id = c.id
+    where c.players > coalesce(s.sharers, 0) and c.minutes > 0
+  )`;
+
+/** Exposure summed by team, day, kind, grade, sex and age in years on the day of the session. */
+export async function sumExposureCells(tx: Tx, range: Range): Promise<ExposureCell[]> {
+  const rows = await tx.execute<ExposureCell>(sql`
+    with ${exposureParts(tx, range)}
+    select p.team_id as "teamId", p.day::text as day, p.kind, p.grade, coalesce(a.sex, 'unknown') as sex,
+      ${ageInYears(sql`a.date_of_birth`, sql`p.day`)} as age,
+      sum(case when p.grade = 'estimated' then 0 else p.people end) as aes,
+      sum(p.people * p.minutes) / 60 as hours
+    from parts p
+    left join athletes a on a.organisation_id = ${tx.scope.organisationId}::uuid and a.id = p.athlete_id
+    group by 1, 2, 3, 4, 5, 6`);
+  return [...rows];
+}
+
+/** Who was exposed, by what the fixed tables group by: to count athletes where small numbers are hidden. */
+export async function listExposedAthletes(tx: Tx, range: Range) {
+  const rows = await tx.execute<Pick<ExposureCell, "kind" | "sex" | "age"> & { athleteId: string }>(sql`
+    with ${exposureParts(tx, range)}
+    select distinct p.athlete_id as "athleteId", p.kind, a.sex,
+      ${ageInYears(sql`a.date_of_birth`, sql`p.day`)} as age
+    from parts p
+    join athletes a on a.organisation_id = ${tx.scope.organisationId}::uuid and a.id = p.athlete_id`);
+  return [...rows];
+}

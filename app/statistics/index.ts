@@ -1,9 +1,11 @@
 export { type AgeBand, ageBand, ageOn } from "./ages";
 export { type Burden, burden } from "./burden";
 export { type GChart, gChart, type UChart, uChart } from "./charts";
+export { type ClusterRobustRateRatio, type ClusterRow, clusterRobustRateRatio } from "./cluster-robust";
 export { coefficientRatio, designEffect } from "./coefficient-ratio";
-export { cusumRunLength, type PoissonCusum, poissonCusum } from "./cusum";
+export { cusumReference, cusumRunLength, type PoissonCusum, poissonCusum } from "./cusum";
 export { smallestDetectableRatio } from "./detectable";
+export { funnelLimits } from "./funnel";
 export { exceedance, poissonByarInterval, poissonInterval, poissonMidPInterval } from "./intervals";
 export { limbSymmetryIndex } from "./limb-symmetry";
 export {
@@ -12,7 +14,7 @@ export {
   type StratifiedRatio,
   type Stratum,
 } from "./mantel-haenszel";
-export { type ProportionMethod, proportion } from "./proportion";
+export { meanShare, type ProportionMethod, proportion } from "./proportion";
 export { quantile, tertiles } from "./quantiles";
 export { incidenceRate, rateDifference } from "./rates";
 export { type RateRatio, type RateRatioMethod, rateRatio } from "./ratios";
@@ -36,6 +38,7 @@ export {
   type SurvivalMedian,
   type SurvivalStep,
 } from "./survival";
+export { type TeamRateTest, teamRateTest } from "./team-rates";
 export { type SeverityBand, severityBand, severityBands, type TimeLoss, timeLoss } from "./time-loss";
 export { type RateTrend, rateTrend } from "./trend";
 export type { ChiSquaredTest, Counted, Estimate, Interval, LevelOption, RateOptions } from "./types";

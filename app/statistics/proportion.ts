@@ -1,7 +1,7 @@
 import betaQuantile from "@stdlib/stats-base-dists-beta-quantile";
 import { normalDeviate } from "./numeric";
 import type { Estimate, Interval, LevelOption } from "./types";
-import { defaultLevel, reject, requireCount, requireLevel } from "./validate";
+import { defaultLevel, reject, requireCount, requireLevel, requireNonNegative } from "./validate";
 
 export type ProportionMethod = "wilson" | "clopper-pearson";
 
@@ -33,6 +33,36 @@ export function proportion(
     method: solver.method,
   };
 }
+
+/**
+ * Mean of values that each lie between 0 and 1 (share of the blocks done in a warm-up, share of the roster that was
+ * available on a day). Such a mean varies at most like a proportion of as many trials, so Wilson limits of the sum
+ * rounded down (lower) and up (upper) are conservative.
+ * @param sum sum of the values, from 0 to `trials`; may be fractional
+ * @param trials how many independent values: a whole number above 0
+ * @throws RangeError naming `sum`, `trials` or `level`
+ */
+export function meanShare(
+  { sum, trials }: { sum: number; trials: number },
+  { level = defaultLevel }: LevelOption = {},
+): Estimate {
+  requireNonNegative("sum", sum);
+  requireCount("trials", trials);
+  if (trials === 0) reject("trials", "above 0", trials);
+  if (sum > trials * (1 + sumRounding)) reject("sum", `at most trials (${trials})`, sum);
+  requireLevel(level);
+  const capped = Math.min(sum, trials);
+  return {
+    estimate: capped / trials,
+    lower: wilson(Math.floor(capped + sumRounding), trials, level).lower,
+    upper: wilson(Math.min(trials, Math.ceil(capped - sumRounding)), trials, level).upper,
+    level,
+    method: "Wilson score of the mean share, conservative",
+  };
+}
+
+// A sum of fifths that is whole on paper may miss it by a hair.
+const sumRounding = 1e-9;
 
 function wilson(successes: number, trials: number, level: number): Interval {
   const z = normalDeviate(level);

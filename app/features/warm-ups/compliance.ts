@@ -1,4 +1,4 @@
-import { type Estimate, incidenceRate, proportion } from "~/statistics";
+import { type Estimate, incidenceRate, meanShare, proportion } from "~/statistics";
 import { warmUpBlocks } from "~db/schema/codes";
 
 /** A team's targets on the day of a session, from its programme assignment. */
@@ -80,24 +80,14 @@ export function weeklyDose(sessions: readonly ComplianceSession[]) {
 /**
  * Completeness = mean share of the five blocks done, over the warm-ups done in full or in part (skipped ones stand
  * in session compliance). The shares of one warm-up's blocks are not independent, so the interval counts warm-ups,
- * not blocks: a mean of values between 0 and 1 varies at most like a proportion of as many trials; the sum is
- * rounded down for the lower limit and up for the upper.
+ * not blocks (`meanShare`).
  */
 export function completeness(sessions: readonly ComplianceSession[]) {
   const blocks = sessions.map(blocksOf).filter((count) => count > 0);
   const warmUps = blocks.length;
   if (warmUps === 0) return { warmUps, estimate: null };
   const sum = blocks.reduce((total, count) => total + count, 0) / warmUpBlocks.length;
-  const { level, lower } = proportion({ successes: Math.floor(sum + 1e-9), trials: warmUps });
-  const { upper } = proportion({ successes: Math.ceil(sum - 1e-9), trials: warmUps });
-  const estimate: Estimate = {
-    estimate: sum / warmUps,
-    lower,
-    upper,
-    level,
-    method: "Wilson score of the mean share, conservative",
-  };
-  return { warmUps, estimate };
+  return { warmUps, estimate: meanShare({ sum, trials: warmUps }) };
 }
 
 /**

@@ -2,9 +2,10 @@ import fc from "fast-check";
 import { renderToStaticMarkup } from "react-dom/server";
 import { describe, expect, test } from "vitest";
 import { spreadLabels, wrapWords } from "~/ui/charts/end-labels";
+import { splitAtGaps } from "~/ui/charts/gaps";
 import { IntervalChart, type IntervalGroup } from "~/ui/charts/interval-chart";
 import { describePoint, layoutRows, placeLabel } from "~/ui/charts/interval-rows";
-import { LineWithBand, splitAtGaps } from "~/ui/charts/line-with-band";
+import { LineWithBand } from "~/ui/charts/line-with-band";
 
 const rate = (estimate: number, lower: number, upper: number) => ({ estimate, lower, upper });
 const groups: IntervalGroup[] = [

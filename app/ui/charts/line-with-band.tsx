@@ -5,7 +5,9 @@ import type { RateEstimate } from "../rate-bar";
 import { formatTick, niceScale } from "../scale";
 import { type SeriesNumber, seriesLook } from "../series";
 import { ChartFrame, chartTheme, textWidth } from "./chart-frame";
-import { spreadLabels, wrapWords } from "./end-labels";
+import { type EndWord, EndWords } from "./end-words";
+import { splitAtGaps } from "./gaps";
+import { linePath } from "./svg-path";
 
 export type BandPoint = (RateEstimate & { unstable?: boolean }) | null;
 export type BandSeries = {
@@ -29,23 +31,6 @@ type Datum = { x: string; y: number | null };
 type NivoSeries = { id: string; data: Datum[] };
 type Placed = { x: number; estimate: number; lower: number; upper: number; unstable: boolean };
 
-/** Cuts a series where a period has no figure, so that no line is drawn over a gap. */
-export function splitAtGaps<Point>(points: (Point | null)[]): Point[][] {
-  const runs: Point[][] = [];
-  let run: Point[] = [];
-  for (const point of [...points, null]) {
-    if (point !== null) run.push(point);
-    else if (run.length > 0) {
-      runs.push(run);
-      run = [];
-    }
-  }
-  return runs;
-}
-
-const path = (points: { x: number; y: number }[]) =>
-  points.map(({ x, y }, i) => `${i ? "L" : "M"}${x} ${y}`).join("");
-
 function Series({ look, runs }: { look: ReturnType<typeof seriesLook>; runs: Placed[][] }) {
   return (
     <g>
@@ -55,10 +40,10 @@ function Series({ look, runs }: { look: ReturnType<typeof seriesLook>; runs: Pla
         return (
           <g key={run[0]?.x}>
             {run.length > 1 ? (
-              <path d={`${path([...there, ...back])}Z`} fill={look.colour} opacity={0.16} />
+              <path d={`${linePath([...there, ...back])}Z`} fill={look.colour} opacity={0.16} />
             ) : null}
             <path
-              d={path(run.map(({ x, estimate }) => ({ x, y: estimate })))}
+              d={linePath(run.map(({ x, estimate }) => ({ x, y: estimate })))}
               fill="none"
               stroke={look.colour}
               strokeWidth={2.5}
@@ -92,38 +77,6 @@ type DrawingProps = Pick<Props, "periods" | "series" | "unit" | "reference"> & {
   room: number;
 };
 
-const lineHeight = 18;
-
-/** The words at the end of every line, the reference's among them, spread so that none covers another. */
-function EndLabels({
-  labels,
-  x,
-  room,
-  limit,
-}: {
-  labels: EndLabel[];
-  x: number;
-  room: number;
-  limit: number;
-}) {
-  const wrapped = labels.map((label) => ({ ...label, lines: wrapWords(label.text, room) }));
-  const places = spreadLabels(
-    wrapped.map(({ y, lines }) => ({ y, height: lines.length * lineHeight + 2 })),
-    limit,
-  );
-  return wrapped.map(({ text, lines, colour }, index) => (
-    <text key={text} y={(places[index] ?? 0) + 5} fontSize={15} fontWeight={500} fill={colour}>
-      {lines.map((line, at) => (
-        <tspan key={line} x={x} dy={at === 0 ? 0 : lineHeight}>
-          {line}
-        </tspan>
-      ))}
-    </text>
-  ));
-}
-
-type EndLabel = { text: string; y: number; colour: string };
-
 /** What lies on nivo's grid and axes. */
 function Drawing({
   periods,
@@ -146,7 +99,7 @@ function Drawing({
     });
     return { number, label, look: seriesLook(number), placed };
   });
-  const labels = drawn.flatMap(({ label, look, placed }): EndLabel[] => {
+  const labels = drawn.flatMap(({ label, look, placed }): EndWord[] => {
     const end = placed.findLast((point) => point !== null);
     return end ? [{ text: label, y: end.estimate, colour: look.textColour }] : [];
   });
@@ -172,7 +125,7 @@ function Drawing({
           strokeDasharray="2 4"
         />
       ) : null}
-      <EndLabels labels={labels} x={innerWidth + 12} room={room} limit={innerHeight + 24} />
+      <EndWords words={labels} x={innerWidth + 12} room={room} limit={innerHeight + 24} />
     </g>
   );
 }

@@ -1,6 +1,6 @@
 /**
- * Builds the gallery, serves it on loopback and takes its pictures: `npx tsx tests/browser/gallery/shoot.ts <folder>`.
- * Each page at 1280, 390 and 320 px, light and dark, one in daylight, one without script, and the icons.
+ * Builds the gallery, serves it on loopback and takes its pictures: `npx tsx tests/browser/gallery/shoot.ts <folder> [page…]`.
+ * Each page (or those named) at 1280, 390 and 320 px, light and dark, one in daylight, one without script, and the icons.
  */
 import { mkdirSync, readFileSync, writeFileSync } from "node:fs";
 import { tmpdir } from "node:os";
@@ -38,6 +38,7 @@ const { renderPage } = await renderer.ssrLoadModule("/tests/browser/gallery/rend
 const shell = readFileSync(join(dist, pagePath), "utf8");
 for (const [path, file] of [
   ["/", "index.html"],
+  ["/charts", "charts.html"],
   ["/words", "words.html"],
   ["/forms", "forms.html"],
 ] as const) {
@@ -64,7 +65,7 @@ type Shot = {
   script?: boolean;
   media?: "print";
 };
-const shots: Shot[] = ["", "words", "forms"].flatMap((path) =>
+const shots: Shot[] = ["", "charts", "words", "forms"].flatMap((path) =>
   [1280, 390, 320].flatMap((width): Shot[] => [
     { path, width, scheme: "light" },
     ...(width === 320 ? [] : [{ path, width, scheme: "dark" } as const]),
@@ -72,9 +73,12 @@ const shots: Shot[] = ["", "words", "forms"].flatMap((path) =>
 );
 shots.push({ path: "", width: 1280, scheme: "light", script: false });
 shots.push({ path: "", width: 800, scheme: "light", media: "print" });
+shots.push({ path: "charts", width: 1280, scheme: "light", script: false });
 shots.push({ path: "words", width: 390, scheme: "daylight" });
+const wanted = process.argv.slice(3);
 
 for (const { path, width, scheme, script = true, media } of shots) {
+  if (wanted.length > 0 && !wanted.includes(path || "figures")) continue;
   const page = await browser.newPage({
     viewport: { width, height: width < 500 ? 844 : 900 },
     colorScheme: scheme === "dark" ? "dark" : "light",

@@ -1,0 +1,93 @@
+import { textWidth } from "./chart-frame";
+
+export type Box = { left: number; right: number; top: number; bottom: number };
+
+/** A spot that wants its name beside it. `must`: it is named even if its name has to stand away from it. */
+export type NamedSpot = { x: number; y: number; radius: number; text: string; must: boolean };
+
+/** Where a name stands: its base line's start, and whether it is so far off that a line should lead to it. */
+export type NamePlace = { x: number; y: number; far: boolean };
+
+const height = 17;
+/** From the middle of a text to its base line. */
+const drop = 5;
+const step = 6;
+
+const collides = (a: Box, b: Box) =>
+  a.left < b.right && b.left < a.right && a.top < b.bottom && b.top < a.bottom;
+
+const within = (box: Box, bounds: Box) =>
+  box.left >= bounds.left &&
+  box.right <= bounds.right &&
+  box.top >= bounds.top &&
+  box.bottom <= bounds.bottom;
+
+function boxAt(centreX: number, centreY: number, width: number): Box {
+  return {
+    left: centreX - width / 2,
+    right: centreX + width / 2,
+    top: centreY - height / 2,
+    bottom: centreY + height / 2,
+  };
+}
+
+/** Right, left, above, below, then the corners. */
+function besides({ x, y, radius }: NamedSpot, width: number): Box[] {
+  const [across, up] = [radius + 5 + width / 2, radius + 2 + height / 2];
+  return [
+    boxAt(x + across, y, width),
+    boxAt(x - across, y, width),
+    boxAt(x, y - up, width),
+    boxAt(x, y + up, width),
+    boxAt(x + across - 4, y - up, width),
+    boxAt(x + across - 4, y + up, width),
+    boxAt(x - across + 4, y - up, width),
+    boxAt(x - across + 4, y + up, width),
+  ];
+}
+
+/** The free place nearest to a spot anywhere in the drawing. */
+function nearest(spot: NamedSpot, width: number, bounds: Box, free: (box: Box) => boolean): Box | null {
+  let best: Box | null = null;
+  let distance = Number.POSITIVE_INFINITY;
+  for (let y = bounds.top + height / 2; y <= bounds.bottom - height / 2; y += step) {
+    for (let x = bounds.left + width / 2; x <= bounds.right - width / 2; x += step) {
+      // Up and down counts more: a name on the spot's own line is found sooner.
+      const off = Math.hypot(Math.max(0, Math.abs(x - spot.x) - width / 2), (y - spot.y) * 1.3);
+      if (off >= distance) continue;
+      const box = boxAt(x, y, width);
+      if (free(box)) [best, distance] = [box, off];
+    }
+  }
+  return best;
+}
+
+/**
+ * Places names beside their spots so that none covers another name, a spot or one of `taken`, and none leaves
+ * `bounds`; all in px. Those that must be named come first. A name without a place is null: the table has it.
+ */
+export function placeNames(spots: NamedSpot[], bounds: Box, taken: Box[] = []): (NamePlace | null)[] {
+  const places: (NamePlace | null)[] = spots.map(() => null);
+  const used = [...taken];
+  const spotBoxes = spots.map(({ x, y, radius }) => ({
+    left: x - radius,
+    right: x + radius,
+    top: y - radius,
+    bottom: y + radius,
+  }));
+  const order = spots.map((_, index) => index);
+  order.sort((a, b) => Number(spots[b]?.must) - Number(spots[a]?.must));
+  for (const index of order) {
+    const spot = spots[index];
+    if (!spot || spot.text === "") continue;
+    const width = textWidth(spot.text);
+    const free = (box: Box) =>
+      within(box, bounds) && ![...used, ...spotBoxes].some((other) => collides(box, other));
+    const beside = besides(spot, width).find(free);
+    const box = beside ?? (spot.must ? nearest(spot, width, bounds, free) : null);
+    if (!box) continue;
+    used.push(box);
+    places[index] = { x: box.left + 2, y: (box.top + box.bottom) / 2 + drop, far: !beside };
+  }
+  return places;
+}

@@ -62,6 +62,14 @@ function nearest(spot: NamedSpot, width: number, bounds: Box, free: (box: Box) =
   return best;
 }
 
+/** The spots as seen by one name: one that may be left out keeps clear of other spots, or it could be read as theirs. */
+function spotBoxes(spots: NamedSpot[], own: NamedSpot): Box[] {
+  return spots.map((spot) => {
+    const reach = spot.radius + (spot === own || own.must ? 0 : 5);
+    return { left: spot.x - reach, right: spot.x + reach, top: spot.y - reach, bottom: spot.y + reach };
+  });
+}
+
 /**
  * Places names beside their spots so that none covers another name, a spot or one of `taken`, and none leaves
  * `bounds`; all in px. Those that must be named come first. A name without a place is null: the table has it.
@@ -69,20 +77,14 @@ function nearest(spot: NamedSpot, width: number, bounds: Box, free: (box: Box) =
 export function placeNames(spots: NamedSpot[], bounds: Box, taken: Box[] = []): (NamePlace | null)[] {
   const places: (NamePlace | null)[] = spots.map(() => null);
   const used = [...taken];
-  const spotBoxes = spots.map(({ x, y, radius }) => ({
-    left: x - radius,
-    right: x + radius,
-    top: y - radius,
-    bottom: y + radius,
-  }));
   const order = spots.map((_, index) => index);
   order.sort((a, b) => Number(spots[b]?.must) - Number(spots[a]?.must));
   for (const index of order) {
     const spot = spots[index];
     if (!spot || spot.text === "") continue;
     const width = textWidth(spot.text);
-    const free = (box: Box) =>
-      within(box, bounds) && ![...used, ...spotBoxes].some((other) => collides(box, other));
+    const others = [...used, ...spotBoxes(spots, spot)];
+    const free = (box: Box) => within(box, bounds) && !others.some((other) => collides(box, other));
     const beside = besides(spot, width).find(free);
     const box = beside ?? (spot.must ? nearest(spot, width, bounds, free) : null);
     if (!box) continue;

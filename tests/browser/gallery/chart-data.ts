@@ -20,3 +20,32 @@ export const controlPoints = weeks.map((_, index): ControlPoint | null => {
     unstable: index % 7 === 3,
   };
 });
+
+export const sums = controlPoints.map((point, index) =>
+  point === null ? null : Math.max(0, 1.2 + wave(index, 0.17) * 2.2 + (index > 38 && index < 46 ? 4 : 0)),
+);
+
+const teams = ["Girls under 12", "Girls under 14", "Girls under 16", "Girls under 18", "Boys under 12"];
+const more = [
+  "Boys under 14",
+  "Boys under 16",
+  "Boys under 18",
+  "Women",
+  "Men",
+  "Mixed under 10",
+  "Wheelchair",
+];
+export const funnelPoints = [...teams, ...more].map((label, index) => {
+  const exposure = label === "Wheelchair" ? 90 : 600 + ((index * 733) % 3400);
+  const rate = index === 2 ? 6.4 : index === 9 ? 1.0 : 3.1 + wave(index, 1.7) * Math.sqrt(900 / exposure);
+  return { label, exposure, rate, outside: index === 2 || index === 9, unstable: exposure < 900 };
+});
+const funnelLimit = (label: string, z: number) => ({
+  label,
+  points: Array.from({ length: 80 }, (_, index) => {
+    const exposure = 50 + index * 50;
+    const half = z * Math.sqrt(3.1 / exposure) * 31.6;
+    return { exposure, lower: Math.max(0, 3.1 - half), upper: 3.1 + half };
+  }),
+});
+export const funnelLimits = [funnelLimit("95 %", 1.96), funnelLimit("99.8 %", 3.09)];

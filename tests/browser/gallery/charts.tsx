@@ -1,6 +1,8 @@
 import { Page, Region } from "~/ui";
 import { ControlChart } from "~/ui/charts/control-chart";
-import { controlPoints, weeks } from "./chart-data";
+import { FunnelChart } from "~/ui/charts/funnel-chart";
+import { ThresholdChart } from "~/ui/charts/threshold-chart";
+import { controlPoints, funnelLimits, funnelPoints, sums, weeks } from "./chart-data";
 
 /** Every chart, at its fullest and at its barest. */
 export function Charts() {
@@ -24,6 +26,26 @@ export function Charts() {
           limitLabel="95 % limits"
           unit="per 1000"
           title="Nine weeks"
+        />
+        <ThresholdChart
+          periods={weeks}
+          values={sums}
+          threshold={{ value: 4, label: "alarm at 4.0" }}
+          crossings={[39, 50]}
+          unit="cumulative sum"
+          title="The running sum by week"
+          caption="Running sum of what exceeds twice the expected"
+        />
+      </Region>
+      <Region heading="Teams against the whole">
+        <FunnelChart
+          points={funnelPoints}
+          centre={{ value: 3.1, label: "club 3.1" }}
+          limits={funnelLimits}
+          xUnit="athlete-exposures"
+          yUnit="injuries per 1000 athlete-exposures"
+          title="Rates of teams against their exposure"
+          caption="Each team against what its exposure lets one expect"
         />
       </Region>
     </Page>

@@ -7,7 +7,8 @@ import { defaultLevel, defaultPer, requireLevel, requireNonNegative, requirePosi
  * Funnel limits: between which a single team's observed rate should lie if its true rate were that of the whole,
  * given the team's exposure; they widen for little exposure. Exact Poisson quantiles, interpolated between whole
  * counts so that the curves are smooth; the lower limit is never below 0. With many teams some lie outside by
- * chance alone (one of 20 at 0.95).
+ * chance alone (one of 20 at 0.95). Where even one event would be unusual (at 0.95: fewer than 0.0253 expected) the
+ * upper limit is 0.
  * Source: Spiegelhalter DJ, Statistics in Medicine 2005;24:1185-1202 (appendix, from memory).
  * @param rate the whole's rate, per `per` units of exposure (1000 if not given), 0 or more
  * @param exposure the team's exposure, above 0

@@ -5,6 +5,7 @@ export { type ClusterRobustRateRatio, type ClusterRow, clusterRobustRateRatio } 
 export { coefficientRatio, designEffect } from "./coefficient-ratio";
 export { cusumReference, cusumRunLength, type PoissonCusum, poissonCusum } from "./cusum";
 export { smallestDetectableRatio } from "./detectable";
+export { type ExchangeableRegression, exchangeableRegression } from "./exchangeable";
 export { funnelLimits } from "./funnel";
 export { exceedance, poissonByarInterval, poissonInterval, poissonMidPInterval } from "./intervals";
 export { limbSymmetryIndex } from "./limb-symmetry";

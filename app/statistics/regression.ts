@@ -49,7 +49,7 @@ export function poissonRegression({
   rows: readonly RegressionRow[];
   names: readonly string[];
 }): PoissonRegression {
-  requireRows(rows, names);
+  requireRegressionRows(rows, names);
   const { design, restore } = scaleDesign(rows, names.length);
   const { beta, fitted, covariance } = fitPoisson(rows, design);
   const back = (matrix: number[][]) => multiply(multiply(restore, matrix), transpose(restore));
@@ -80,7 +80,8 @@ export function poissonRegression({
   return { coefficients, deviance: Math.max(0, deviance), pearson, df, dispersion, clusters };
 }
 
-function requireRows(rows: readonly RegressionRow[], names: readonly string[]) {
+/** Shared with the correlated fit: the same rows are refused by the same names. */
+export function requireRegressionRows(rows: readonly RegressionRow[], names: readonly string[]) {
   requireNonEmpty("rows", rows);
   if (new Set(names).size !== names.length) reject("names", "all different", names.join(", "));
   const clustered = rows[0]?.cluster !== undefined;

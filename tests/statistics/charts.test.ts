@@ -1,5 +1,5 @@
 import { describe, expect, it } from "vitest";
-import { cusumRunLength, exceedance, gChart, poissonCusum, uChart } from "~/statistics";
+import { cusumReference, cusumRunLength, exceedance, gChart, poissonCusum, uChart } from "~/statistics";
 import { drawPoisson, expectValue, makeRandom } from "./agreement";
 
 describe("uChart", () => {
@@ -68,8 +68,44 @@ describe("poissonCusum", () => {
     expect(poissonCusum(counts, { reference: 3, threshold: 6.9 }).signalAt).toBe(11);
   });
 
+  it("takes a reference for each week where exposures differ", () => {
+    const same = poissonCusum(counts, { reference: 3, threshold: 5 });
+    const each = poissonCusum(counts, { reference: counts.map(() => 3), threshold: 5 });
+    expect(each.path).toEqual(same.path);
+    expect(each.signalAt).toBe(same.signalAt);
+    // By hand: max(0, 2 - 1), max(0, 1 + 1 - 4), max(0, 0 + 6 - 2.5).
+    const uneven = poissonCusum([2, 1, 6], { reference: [1, 4, 2.5], threshold: 3 });
+    expect(uneven).toEqual({ reference: [1, 4, 2.5], path: [1, 0, 3.5], signalAt: 3 });
+    expect(() => poissonCusum([2, 1, 6], { reference: [1, 4], threshold: 3 })).toThrow(/^reference: /);
+    expect(() => poissonCusum([2, 1], { reference: [1, 0], threshold: 3 })).toThrow(/^reference\[1\]/);
+    expect(() => poissonCusum([2, 1], { reference: [], threshold: 3 })).toThrow(/^reference/);
+  });
+
+  it("is then the log likelihood ratio of each week's own means, in one unit", () => {
+    // Exposure 0.8, 1.5 and 1.1 thousand AE at 4 per thousand, a rise by half to be found.
+    const weeks = [0.8, 1.5, 1.1].map((exposure, index) => ({
+      mean: 4 * exposure,
+      count: [7, 9, 8][index] ?? 0,
+    }));
+    const reference = weeks.map(({ mean }) => cusumReference({ inControl: mean, outOfControl: 1.5 * mean }));
+    const { path } = poissonCusum(
+      weeks.map(({ count }) => count),
+      { reference, threshold: 10 },
+    );
+    const logLikelihood = weeks.reduce((sum, { mean, count }) => sum + count * Math.log(1.5) - 0.5 * mean, 0);
+    expect(path.at(-1)).toBeCloseTo(logLikelihood / Math.log(1.5), 10);
+  });
+
+  it("gives the reference alone [R]", () => {
+    expectValue(cusumReference({ inControl: 2, outOfControl: 4 }), "2.885390");
+    expectValue(cusumReference({ inControl: 4, outOfControl: 7 }), "5.360821");
+    expect(() => cusumReference({ inControl: 0, outOfControl: 4 })).toThrow(/^inControl/);
+    expect(() => cusumReference({ inControl: 4, outOfControl: 4 })).toThrow(/^outOfControl/);
+  });
+
   it("refuses a chart without a reference or one that looks for a fall", () => {
-    expect(() => poissonCusum(counts, { threshold: 5 })).toThrow(/^reference/);
+    const without: { reference: number; threshold: number } = JSON.parse('{"threshold":5}');
+    expect(() => poissonCusum(counts, without)).toThrow(/^reference/);
     expect(() => poissonCusum(counts, { inControl: 4, outOfControl: 2, threshold: 5 })).toThrow(
       /^outOfControl/,
     );

@@ -107,6 +107,34 @@ describe("incidenceRate", () => {
     expectInterval(incidenceRate({ events: 0, exposure: 1200 }), "0 (0–3.074066)");
   });
 
+  it.each([
+    ["all", 2821, 331_678, "8.51 (8.19–8.82)"],
+    ["practice", 1463, 251_225, "5.82 (5.53–6.12)"],
+    ["competition", 1358, 80_453, "16.88 (15.98–17.78)"],
+    ["Division I competition", 442, 22_981, "19.23 (17.44–21.03)"],
+  ])("explains the normal limits printed by PMC8293884 t01 [S], %s", (what, events, exposure, printed) => {
+    const { estimate } = incidenceRate({ events, exposure });
+    const margin = ((1.959963985 * Math.sqrt(events)) / exposure) * 1000;
+    expectInterval({ estimate, lower: estimate - margin, upper: estimate + margin }, printed, what);
+  });
+
+  it.each([
+    // LaBella 2011 (jamapediatrics 1107636): rates and AE [S], counts calculated back [R].
+    ["LaBella 2011, gradual onset, warm-up", 12, 28_023, "0.43"],
+    ["LaBella 2011, gradual onset, control", 28, 22_925, "1.22"],
+    ["LaBella 2011, acute non-contact, warm-up", 20, 28_023, "0.71"],
+    ["LaBella 2011, acute non-contact, control", 37, 22_925, "1.61"],
+    ["LaBella 2011, non-contact ankle, warm-up", 7, 28_023, "0.25"],
+    ["LaBella 2011, non-contact ankle, control", 17, 22_925, "0.74"],
+    ["LaBella 2011, surgery, warm-up", 0, 28_023, "0"],
+    ["LaBella 2011, surgery, control", 4, 22_925, "0.17"],
+    // Counts and rates [S], AE from memory [M].
+    ["Silvers-Granelli 2015, warm-up", 285, 35_226, "8.09"],
+    ["Silvers-Granelli 2015, control", 665, 44_212, "15.04"],
+  ])("%s: %i in %i AE is %s per 1000", (what, events, exposure, printed) => {
+    expectValue(incidenceRate({ events, exposure }).estimate, printed, what);
+  });
+
   it("differs from the normal limits some papers print (rate ± 1.96 √n / AE) [R]", () => {
     const { estimate, lower, upper } = incidenceRate({ events: 2821, exposure: 331_678 });
     const margin = (1.959963985 * Math.sqrt(2821)) / 331.678;

@@ -1,6 +1,7 @@
 import { describe, expect, it } from "vitest";
 import { coefficientRatio, designEffect, poissonRegression, rateTrend } from "~/statistics";
 import { expectInterval, expectValue } from "./agreement";
+import { teamMonths as months } from "./team-months";
 
 // British doctors, from memory [M]; results with R 4.2.2: glm(y ~ ... + offset(log(py)), poisson).
 const smokers = [
@@ -22,19 +23,13 @@ const doctors = [
   ...others.map(([events, exposure], band) => ({ events, exposure, smoker: 0, age: band + 1 })),
 ];
 
-// Twelve teams by three months; arm 1 is teams 1 to 6. Invented; results with R [R: glm, sandwich::vcovCL].
-const exposures =
-  "210,240,230|180,200,190|260,250,270|150,160,170|220,210,240|300,280,310|200,230,220|190,210,200|250,240,260|160,170,150|230,220,250|290,300,270";
-const injuries = "1,0,1|2,1,1|0,1,0|0,0,1|1,2,1|0,1,1|3,2,4|1,0,1|2,3,2|0,1,0|4,3,5|1,2,1";
-const table = (text: string) => text.split("|").map((team) => team.split(",").map(Number));
-const teamMonths = table(exposures).flatMap((team, index) =>
-  team.map((exposure, month) => ({
-    events: table(injuries)[index]?.[month] ?? -1,
-    exposure,
-    x: [index < 6 ? 1 : 0],
-    cluster: `team ${index + 1}`,
-  })),
-);
+// Results with R [R: glm, sandwich::vcovCL].
+const teamMonths = months.map(({ events, exposure, arm, cluster }) => ({
+  events,
+  exposure,
+  x: [arm],
+  cluster,
+}));
 
 const named = (model: ReturnType<typeof poissonRegression>, name: string) => {
   const found = model.coefficients.find((coefficient) => coefficient.name === name);

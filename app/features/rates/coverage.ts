@@ -6,8 +6,10 @@ export const stableFrom = 5;
 export const coverageWarning = 0.8;
 export const coverageFloor = 0.5;
 
+/** Sessions of one team, day and kind. */
 export type SessionTally = {
   teamId: string;
+  day: string;
   kind: "training" | "match";
   held: number;
   recorded: number;

@@ -1,8 +1,17 @@
 import type { AgeBand } from "~/statistics";
-import type { Sport } from "~db/schema/codes";
-import { sentenceCase, sportWords } from "../vocabulary";
+import { bodyAreas, contacts, movements, type Sport, sides, tissues } from "~db/schema/codes";
+import {
+  bodyAreaWords,
+  contactWords,
+  movementWords,
+  sentenceCase,
+  sideWords,
+  sportWords,
+  tissueWords,
+} from "../vocabulary";
 import { bandOf, type CountedSex, type ExposureCell, type InjuryRow } from "./counting";
-import type { Grouping } from "./filters";
+import type { Grouping, InjuryGrouping } from "./filters";
+import { monthsOf, monthWords, type SeasonDays, seasonOf } from "./periods";
 
 /** The groups of a table: their keys, their words, their order, and which cells and injuries fall in them. */
 
@@ -13,20 +22,31 @@ export type Group = {
   key: string;
   label: string;
   sex: CountedSex | null;
-  /** Words of the band, for the picture; null outside the grouping by age. */
+  /** Words of the band, for the picture; null outside the grouping by sex and age. */
   band: string | null;
   teamId: string | null;
 };
 
 /** What cells and injuries have in common, as far as groups go. */
-type Placed = { sex: CountedSex; age: number | null; teamId: string | null; kind: string | null };
+type Placed = {
+  day: string;
+  sex: CountedSex;
+  age: number | null;
+  teamId: string | null;
+  kind: string | null;
+  /** Only injuries have a kind of their own: cells are in none of its groups. */
+  injury?: Pick<InjuryRow, InjuryCode>;
+};
+type InjuryCode = "contact" | "movement" | "bodyArea" | "side" | "tissue";
 
 export const placeCell = (cell: ExposureCell): Placed => cell;
-export const placeInjury = ({ sex, age, teamId, sessionKind }: InjuryRow): Placed => ({
-  sex,
-  age,
-  teamId,
-  kind: sessionKind,
+export const placeInjury = (injury: InjuryRow): Placed => ({
+  day: injury.day,
+  sex: injury.sex,
+  age: injury.age,
+  teamId: injury.teamId,
+  kind: injury.sessionKind,
+  injury,
 });
 
 const sexes: readonly CountedSex[] = ["female", "male", "not_stated", "unknown"];
@@ -50,7 +70,14 @@ export function sexNames(teams: readonly RatedTeam[]): SexNames {
 
 const namesInBand = ({ to }: AgeBand) => (to !== null && to <= 18 ? young : adult);
 
-type Context = { bands: readonly Band[]; teams: readonly RatedTeam[] };
+type Context = {
+  bands: readonly Band[];
+  teams: readonly RatedTeam[];
+  seasons: readonly SeasonDays[];
+  /** The days looked at, from the first to the last. */
+  from: string;
+  to: string;
+};
 
 const group = (key: string, label: string, rest: Partial<Group> = {}): Group => ({
   key,
@@ -61,8 +88,22 @@ const group = (key: string, label: string, rest: Partial<Group> = {}): Group => 
   ...rest,
 });
 
+const notSaid = "not said";
+
+/** The groups of injuries alone: codes in their own order, then what was not said. */
+const injuryGroups: Record<InjuryGrouping, () => Group[]> = {
+  contact: () => [...contacts.map((code) => group(code, contactWords[code])), group("none", notSaid)],
+  movement: () => [...movements.map((code) => group(code, movementWords[code])), group("none", notSaid)],
+  tissue: () => [...tissues.map((code) => group(code, tissueWords[code])), group("none", notSaid)],
+  area: () => bodyAreas.map((code) => group(code, bodyAreaWords[code])),
+  "area-side": () =>
+    bodyAreas.flatMap((area) =>
+      sides.map((side) => group(`${area} ${side}`, `${bodyAreaWords[area]}, ${sideWords[side]}`)),
+    ),
+};
+
 /** Every possible group of a grouping in the order of its table; groups without exposure or injuries drop out later. */
-export function listGroups(by: Grouping, { bands, teams }: Context): Group[] {
+export function listGroups(by: Grouping, { bands, teams, seasons, from, to }: Context): Group[] {
   const names = sexNames(teams);
   if (by === "sex") return sexes.map((sex) => group(sex, names[sex], { sex }));
   if (by === "age")
@@ -92,13 +133,17 @@ export function listGroups(by: Grouping, { bands, teams }: Context): Group[] {
   }
   if (by === "kind")
     return [group("training", "training"), group("match", "matches"), group("none", "gradual, no session")];
-  return teams.map(({ id, name }) => ({ ...group(id, name, { teamId: id }), label: name }));
+  if (by === "month") return monthsOf(from, to).map((month) => group(month, monthWords(month)));
+  if (by === "season") return seasons.map(({ id, name }) => ({ ...group(id, name), label: name }));
+  if (by === "team")
+    return teams.map(({ id, name }) => ({ ...group(id, name, { teamId: id }), label: name }));
+  return injuryGroups[by]();
 }
 
 /** The key of the group that something falls in. */
-export function groupKey(by: Grouping, { bands, teams }: Context) {
+export function groupKey(by: Grouping, { bands, teams, seasons }: Omit<Context, "from" | "to">) {
   const sportOf = new Map(teams.map(({ id, sport }) => [id, sport]));
-  return ({ sex, age, teamId, kind }: Placed): string => {
+  return ({ day, sex, age, teamId, kind, injury }: Placed): string => {
     switch (by) {
       case "sex":
         return sex;
@@ -112,6 +157,18 @@ export function groupKey(by: Grouping, { bands, teams }: Context) {
         return kind ?? "none";
       case "team":
         return teamId ?? "none";
+      case "month":
+        return day.slice(0, 7);
+      case "season":
+        return seasonOf(day, seasons)?.id ?? "none";
+      case "area":
+        return injury?.bodyArea ?? "";
+      case "area-side":
+        return injury ? `${injury.bodyArea} ${injury.side}` : "";
+      case "contact":
+      case "movement":
+      case "tissue":
+        return injury ? (injury[by] ?? "none") : "";
     }
   };
 }

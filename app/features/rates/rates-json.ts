@@ -1,7 +1,8 @@
 import { stableFrom } from "./coverage";
-import type { RatesFilters } from "./filters";
-import type { RateRow } from "./rates";
+import { narrowingNames, type RatesFilters } from "./filters";
+import type { RateRow, Rates } from "./rates";
 import type { Incidence } from "./rates.server";
+import type { RatesView } from "./view.server";
 
 /** JSON has no infinity: a limit that does not exist is null. */
 const finite = (value: number) => (Number.isFinite(value) ? value : null);
@@ -23,7 +24,7 @@ function group(row: RateRow) {
   };
 }
 
-function comparison(compared: NonNullable<Incidence["rates"]>["comparison"]) {
+function comparison(compared: Rates["comparison"]) {
   if (!compared) return null;
   const { first, second, ratio } = compared;
   return {
@@ -37,23 +38,39 @@ function comparison(compared: NonNullable<Incidence["rates"]>["comparison"]) {
   };
 }
 
-/** The answer of the incidence API: the page's numbers with everything they need to be read. */
-export function incidenceJson({ viewing, period, rates, club }: Incidence, filters: RatesFilters) {
+const narrowingOf = (filters: RatesFilters) =>
+  Object.fromEntries(narrowingNames.map((name) => [name, filters[name]]));
+
+/**
+ * The answer of the incidence API: the page's numbers with everything they need to be read.
+ * @param view null while the organisation has no season
+ */
+export function incidenceJson(view: RatesView | null, incidence: Incidence | null, filters: RatesFilters) {
+  const { season = null, team = null } = view?.viewing ?? {};
+  const { rates = null, club = null } = incidence ?? {};
   return {
-    season: viewing.season && { id: viewing.season.id, name: viewing.season.name },
-    team: viewing.team && { id: viewing.team.id, name: viewing.team.name },
-    from: period?.from ?? null,
-    to: period?.to ?? null,
+    season: season && { id: season.id, name: season.name },
+    team: team && { id: team.id, name: team.name },
+    from: view?.period.from ?? null,
+    to: view?.period.to ?? null,
     caseDefinition: filters.injuries,
     sessions: filters.sessions,
+    narrowedTo: narrowingOf(filters),
     groupedBy: filters.by,
     unit: filters.per === "aes" ? "athlete-exposures" : "hours",
     unstableBelow: stableFrom,
     coverage: rates?.coverage ?? null,
+    reportedTeamWeeks: incidence?.reportedWeeks ?? null,
     groups: rates?.rows.map(group) ?? [],
     total: rates ? group(rates.total) : null,
     club: club && group(club),
     comparison: comparison(rates?.comparison ?? null),
-    leftOut: rates ? { injuries: rates.leftOut, sessions: rates.sessionsLeftOut } : null,
+    leftOut: rates
+      ? {
+          injuries: rates.leftOut,
+          sessions: rates.sessionsLeftOut,
+          exposureOfSilentTeams: rates.silentExposure,
+        }
+      : null,
   };
 }

@@ -3,10 +3,11 @@ import type { Tx } from "~db/client.server";
 import type { SessionTally } from "./coverage";
 import { countedGrade, inTeams, type Range } from "./exposure.queries.server";
 import type { Band, RatedTeam } from "./groups";
+import type { ConfirmedWeek } from "./silence";
 
 /** Sessions, teams and rules that rates stand on. What counts is said in counting.ts. */
 
-/** Trainings and matches by team and kind: how many took place, and with which grade of exposure. */
+/** Trainings and matches by team, day and kind: how many took place, and with which grade of exposure. */
 export async function tallySessions(tx: Tx, { from, to, teamIds }: Range): Promise<SessionTally[]> {
   const rows = await tx.execute<SessionTally>(sql`
     with tallied as (
@@ -21,7 +22,7 @@ export async function tallySessions(tx: Tx, { from, to, teamIds }: Range): Promi
         and s.day between ${from}::date and ${to}::date
         and s.kind in ('training', 'match') and ${inTeams(sql`s.team_id`, teamIds)}
     )
-    select team_id as "teamId", kind,
+    select team_id as "teamId", day::text as day, kind,
       (count(*) filter (where held))::int as held,
       (count(*) filter (where held and grade = 'recorded'))::int as recorded,
       (count(*) filter (where held and grade = 'headcount'))::int as headcount,
@@ -29,17 +30,17 @@ export async function tallySessions(tx: Tx, { from, to, teamIds }: Range): Promi
       (count(*) filter (where held and grade = 'none'))::int as "withoutExposure",
       (count(*) filter (where state = 'planned' and day < ${tx.scope.today}::date))::int as unconfirmed,
       (count(*) filter (where state = 'cancelled'))::int as cancelled
-    from tallied group by 1, 2`);
+    from tallied group by 1, 2, 3`);
   return [...rows];
 }
 
-/** Teams that confirmed for at least one week of the range that nobody was newly hurt. */
-export async function listConfirmingTeams(tx: Tx, { from, to, teamIds }: Range): Promise<string[]> {
-  const rows = await tx.execute<{ teamId: string }>(sql`
-    select distinct team_id as "teamId" from no_injury_weeks
+/** The team-weeks of the range in which somebody confirmed that nobody was newly hurt. */
+export async function listConfirmedWeeks(tx: Tx, { from, to, teamIds }: Range): Promise<ConfirmedWeek[]> {
+  const rows = await tx.execute<ConfirmedWeek>(sql`
+    select team_id as "teamId", week_start::text as week from no_injury_weeks
     where organisation_id = ${tx.scope.organisationId}::uuid
       and week_start between ${from}::date - 6 and ${to}::date and ${inTeams(sql`team_id`, teamIds)}`);
-  return rows.map(({ teamId }) => teamId);
+  return [...rows];
 }
 
 /** Every team that may have exposure, archived ones too: a season's rates keep the teams it had. */
@@ -51,10 +52,10 @@ export async function listRatedTeams(tx: Tx, teamIds: Range["teamIds"]): Promise
   return [...rows];
 }
 
-/** The organisation's age bands and its small number. */
+/** The organisation's name, age bands and small number. */
 export async function findCountingRules(tx: Tx) {
-  const [row] = await tx.execute<{ bands: Band[]; smallNumber: number }>(sql`
-    select age_bands as bands, small_number as "smallNumber" from organisations
+  const [row] = await tx.execute<{ name: string; bands: Band[]; smallNumber: number }>(sql`
+    select name, age_bands as bands, small_number as "smallNumber" from organisations
     where organisation_id = ${tx.scope.organisationId}::uuid`);
-  return row ?? { bands: [], smallNumber: 5 };
+  return row ?? { name: "", bands: [], smallNumber: 5 };
 }

@@ -1,9 +1,22 @@
 import { z } from "zod";
 import { DomainError } from "~/platform/errors";
-import { caseDefinitions, defaultFilters, groupings, sessionChoices, units } from "./filters";
+import { bodyAreas, sexes, sides, sports } from "~db/schema/codes";
+import {
+  caseDefinitions,
+  contactChoices,
+  defaultFilters,
+  groupings,
+  noNarrowing,
+  occurrences,
+  onsetChoices,
+  sessionChoices,
+  units,
+} from "./filters";
 
 const oneOf = <const T extends readonly [string, ...string[]]>(values: T) =>
   z.enum(values, { error: () => `Use one of: ${values.join(", ")}.` });
+
+const anyOr = <const T extends readonly string[]>(values: T) => oneOf(["any", ...values]).default("any");
 
 const viewing = {
   season: z.uuid({ error: () => "Give the id of a season." }).optional(),
@@ -16,10 +29,31 @@ export const ratesQuery = z.object({
   sessions: oneOf(sessionChoices).default(defaultFilters.sessions),
   by: oneOf(groupings).default(defaultFilters.by),
   per: oneOf(units).default(defaultFilters.per),
+  sex: anyOr(sexes),
+  sport: anyOr(sports),
+  /** The label of one of the organisation's bands: `readBand` holds it against them. */
+  age: z.string().max(40).default(noNarrowing.age),
+  area: anyOr(bodyAreas),
+  side: anyOr(sides),
+  contact: oneOf(contactChoices).default(noNarrowing.contact),
+  onset: oneOf(onsetChoices).default(noNarrowing.onset),
+  occurrence: oneOf(occurrences).default(noNarrowing.occurrence),
   ...viewing,
 });
 
 export type RatesQuery = z.output<typeof ratesQuery>;
+
+/**
+ * An age band of an address, held against those of the organisation.
+ * @throws DomainError invalid, naming the bands there are
+ */
+export function readBand(label: string, labels: readonly string[]): string {
+  const known = ["any", ...labels, "unknown"];
+  if (known.includes(label)) return label;
+  throw new DomainError("invalid", `This address asks for an age band that there is not.`, {
+    fields: { age: [`Use one of: ${known.join(", ")}.`] },
+  });
+}
 
 /** The API refuses a parameter that it does not know: a misspelt filter must never answer with other numbers. */
 const strictRatesQuery = z.strictObject(ratesQuery.shape);

@@ -1,24 +1,10 @@
+import { group } from "d3-array";
 import { type Estimate, incidenceRate, type RateRatio, rateRatio } from "~/statistics";
-import {
-  countInjuries,
-  denominator,
-  type ExposureByUnit,
-  type ExposureCell,
-  type InjuryRow,
-  kindsOf,
-  sumExposure,
-} from "./counting";
+import { denominator, type ExposureByUnit, sumExposure } from "./counting";
 import { type Coverage, coverageOf, percent, type SessionTally, stableFrom } from "./coverage";
-import type { RatesFilters, RateUnit } from "./filters";
-import {
-  type Band,
-  type Group,
-  groupKey,
-  listGroups,
-  placeCell,
-  placeInjury,
-  type RatedTeam,
-} from "./groups";
+import { type RatesFilters, type RateUnit, splitsExposure } from "./filters";
+import { type Group, groupKey, listGroups, placeCell, placeInjury } from "./groups";
+import { type Counts, type Selection, select } from "./selection";
 
 /** Rates of a view from its counts. Pure; every figure comes from ~/statistics. */
 
@@ -35,22 +21,12 @@ export type RateRow = Group & {
 
 export type Comparison = { first: RateRow; second: RateRow; ratio: RateRatio | null };
 
-export type Counts = {
-  cells: readonly ExposureCell[];
-  injuries: readonly InjuryRow[];
-  sessions: readonly SessionTally[];
-  teams: readonly RatedTeam[];
-  /** Teams that confirmed at least one week without a new injury. */
-  confirming: readonly string[];
-  bands: readonly Band[];
-};
-
 const unitWords: Record<RateUnit, string> = { aes: "athlete-exposures", hours: "exposure hours" };
 
 type Figures = { group: Group; events: number; exposure: ExposureByUnit; unit: RateUnit; coverage: Coverage };
 
 /** One row: its rate, or the reason why it has none. */
-function rateRow({ group, events, exposure, unit, coverage }: Figures): RateRow {
+export function rateRow({ group, events, exposure, unit, coverage }: Figures): RateRow {
   const amount = denominator(exposure, unit);
   const counted = { ...group, injuries: events, exposure, denominator: amount };
   if (amount <= 0)
@@ -79,6 +55,8 @@ function rateRow({ group, events, exposure, unit, coverage }: Figures): RateRow 
 const unreported = (row: RateRow): RateRow => ({
   ...row,
   injuries: null,
+  denominator: null,
+  exposure: null,
   rate: null,
   reason: "not reported: no injury entered, no week confirmed as without one",
   unstable: false,
@@ -106,35 +84,49 @@ function compare(rows: readonly RateRow[]): Comparison | null {
   return { first, second, ratio: a.events + b.events === 0 ? null : rateRatio(a, b) };
 }
 
+export type { Counts } from "./selection";
+
 export type Rates = Omit<ReturnType<typeof computeRates>, "counted">;
+
+/** The sessions that say how much of a group's exposure is recorded: those of its team or of its days. */
+function sessionsOf(group: Group, by: RatesFilters["by"], counts: Counts, sessions: readonly SessionTally[]) {
+  if (by === "team") return sessions.filter(({ teamId }) => teamId === group.teamId);
+  if (by === "kind") return sessions.filter(({ kind }) => kind === group.key || group.key === "none");
+  if (by !== "month" && by !== "season") return sessions;
+  const keyOf = groupKey(by, counts);
+  const place = { sex: "unknown", age: null, teamId: null, kind: null } as const;
+  return sessions.filter(({ day }) => keyOf({ ...place, day }) === group.key);
+}
+
+/** The rows of one grouping; groups with neither exposure nor injuries drop out. */
+export function tabulate(
+  grouping: RatesFilters["by"],
+  counts: Counts,
+  selection: Selection,
+  unit: RateUnit,
+): RateRow[] {
+  const { cells, counted, silent, sessions } = selection;
+  const keyOf = groupKey(grouping, counts);
+  const keyed = group(cells, (cell) => keyOf(placeCell(cell)));
+  const events = group(counted, (injury) => keyOf(placeInjury(injury)));
+  return listGroups(grouping, counts).flatMap((each) => {
+    const own = splitsExposure(grouping) ? (keyed.get(each.key) ?? []) : cells;
+    const injuries = events.get(each.key)?.length ?? 0;
+    const isEmpty = injuries === 0 && (own.length === 0 || !splitsExposure(grouping));
+    const isSilent = each.teamId !== null && silent.some(({ teamId }) => teamId === each.teamId);
+    if (isEmpty && !isSilent) return [];
+    const coverage = coverageOf(sessionsOf(each, grouping, counts, sessions));
+    const row = rateRow({ group: each, events: injuries, exposure: sumExposure(own), unit, coverage });
+    return [isEmpty ? unreported(row) : row];
+  });
+}
 
 /** Everything a view of rates shows, from its counts and filters. */
 export function computeRates(counts: Counts, filters: RatesFilters) {
   const { by, per: unit } = filters;
-  const rules = { definition: filters.injuries, sessions: filters.sessions, unit };
-  const kinds: readonly string[] = kindsOf[filters.sessions];
-  const cells = counts.cells.filter(({ kind }) => kinds.includes(kind));
-  const sessions = counts.sessions.filter(({ kind }) => kinds.includes(kind));
-  const { counted, leftOut } = countInjuries(counts.injuries, rules);
-  const coverage = coverageOf(sessions);
-
-  const tabulate = (grouping: RatesFilters["by"]): RateRow[] => {
-    const keyOf = groupKey(grouping, counts);
-    return listGroups(grouping, counts).flatMap((group) => {
-      const own = cells.filter((cell) => keyOf(placeCell(cell)) === group.key);
-      const events = counted.filter((injury) => keyOf(placeInjury(injury)) === group.key).length;
-      if (own.length === 0 && events === 0) return [];
-      const ofTeam = group.teamId && coverageOf(sessions.filter(({ teamId }) => teamId === group.teamId));
-      const row = rateRow({ group, events, exposure: sumExposure(own), unit, coverage: ofTeam || coverage });
-      const isSilent =
-        group.teamId !== null &&
-        !counts.confirming.includes(group.teamId) &&
-        !counts.injuries.some(({ teamId, withdrawn }) => teamId === group.teamId && !withdrawn);
-      return [isSilent ? unreported(row) : row];
-    });
-  };
-
-  const rows = tabulate(by);
+  const selection = select(counts, filters);
+  const { cells, counted, leftOut, sessions, coverage } = selection;
+  const rows = tabulate(by, counts, selection, unit);
   const whole = { key: "total", label: "All together", sex: null, band: null, teamId: null };
   const total = rateRow({
     group: whole,
@@ -143,7 +135,7 @@ export function computeRates(counts: Counts, filters: RatesFilters) {
     unit,
     coverage,
   });
-  const compared = by === "kind" ? rows : tabulate("sex");
+  const compared = by === "kind" ? rows : tabulate("sex", counts, selection, unit);
   const sum = (name: "unconfirmed" | "cancelled" | "withoutExposure" | "estimated") =>
     sessions.reduce((all, row) => all + row[name], 0);
   return {
@@ -164,5 +156,7 @@ export function computeRates(counts: Counts, filters: RatesFilters) {
       /** Only per athlete-exposures: these matches have hours alone. */
       estimated: unit === "aes" ? sum("estimated") : 0,
     },
+    /** Exposure of teams that reported nothing, in the unit of the view. */
+    silentExposure: denominator(sumExposure(selection.silent), unit),
   };
 }

@@ -2,6 +2,7 @@ import { stableFrom } from "./coverage";
 import { decimalsFor, formatCount, formatRate, formatRatio } from "./figures";
 import type { RatesFilters, RateUnit } from "./filters";
 import type { Comparison, RateRow, Rates } from "./rates";
+import type { ReportedWeeks } from "./silence";
 
 /** The sentence that answers the page's question, in parts that the page sets in type and a test can read. */
 export type Part = { text: string; as: "plain" | "strong" | "interval" | "attention" };
@@ -122,13 +123,20 @@ export const sessionsNote: Record<RatesFilters["sessions"], string> = {
 const countWords = ["No", "One", "Two", "Three", "Four", "Five", "Six", "Seven", "Eight", "Nine", "Ten"];
 
 /** The smaller line under the sentence: coverage, what is unstable, the definition. */
-export function writeNote(rates: Rates, filters: RatesFilters): Part[] {
+export function writeNote(rates: Rates, filters: RatesFilters, weeks?: ReportedWeeks): Part[] {
   const { coverage, rows } = rates;
   const share = coverage.share === null ? null : `${Math.floor(coverage.share * 100)} %`;
   const unstable = rows.filter(({ unstable: few }) => few).length;
   const words = countWords[unstable] ?? String(unstable);
   return [
     ...(share ? [plain(`${share} of held sessions have recorded exposure. `)] : []),
+    ...(weeks && weeks.all > 0
+      ? [
+          plain(
+            `In ${formatCount(weeks.reported)} of ${formatCount(weeks.all)} team-weeks an injury was entered or none confirmed. `,
+          ),
+        ]
+      : []),
     ...(unstable > 0
       ? [
           attention(unstable === 1 ? "One group is unstable" : `${words} groups are unstable`),

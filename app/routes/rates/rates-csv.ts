@@ -1,11 +1,9 @@
 import { fixedFilters } from "~/features/rates/filters";
-
-import { parseRatesQuery } from "~/features/rates/rates.schema";
 import { fixedTablesOf, incidenceOf, seesRates } from "~/features/rates/rates.server";
 import { type CsvContext, writeRatesCsv } from "~/features/rates/rates-csv";
+import { loadRates } from "~/features/rates/view.server";
 import { memberLoader } from "~/middleware/handlers.server";
 import { notFound } from "~/platform/errors";
-import { read } from "~db/client.server";
 import type { Route } from "./+types/rates-csv";
 
 /** The numbers of the page as a file, under the same filters and the same rules of small numbers. */
@@ -19,13 +17,16 @@ export const loader = memberLoader(async ({ scope, url }) => {
     }));
     return answer(tables, { ...period, organisation: scope.organisationName, team: "all teams", ...fixed });
   }
-  const filters = parseRatesQuery(url.searchParams);
-  const { viewing, period, rates, club } = await read(scope, (tx) => incidenceOf(tx, url, filters));
-  if (!period || !rates) throw notFound("A season with rates");
-  const team = viewing.team?.name ?? (scope.teams === "all" ? "all teams" : "own teams");
+  const { frame, data } = await loadRates(scope, url, async (tx, view) => ({
+    ...(await incidenceOf(tx, view)),
+    team: view.viewing.team?.name ?? (scope.teams === "all" ? "all teams" : "own teams"),
+  }));
+  if (!frame) throw notFound("A season with rates");
+  const { rates, club, team } = data;
   const rows = [...rates.rows, rates.total, ...(club ? [club] : [])];
-  const { coverage } = rates;
-  return answer([{ filters, rows }], { ...period, organisation: scope.organisationName, team, coverage });
+  const { season, from, to, organisation, filters } = frame;
+  const context = { season, from, to, organisation, team, coverage: rates.coverage };
+  return answer([{ filters, rows }], context);
 }) satisfies (args: Route.LoaderArgs) => unknown;
 
 function answer(tables: Parameters<typeof writeRatesCsv>[0], context: CsvContext) {

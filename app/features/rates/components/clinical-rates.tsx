@@ -1,41 +1,37 @@
+import { useLocation } from "react-router";
 import { Lede, LinkRow, Region, TextLink } from "~/ui";
-import type { RatesFilters } from "../filters";
+import { injuriesInWords } from "../filter-words";
+import { splitsExposure } from "../filters";
 import type { RateRow } from "../rates";
 import type { Incidence } from "../rates.server";
 import { unitWords, writeNote, writeSentence } from "../sentence";
+import { searchWith } from "../views";
 import { CoverageNote } from "./coverage-note";
-import { FilterSentence } from "./filter-sentence";
 import { HowComputed } from "./how-computed";
 import { LeftOut } from "./left-out";
+import type { Frame } from "./rates-frame";
 import { RatesPicture } from "./rates-picture";
 import { RatesTable } from "./rates-table";
 import { SentenceParts } from "./sentence-parts";
 
-type Props = {
-  incidence: Incidence & { rates: NonNullable<Incidence["rates"]>; period: NonNullable<Incidence["period"]> };
-  filters: RatesFilters;
-  scopeName: string;
-  csvHref: string;
-  injuriesHref: string;
-};
+const capital = (words: string) => words.charAt(0).toUpperCase() + words.slice(1);
 
-const definitionTitles: Record<RatesFilters["injuries"], string> = {
-  "time-loss": "Injuries with time loss",
-  "medical-attention": "Injuries that needed attention",
-};
-
-/** The rates of the clinical roles: the sentence, the picture, the table, and what is left out. */
-export function ClinicalRates({ incidence, filters, scopeName, csvHref, injuriesHref }: Props) {
-  const { rates, club, period } = incidence;
-  const title = `${definitionTitles[filters.injuries]} per ${unitWords[filters.per]}, ${period.season}`;
+/** The incidence of the clinical roles: the sentence, the picture, the table, and what is left out. */
+export function ClinicalRates({ frame, incidence }: { frame: Frame; incidence: Incidence }) {
+  const { search } = useLocation();
+  const { rates, club, reportedWeeks } = incidence;
+  const { filters, scopeName, slug } = frame;
+  const season = filters.by === "season" ? "all seasons" : frame.season;
+  const title = `${capital(injuriesInWords(filters))} per ${unitWords[filters.per]}, ${season}`;
   const reference: RateRow = club ?? rates.total;
   const total = { ...rates.total, label: club ? scopeName : "All together" };
   const counted = rates.total.injuries ?? 0;
   const hasRates = rates.rows.some(({ rate }) => rate);
+  const recordsOf = (changes: Record<string, string>) =>
+    `/${slug}/rates/records${searchWith(search, { by: filters.by, ...changes })}`;
   return (
     <>
-      <FilterSentence filters={filters} />
-      <Lede note={<SentenceParts parts={writeNote(rates, filters)} />}>
+      <Lede note={<SentenceParts parts={writeNote(rates, filters, reportedWeeks)} />}>
         <SentenceParts parts={writeSentence(rates, filters, scopeName)} />
       </Lede>
       <CoverageNote coverage={rates.coverage} />
@@ -44,7 +40,8 @@ export function ClinicalRates({ incidence, filters, scopeName, csvHref, injuries
           <RatesPicture
             rows={rates.rows}
             by={filters.by}
-            reference={reference}
+            // Groups of injuries share one exposure: the whole's rate is their sum, not a yardstick.
+            reference={splitsExposure(filters.by) ? reference : null}
             referenceName="all teams"
             title={`${title}: rates with their 95 % intervals; the table below holds the numbers.`}
           />
@@ -55,13 +52,18 @@ export function ClinicalRates({ incidence, filters, scopeName, csvHref, injuries
         rows={rates.rows}
         totals={club ? [total, club] : [total]}
         unit={filters.per}
+        recordsOf={(row) => recordsOf({ group: row.key })}
       />
       <LinkRow>
-        <a href={csvHref} download className="text-lagoon underline underline-offset-4">
+        <a
+          href={`/${slug}/rates.csv${searchWith(search)}`}
+          download
+          className="text-lagoon underline underline-offset-4"
+        >
           Download this table (CSV)
         </a>
         {counted > 0 ? (
-          <TextLink to={injuriesHref}>
+          <TextLink to={recordsOf({})}>
             {counted === 1
               ? "The injury behind it"
               : `The ${counted.toLocaleString("en-GB")} injuries behind it`}
@@ -76,7 +78,12 @@ export function ClinicalRates({ incidence, filters, scopeName, csvHref, injuries
       ) : null}
       <HowComputed filters={filters} />
       <Region heading="What is left out">
-        <LeftOut leftOut={rates.leftOut} sessionsLeftOut={rates.sessionsLeftOut} />
+        <LeftOut
+          leftOut={rates.leftOut}
+          sessionsLeftOut={rates.sessionsLeftOut}
+          silentExposure={rates.silentExposure}
+          unit={filters.per}
+        />
       </Region>
     </>
   );

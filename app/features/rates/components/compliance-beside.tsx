@@ -72,6 +72,7 @@ const columns: Column<TeamWarmUps>[] = [
 /** Warm-up session compliance by team, to be read beside the injury rates. */
 export function ComplianceBeside({ teams }: { teams: TeamWarmUps[] }) {
   const rows = useMemo(() => teams.filter(({ ofHeld }) => ofHeld.trials > 0), [teams]);
+  if (teams.length === 0) return null;
   return (
     <Region heading="The warm-up beside it">
       <p className="max-w-prose text-soft">

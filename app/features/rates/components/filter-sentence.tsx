@@ -1,64 +1,35 @@
-import { Link, useLocation } from "react-router";
-import {
-  type CaseDefinition,
-  defaultFilters,
-  type Grouping,
-  type RatesFilters,
-  type RateUnit,
-  type SessionChoice,
-} from "../filters";
+import { Form, Link, useLocation } from "react-router";
+import { Button } from "~/ui";
+import { injuriesInWords, narrowingChoices, partWords, peopleInWords } from "../filter-words";
+import { defaultFilters, type Narrowing, narrowingNames, noNarrowing, type RatesFilters } from "../filters";
+import { searchWith } from "../views";
 
-const words = {
-  injuries: {
-    "time-loss": "all injuries with time loss",
-    "medical-attention": "all injuries that needed attention",
-  } satisfies Record<CaseDefinition, string>,
-  sessions: {
-    "training-and-matches": "training and matches",
-    training: "training",
-    match: "matches",
-  } satisfies Record<SessionChoice, string>,
-  by: {
-    "sex-age": "sex and age band",
-    sex: "sex",
-    age: "age band",
-    sport: "sport",
-    kind: "session kind",
-    team: "team",
-  } satisfies Record<Grouping, string>,
-  per: { aes: "1000 athlete-exposures", hours: "1000 hours" } satisfies Record<RateUnit, string>,
-};
+export type FilterPart = keyof typeof partWords;
 
-type Name = keyof typeof words;
+type Choices = { filters: RatesFilters; bands: readonly string[]; sports: readonly string[] };
 
-function useChanged() {
-  const { pathname, search } = useLocation();
-  return (name: Name, value: string) => {
-    const params = new URLSearchParams(search);
-    if (value === defaultFilters[name]) params.delete(name);
-    else params.set(name, value);
-    params.delete("sort");
-    const text = params.toString();
-    return text ? `${pathname}?${text}` : pathname;
-  };
-}
+const summaryClasses = "inline-flex min-h-target cursor-pointer list-none items-center";
+const floating =
+  "absolute left-0 z-30 w-72 max-w-[calc(100vw-3rem)] rounded-md border border-line bg-paper p-1 font-normal text-ink shadow-float";
 
 /** One editable part of the sentence: its value, and the others as links, so that it works without script. */
-function Part({ name, filters, label }: { name: Name; filters: RatesFilters; label: string }) {
-  const changed = useChanged();
-  const options: Record<string, string> = words[name];
+function Part({ name, filters, label }: { name: FilterPart; filters: RatesFilters; label: string }) {
+  const { pathname, search } = useLocation();
+  const options: Record<string, string> = partWords[name];
   const current: string = filters[name];
+  const to = (value: string) =>
+    pathname + searchWith(search, { [name]: value === defaultFilters[name] ? undefined : value });
   return (
     <details key={current} name="rates-filter" className="relative inline-block">
-      <summary className="inline-flex min-h-target cursor-pointer list-none items-center">
+      <summary className={summaryClasses}>
         <span className="sr-only">{label}: </span>
         <span className="editable-word font-semibold">{options[current]}</span>
       </summary>
-      <ul className="absolute left-0 z-30 w-72 max-w-[calc(100vw-3rem)] rounded-md border border-line bg-paper p-1 font-normal text-ink shadow-float">
+      <ul className={`${floating} max-h-[70vh] overflow-y-auto`}>
         {Object.entries(options).map(([value, text]) => (
           <li key={value}>
             <Link
-              to={changed(name, value)}
+              to={to(value)}
               preventScrollReset
               aria-current={value === current ? "true" : undefined}
               className="flex min-h-target items-center rounded-md px-3 text-ink no-underline hover:bg-lagoon-wash aria-[current=true]:font-semibold"
@@ -72,14 +43,112 @@ function Part({ name, filters, label }: { name: Name; filters: RatesFilters; lab
   );
 }
 
-/** "Showing all injuries with time loss in training and matches, by sex and age band, per 1000 athlete-exposures". */
-export function FilterSentence({ filters }: { filters: RatesFilters }) {
+function NarrowField({ name, choices, value }: { name: string; choices: ChoiceList; value: string }) {
+  return (
+    <label className="block">
+      <span className="block text-sm text-soft">{choices.label}</span>
+      <select
+        name={name}
+        defaultValue={value}
+        className="min-h-target w-full rounded-md border border-edge bg-paper px-2 text-ink"
+      >
+        {choices.options.map((option) => (
+          <option key={option.value} value={option.value}>
+            {option.label}
+          </option>
+        ))}
+      </select>
+    </label>
+  );
+}
+type ChoiceList = ReturnType<typeof narrowingChoices>[keyof Narrowing];
+
+/** What narrows the view further, in one form; what is set stands in the sentence. */
+function Narrow({ filters, bands, sports }: Choices) {
+  const { search } = useLocation();
+  const choices = narrowingChoices(bands, sports);
+  const kept = [...new URLSearchParams(searchWith(search))].filter(([name]) => !(name in noNarrowing));
+  const isNarrowed = narrowingNames.some((name) => filters[name] !== noNarrowing[name]);
+  return (
+    <details
+      key={narrowingNames.map((name) => filters[name]).join()}
+      name="rates-filter"
+      className="relative inline-block"
+    >
+      <summary className={summaryClasses}>
+        <span className="editable-word font-semibold">{isNarrowed ? "narrowed" : "narrow further"}</span>
+      </summary>
+      <Form method="get" preventScrollReset className={`${floating} space-y-2 p-4`}>
+        {kept.map(([name, value]) => (
+          <input key={name} type="hidden" name={name} value={value} />
+        ))}
+        {narrowingNames.map((name) => (
+          <NarrowField key={name} name={name} choices={choices[name]} value={filters[name]} />
+        ))}
+        <div className="flex items-center gap-4 pt-2">
+          <Button type="submit">Show</Button>
+          {isNarrowed ? (
+            <Link
+              to={
+                searchWith(search, Object.fromEntries(narrowingNames.map((name) => [name, undefined]))) || "?"
+              }
+              preventScrollReset
+              className="inline-flex min-h-target items-center"
+            >
+              Everything again
+            </Link>
+          ) : null}
+        </div>
+      </Form>
+    </details>
+  );
+}
+
+const labels: Record<FilterPart, string> = {
+  injuries: "Case definition",
+  sessions: "Sessions",
+  by: "Groups",
+  per: "Unit",
+};
+
+/** The narrowing in words, before the parts that every view has: "Only non-contact knee injuries, girls in soccer." */
+function Narrowed({ filters }: { filters: RatesFilters }) {
+  const what = injuriesInWords({ ...filters, injuries: "time-loss" }).replace(" with time loss", "");
+  const who = peopleInWords(filters);
+  const side =
+    filters.side === "any" || ["left", "right"].includes(filters.side) ? "" : `, ${filters.side} side`;
+  if (what === "injuries" && !who && !side) return null;
+  return (
+    <span className="text-ink">
+      Only {what}
+      {side}
+      {who ? `, ${who}` : ""}.{" "}
+    </span>
+  );
+}
+
+/**
+ * "Showing injuries with time loss in training and matches, by sex and age band, per 1000 athlete-exposures".
+ * @param parts those that the view can change; the case definition and the sessions stand in every one
+ */
+export function FilterSentence({
+  parts,
+  narrow = true,
+  ...choices
+}: Choices & { parts: readonly FilterPart[]; narrow?: boolean }) {
+  const { filters } = choices;
+  const part = (name: FilterPart) => <Part name={name} filters={filters} label={labels[name]} />;
   return (
     <div className="mb-3 text-soft max-sm:leading-tight print:mb-1" data-filters>
-      Showing <Part name="injuries" label="Case definition" filters={filters} /> in{" "}
-      <Part name="sessions" label="Sessions" filters={filters} />, by{" "}
-      <Part name="by" label="Groups" filters={filters} />, per{" "}
-      <Part name="per" label="Unit" filters={filters} />
+      <Narrowed filters={filters} />
+      Showing {part("injuries")} in {part("sessions")}
+      {parts.includes("by") ? <>, by {part("by")}</> : null}
+      {parts.includes("per") ? <>, per {part("per")}</> : null}
+      {narrow ? (
+        <>
+          ; <Narrow {...choices} />
+        </>
+      ) : null}
     </div>
   );
 }

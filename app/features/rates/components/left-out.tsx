@@ -1,11 +1,13 @@
 import { type Column, DataTable } from "~/ui/data-table";
+import { formatCount } from "../figures";
+import type { RateUnit } from "../filters";
 import type { Rates } from "../rates";
 
 type Line = { key: string; what: string; count: number };
 
 const columns: Column<Line>[] = [
   { id: "what", header: "What and why", rowHeader: true, cell: ({ what }) => what },
-  { id: "count", header: "Number", numeric: true, cell: ({ count }) => count.toLocaleString("en-GB") },
+  { id: "count", header: "Number", numeric: true, cell: ({ count }) => formatCount(count) },
 ];
 
 const sessionWords: Record<keyof Rates["sessionsLeftOut"], string> = {
@@ -16,7 +18,12 @@ const sessionWords: Record<keyof Rates["sessionsLeftOut"], string> = {
 };
 
 /** What the rates leave out, counted, each with its reason. */
-export function LeftOut({ leftOut, sessionsLeftOut }: Pick<Rates, "leftOut" | "sessionsLeftOut">) {
+export function LeftOut({
+  leftOut,
+  sessionsLeftOut,
+  silentExposure,
+  unit,
+}: Pick<Rates, "leftOut" | "sessionsLeftOut" | "silentExposure"> & { unit: RateUnit }) {
   const injuries = leftOut.map(({ reason, words, count }) => ({
     key: reason,
     what: `Injuries: ${words[0]?.toLowerCase()}${words.slice(1)}`,
@@ -27,13 +34,18 @@ export function LeftOut({ leftOut, sessionsLeftOut }: Pick<Rates, "leftOut" | "s
     what,
     count: sessionsLeftOut[key as keyof Rates["sessionsLeftOut"]],
   }));
+  const silent = {
+    key: "silent",
+    what: `${unit === "aes" ? "Athlete-exposures" : "Hours"} of teams that entered no injury and confirmed no week without one`,
+    count: silentExposure,
+  };
   return (
     <div className="max-w-[46rem]">
       <DataTable
         captionHidden
         caption="What is left out of these rates"
         columns={columns}
-        rows={[...injuries, ...sessions].filter(({ count }) => count > 0)}
+        rows={[...injuries, ...sessions, silent].filter(({ count }) => count > 0)}
         rowKey={({ key }) => key}
         empty="Nothing: every injury and every session of the season is in these rates."
       />

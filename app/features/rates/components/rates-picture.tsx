@@ -9,7 +9,7 @@ const IntervalChart = lazy(() => import("~/ui/charts/interval-chart"));
 
 type Props = {
   rows: RateRow[];
-  reference: RateRow;
+  reference: RateRow | null;
   referenceName: string;
   by: RatesFilters["by"];
   title: string;
@@ -32,7 +32,7 @@ export function RatesPicture({ rows, reference, referenceName, by, title }: Prop
           decimals={decimals}
           // Room behind the longest interval for its words.
           max={axisEnd(rows) * 1.1}
-          {...(reference.rate
+          {...(reference?.rate
             ? {
                 reference: {
                   value: reference.rate.estimate,

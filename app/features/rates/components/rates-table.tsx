@@ -1,4 +1,5 @@
 import { useMemo } from "react";
+import { Link } from "react-router";
 import { formatTick, niceScale, RateAxis, RateBar } from "~/ui";
 import { type Column, DataTable } from "~/ui/data-table";
 import { decimalsFor, formatCount, formatRate } from "../figures";
@@ -12,8 +13,9 @@ type Props = {
   /** Rows that stay below the others in any order: the total, the club. */
   totals: RateRow[];
   unit: RateUnit;
-  csvHref?: string;
   sortParam?: string;
+  /** The address of the records behind a row; a row of the whole club or of nothing has none. */
+  recordsOf?: (row: RateRow) => string;
 };
 
 type Line = RateRow & { isTotal: boolean };
@@ -51,7 +53,23 @@ function intervalCell({ rate, reason }: RateRow, decimals: number) {
   );
 }
 
-function columnsOf(lines: readonly Line[], unit: RateUnit): Column<Line>[] {
+/** The count of a row, with the way to the injuries behind it. */
+function countCell({ injuries, key, ...row }: Line, recordsOf: Props["recordsOf"]) {
+  if (injuries === null) return dash;
+  const text = formatCount(injuries);
+  if (!recordsOf || row.isTotal || injuries === 0) return text;
+  return (
+    <Link
+      to={recordsOf({ injuries, key, ...row })}
+      aria-label={`${text}: the injuries of ${row.label}`}
+      className="text-ink underline decoration-line underline-offset-4"
+    >
+      {text}
+    </Link>
+  );
+}
+
+function columnsOf(lines: readonly Line[], unit: RateUnit, recordsOf: Props["recordsOf"]): Column<Line>[] {
   const decimals = decimalsFor(lines.flatMap(({ rate }) => rate?.estimate ?? []));
   const scale = niceScale(axisEnd(lines), 4);
   const unitWords = unit === "aes" ? "per 1000 athlete-exposures" : "per 1000 hours";
@@ -72,7 +90,7 @@ function columnsOf(lines: readonly Line[], unit: RateUnit): Column<Line>[] {
       header: "Injuries",
       numeric: true,
       value: sorts(({ injuries }) => injuries),
-      cell: ({ injuries }) => (injuries === null ? dash : formatCount(injuries)),
+      cell: (line) => countCell(line, recordsOf),
     },
     {
       id: "exposure",
@@ -116,7 +134,7 @@ function columnsOf(lines: readonly Line[], unit: RateUnit): Column<Line>[] {
 }
 
 /** The same numbers as the picture, sortable, with their intervals on one axis. */
-export function RatesTable({ caption, rows, totals, unit, csvHref, sortParam }: Props) {
+export function RatesTable({ caption, rows, totals, unit, sortParam, recordsOf }: Props) {
   const lines = useMemo(
     () => [
       ...rows.map((row): Line => ({ ...row, isTotal: false })),
@@ -124,7 +142,7 @@ export function RatesTable({ caption, rows, totals, unit, csvHref, sortParam }: 
     ],
     [rows, totals],
   );
-  const columns = useMemo(() => columnsOf(lines, unit), [lines, unit]);
+  const columns = useMemo(() => columnsOf(lines, unit, recordsOf), [lines, unit, recordsOf]);
   return (
     <DataTable
       caption={caption}
@@ -132,7 +150,6 @@ export function RatesTable({ caption, rows, totals, unit, csvHref, sortParam }: 
       rows={lines}
       rowKey={({ key, isTotal }) => (isTotal ? `total ${key}` : key)}
       empty="No exposure and no injuries yet."
-      {...(csvHref ? { csvHref } : {})}
       {...(sortParam ? { sortParam } : {})}
     />
   );

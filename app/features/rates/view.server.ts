@@ -1,0 +1,154 @@
+import type { MemberScope } from "~/features/accounts/scope.server";
+import { resolveViewing, type Season, type Viewing, viewedTeamIds } from "~/features/accounts/viewing.server";
+import { read, type Scope, type Tx } from "~db/client.server";
+import type { Frame } from "./components/rates-frame";
+import { type Range, sumExposureCells } from "./exposure.queries.server";
+import type { RatesFilters } from "./filters";
+import { listInjuryRows } from "./injury-rows.queries.server";
+import { findCountingRules, listConfirmedWeeks, listRatedTeams, tallySessions } from "./rates.queries.server";
+import { parseRatesQuery, type RatesQuery, readBand } from "./rates.schema";
+import type { Counts } from "./selection";
+import { splitSilent } from "./silence";
+
+/** What every view of rates begins with: whose days are looked at, and their counts. */
+
+/** Days up to today, with the name of what they are. */
+export type Period = { from: string; to: string; season: string };
+
+const upTo = (day: string, today: string) => (day < today ? day : today);
+
+export const periodOf = ({ season }: Pick<Viewing, "season">, today: string): Period | null =>
+  season && { from: season.startsOn, to: upTo(season.endsOn, today), season: season.name };
+
+/** The teams a view is of: null is every team, archived ones too, which only a person of all teams sees. */
+export const teamsOf = (viewing: Viewing, scope: Scope): Range["teamIds"] =>
+  viewing.team === null && scope.teams === "all" ? null : viewedTeamIds(viewing);
+
+/** A season's own days that lie in the past or are today; null when it has not begun. */
+function daysOf({ startsOn, endsOn }: Season, today: string) {
+  return startsOn > today ? null : { from: startsOn, to: upTo(endsOn, today) };
+}
+
+/**
+ * The counts of some seasons together. Silence is judged season by season: a team that reported last year may be
+ * silent in this one.
+ * @param seasons in any order; those that have not begun count nothing
+ */
+export async function countSeasons(
+  tx: Tx,
+  seasons: readonly Season[],
+  teamIds: Range["teamIds"],
+): Promise<Counts & { smallNumber: number }> {
+  const { bands, smallNumber } = await findCountingRules(tx);
+  const begun = seasons.filter(({ startsOn }) => startsOn <= tx.scope.today);
+  const days = begun.flatMap((season) => daysOf(season, tx.scope.today) ?? []);
+  const sum: Counts & { smallNumber: number } = {
+    bands,
+    smallNumber,
+    seasons: [...begun].sort((a, b) => (a.startsOn < b.startsOn ? -1 : 1)),
+    from: days.map(({ from }) => from).sort()[0] ?? tx.scope.today,
+    to:
+      days
+        .map(({ to }) => to)
+        .sort()
+        .at(-1) ?? tx.scope.today,
+    teams: await listRatedTeams(tx, teamIds),
+    cells: [],
+    silent: [],
+    injuries: [],
+    sessions: [],
+    confirmedWeeks: [],
+  };
+  for (const { from, to } of days) {
+    const range = { from, to, teamIds };
+    const injuries = await listInjuryRows(tx, range);
+    const confirmedWeeks = await listConfirmedWeeks(tx, range);
+    const split = splitSilent(await sumExposureCells(tx, range), injuries, confirmedWeeks);
+    sum.cells = [...sum.cells, ...split.cells];
+    sum.silent = [...sum.silent, ...split.silent];
+    sum.injuries = [...sum.injuries, ...injuries];
+    sum.sessions = [...sum.sessions, ...(await tallySessions(tx, range))];
+    sum.confirmedWeeks = [...sum.confirmedWeeks, ...confirmedWeeks];
+  }
+  return sum;
+}
+
+/** What an address asks for, as the frame of every page of rates needs it. */
+export type RatesView = {
+  viewing: Viewing;
+  period: Period;
+  filters: RatesFilters;
+  /** Null: every team. */
+  teamIds: Range["teamIds"];
+  /** The organisation's bands, for the choices of the filters. */
+  bands: string[];
+  /** The sports of the teams in view. */
+  sports: string[];
+  /** The organisation, a team, or "My teams": how a sentence begins. */
+  scopeName: string;
+};
+
+/**
+ * Season, teams and filters of an address; null while the organisation has no season.
+ * @param query parsed by `parseRatesQuery`
+ * @throws DomainError invalid for an age band that the organisation does not have
+ */
+export async function openView(tx: Tx, url: URL, query: RatesQuery): Promise<RatesView | null> {
+  const { scope } = tx;
+  const viewing = await resolveViewing(tx, url);
+  const period = periodOf(viewing, scope.today);
+  if (!period) return null;
+  const teamIds = teamsOf(viewing, scope);
+  const { bands, name } = await findCountingRules(tx);
+  const labels = bands.map(({ label }) => label);
+  const { season: _season, team: _team, ...filters } = query;
+  const teams = await listRatedTeams(tx, teamIds);
+  return {
+    viewing,
+    period,
+    filters: { ...filters, age: readBand(query.age, labels) },
+    teamIds,
+    bands: labels,
+    sports: [...new Set(teams.map(({ sport }) => sport))].sort(),
+    scopeName: viewing.team?.name ?? (scope.teams === "all" ? name : "My teams"),
+  };
+}
+
+/** The counts of a view's season, or of all seasons. */
+export const countView = (tx: Tx, view: RatesView, { all = false } = {}) =>
+  countSeasons(
+    tx,
+    all ? view.viewing.seasons : view.viewing.season ? [view.viewing.season] : [],
+    view.teamIds,
+  );
+
+/** What the frame of a page of rates shows. */
+export const frameOf = (scope: MemberScope, view: RatesView): Frame => ({
+  slug: scope.slug,
+  organisation: scope.organisationName,
+  season: view.period.season,
+  from: view.period.from,
+  to: view.period.to,
+  scopeName: view.scopeName,
+  filters: view.filters,
+  bands: view.bands,
+  sports: view.sports,
+});
+
+/**
+ * The loader of a view of rates: parses the address, opens the view in one read and runs its own question there.
+ * `frame` is null while the organisation has no season.
+ * @throws DomainError invalid, naming each parameter that is wrong
+ */
+export async function loadRates<T>(
+  scope: MemberScope,
+  url: URL,
+  run: (tx: Tx, view: RatesView) => Promise<T>,
+): Promise<{ frame: Frame; data: T } | { frame: null; data: null }> {
+  const query = parseRatesQuery(url.searchParams);
+  return read(scope, async (tx) => {
+    const view = await openView(tx, url, query);
+    if (!view) return { frame: null, data: null };
+    return { frame: frameOf(scope, view), data: await run(tx, view) };
+  });
+}

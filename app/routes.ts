@@ -59,6 +59,17 @@ export default [
 
     route("rates", "routes/rates/rates.tsx"),
     route("rates.csv", "routes/rates/rates-csv.ts"),
+    route("rates/severity", "routes/rates/severity.tsx"),
+    route("rates/prevalence", "routes/rates/prevalence.tsx"),
+    route("rates/body-areas", "routes/rates/body-areas.tsx"),
+    route("rates/teams", "routes/rates/teams.tsx"),
+    route("rates/comparisons", "routes/rates/comparisons.tsx"),
+    route("rates/trends", "routes/rates/trends.tsx"),
+    route("rates/recent-weeks", "routes/rates/recent-weeks.tsx"),
+    route("rates/programme", "routes/rates/programme.tsx"),
+    route("rates/coverage", "routes/rates/coverage.tsx"),
+    route("rates/records", "routes/rates/records.tsx"),
+    route("rates/csv/:view/:table", "routes/rates/view-csv.ts"),
 
     route("notices", "routes/notices/notices.tsx"),
     route("notices/:notice", "routes/notices/notice.tsx"),

@@ -1,7 +1,13 @@
 import { spreadLabels, wrapWords } from "./end-labels";
 
 /** `y` is the height of what the words name, in px of the drawing. */
-export type EndWord = { text: string; y: number; colour: string };
+export type EndWord = {
+  text: string;
+  y: number;
+  colour: string;
+  /** Where the words begin if not at the common place: behind a line that ends early. */
+  x?: number;
+};
 
 type Props = { words: EndWord[]; x: number; room: number; limit: number };
 
@@ -17,12 +23,21 @@ export function EndWords({ words, x, room, limit }: Props) {
     wrapped.map(({ y, lines }) => ({ y, height: lines.length * lineHeight + 2 })),
     limit,
   );
-  return wrapped.map(({ text, lines, colour, y }, index) => (
-    // biome-ignore lint/suspicious/noArrayIndexKey: two lines may carry the same words at the same height
-    <text key={`${index} ${text}`} y={(places[index] ?? y) + 5} fontSize={15} fontWeight={500} fill={colour}>
+  return wrapped.map(({ text, lines, colour, y, x: own = x }, index) => (
+    <text
+      // biome-ignore lint/suspicious/noArrayIndexKey: two lines may carry the same words at the same height
+      key={`${index} ${text}`}
+      y={(places[index] ?? y) + 5}
+      fontSize={15}
+      fontWeight={500}
+      fill={colour}
+      stroke="var(--color-chalk)"
+      strokeWidth={4}
+      paintOrder="stroke"
+    >
       {lines.map((line, at) => (
         // biome-ignore lint/suspicious/noArrayIndexKey: lines of one text never change their order
-        <tspan key={`${at} ${line}`} x={x} dy={at === 0 ? 0 : lineHeight}>
+        <tspan key={`${at} ${line}`} x={own} dy={at === 0 ? 0 : lineHeight}>
           {line}
         </tspan>
       ))}

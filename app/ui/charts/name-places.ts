@@ -5,8 +5,8 @@ export type Box = { left: number; right: number; top: number; bottom: number };
 /** A spot that wants its name beside it. `must`: it is named even if its name has to stand away from it. */
 export type NamedSpot = { x: number; y: number; radius: number; text: string; must: boolean };
 
-/** Where a name stands: its base line's start, and whether it is so far off that a line should lead to it. */
-export type NamePlace = { x: number; y: number; far: boolean };
+/** Where a name stands: its base line, and whether it is so far off that a line should lead to it. */
+export type NamePlace = { x: number; y: number; anchor: "start" | "middle" | "end"; far: boolean };
 
 const height = 17;
 /** From the middle of a text to its base line. */
@@ -46,10 +46,14 @@ function besides({ x, y, radius }: NamedSpot, width: number): Box[] {
   ];
 }
 
-/** The free place nearest to a spot anywhere in the drawing. */
-function nearest(spot: NamedSpot, width: number, bounds: Box, free: (box: Box) => boolean): Box | null {
+/** The free place nearest to a spot, at most `reach` px away. */
+function nearest(
+  spot: NamedSpot,
+  width: number,
+  { bounds, reach, free }: { bounds: Box; reach: number; free: (box: Box) => boolean },
+): Box | null {
   let best: Box | null = null;
-  let distance = Number.POSITIVE_INFINITY;
+  let distance = reach;
   for (let y = bounds.top + height / 2; y <= bounds.bottom - height / 2; y += step) {
     for (let x = bounds.left + width / 2; x <= bounds.right - width / 2; x += step) {
       // Up and down counts more: a name on the spot's own line is found sooner.
@@ -70,11 +74,37 @@ function spotBoxes(spots: NamedSpot[], own: NamedSpot): Box[] {
   });
 }
 
+/** How far a box is from the edge of a spot, in px. */
+function distanceTo(box: Box, { x, y, radius }: NamedSpot): number {
+  const across = Math.max(box.left - x, x - box.right, 0);
+  const along = Math.max(box.top - y, y - box.bottom, 0);
+  return Math.hypot(across, along) - radius;
+}
+
+/** Whether a reader would take a name for that of this spot and no other's. */
+const isClearlyOf = (own: NamedSpot, spots: NamedSpot[]) => (box: Box) =>
+  spots.every((spot) => spot === own || distanceTo(box, spot) >= distanceTo(box, own) + 5);
+
+/** The side of the words that is next to the spot keeps its place, since how wide they are is only estimated. */
+function anchored({ left, right }: Box, { x }: NamedSpot): Pick<NamePlace, "x" | "anchor"> {
+  if (right <= x) return { x: right - 2, anchor: "end" };
+  if (left >= x) return { x: left + 2, anchor: "start" };
+  const middle = (left + right) / 2;
+  if (middle < x - 5) return { x: right - 2, anchor: "end" };
+  return middle > x + 5 ? { x: left + 2, anchor: "start" } : { x: middle, anchor: "middle" };
+}
+
 /**
  * Places names beside their spots so that none covers another name, a spot or one of `taken`, and none leaves
- * `bounds`; all in px. Those that must be named come first. A name without a place is null: the table has it.
+ * `bounds`; all in px. Those that must be named come first, in their order, up to `reach` away from their spots. A name
+ * without a place is null: the table has it.
  */
-export function placeNames(spots: NamedSpot[], bounds: Box, taken: Box[] = []): (NamePlace | null)[] {
+export function placeNames(
+  spots: NamedSpot[],
+  bounds: Box,
+  taken: Box[] = [],
+  reach = Number.POSITIVE_INFINITY,
+): (NamePlace | null)[] {
   const places: (NamePlace | null)[] = spots.map(() => null);
   const used = [...taken];
   const order = spots.map((_, index) => index);
@@ -85,11 +115,12 @@ export function placeNames(spots: NamedSpot[], bounds: Box, taken: Box[] = []): 
     const width = textWidth(spot.text);
     const others = [...used, ...spotBoxes(spots, spot)];
     const free = (box: Box) => within(box, bounds) && !others.some((other) => collides(box, other));
-    const beside = besides(spot, width).find(free);
-    const box = beside ?? (spot.must ? nearest(spot, width, bounds, free) : null);
+    const clear = isClearlyOf(spot, spots);
+    const beside = besides(spot, width).find((box) => free(box) && clear(box));
+    const box = beside ?? (spot.must ? nearest(spot, width, { bounds, reach, free }) : null);
     if (!box) continue;
     used.push(box);
-    places[index] = { x: box.left + 2, y: (box.top + box.bottom) / 2 + drop, far: !beside };
+    places[index] = { ...anchored(box, spot), y: (box.top + box.bottom) / 2 + drop, far: !beside };
   }
   return places;
 }

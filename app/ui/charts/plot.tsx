@@ -45,7 +45,7 @@ export function tickRoom({ ticks, format = formatTick }: PlotAxis): number {
 
 const scaleOf = ({ min, max, logarithmic }: PlotAxis) =>
   logarithmic
-    ? ({ type: "log", base: 10, min, max } as const)
+    ? ({ type: "log", base: 10, min, max, nice: false } as const)
     : ({ type: "linear", min, max, nice: false } as const);
 
 const ticksOf = ({ ticks, format = formatTick }: PlotAxis, tickPadding: number) => ({

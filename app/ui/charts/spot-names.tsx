@@ -8,7 +8,9 @@ export function SpotNames({ spots, places }: Props) {
   return spots.map((spot, index) => {
     const place = places[index];
     if (!place) return null;
-    const end = Math.min(place.x + textWidth(spot.text) - 4, Math.max(place.x, spot.x));
+    const width = textWidth(spot.text) - 8;
+    const left = place.x - { start: 0, middle: width / 2, end: width }[place.anchor];
+    const end = Math.min(left + width, Math.max(left, spot.x));
     return (
       // biome-ignore lint/suspicious/noArrayIndexKey: two spots may have the same name
       <g key={`${index} ${spot.text}`}>
@@ -25,6 +27,7 @@ export function SpotNames({ spots, places }: Props) {
         <text
           x={place.x}
           y={place.y}
+          textAnchor={place.anchor}
           fontSize={15}
           fontWeight={spot.must ? 500 : 400}
           fill={spot.colour}

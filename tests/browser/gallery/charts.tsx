@@ -1,8 +1,11 @@
 import { Page, Region } from "~/ui";
+import { BurdenChart } from "~/ui/charts/burden-chart";
 import { ControlChart } from "~/ui/charts/control-chart";
 import { FunnelChart } from "~/ui/charts/funnel-chart";
+import { StepCurve } from "~/ui/charts/step-curve";
 import { ThresholdChart } from "~/ui/charts/threshold-chart";
 import { controlPoints, funnelLimits, funnelPoints, sums, weeks } from "./chart-data";
+import { burdenCurves, burdenPoints, curves } from "./chart-shapes-data";
 
 /** Every chart, at its fullest and at its barest. */
 export function Charts() {
@@ -46,6 +49,25 @@ export function Charts() {
           yUnit="injuries per 1000 athlete-exposures"
           title="Rates of teams against their exposure"
           caption="Each team against what its exposure lets one expect"
+        />
+      </Region>
+      <Region heading="Time">
+        <StepCurve
+          curves={curves}
+          start={1}
+          xUnit="days since onset"
+          yUnit="still away from full participation"
+          mark={{ y: 0.5, label: "half are back" }}
+          title="Share still away by days since onset"
+          caption="Time until return"
+        />
+        <BurdenChart
+          points={burdenPoints}
+          curves={burdenCurves}
+          xUnit="median days lost per injury"
+          yUnit="injuries per 1000 athlete-exposures"
+          title="Severity against incidence by body area"
+          caption="What is frequent and what is long"
         />
       </Region>
     </Page>

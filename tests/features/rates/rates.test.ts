@@ -1,10 +1,12 @@
 import { describe, expect, it } from "vitest";
 import { countInjuries, type InjuryRow, numeratorRules, reasonLeftOut } from "~/features/rates/counting";
 import { formatRatio } from "~/features/rates/figures";
+import { defaultFilters } from "~/features/rates/filters";
 import { computeRates } from "~/features/rates/rates";
 import { parseRatesQuery, ratesQuery } from "~/features/rates/rates.schema";
 import { writeRatesCsv } from "~/features/rates/rates-csv";
 import { textOf, writeNote, writeSentence } from "~/features/rates/sentence";
+import { reportedWeeks, splitSilent } from "~/features/rates/silence";
 import { problem } from "~/middleware/error-response.server";
 import { incidenceRate, rateRatio } from "~/statistics";
 import { cell, counts, injury, several, tally } from "./view";
@@ -111,14 +113,23 @@ describe("rates", () => {
     expect(textOf(writeSentence(withheld, filters, "The club"))).toContain("too little of the exposure");
   });
 
-  it("read not reported for a team that entered nothing, and 0 for one that confirmed a week", () => {
-    const silent = { ...both, injuries: [] };
-    expect(computeRates(silent, { ...filters, by: "team" }).rows[0]).toMatchObject({
-      injuries: null,
-      rate: null,
-    });
-    const confirmed = computeRates({ ...silent, confirming: ["t"] }, { ...filters, by: "team" });
-    expect(confirmed.rows[0]).toMatchObject({ injuries: 0, rate: { estimate: 0, lower: 0 } });
+  it("read not reported for a team that entered nothing, and 0 for the weeks that one confirmed", () => {
+    const cells = [cell({ day: "2026-10-05", aes: 40 }), cell({ day: "2026-10-14", aes: 60 })];
+    const byTeam = { ...filters, by: "team" } as const;
+    const silent = computeRates(counts({ ...splitSilent(cells, [], []) }), byTeam);
+    expect(silent.rows).toMatchObject([{ injuries: null, rate: null, exposure: null }]);
+    expect(silent.rows[0]?.reason).toMatch(/^not reported/);
+    expect(silent).toMatchObject({ silentExposure: 100, total: { injuries: 0, denominator: 0, rate: null } });
+    const weeks = [{ teamId: "t", week: "2026-10-12" }];
+    const confirmed = computeRates(counts({ ...splitSilent(cells, [], weeks) }), byTeam);
+    expect(confirmed.rows).toMatchObject([{ injuries: 0, denominator: 60, rate: { estimate: 0, lower: 0 } }]);
+    expect(confirmed.silentExposure).toBe(40);
+    const hurt = [injury({ daysLost: 0 })];
+    const reporting = computeRates(counts({ ...splitSilent(cells, hurt, []), injuries: hurt }), byTeam);
+    expect(reporting.rows).toMatchObject([{ injuries: 0, denominator: 100 }]);
+    expect(splitSilent(cells, [injury({ withdrawn: true })], []).cells).toEqual([]);
+    expect(reportedWeeks(cells, hurt, weeks)).toEqual({ reported: 2, all: 2 });
+    expect(reportedWeeks(cells, [], weeks)).toEqual({ reported: 1, all: 2 });
   });
 
   it("are a dash and a reason without exposure", () => {
@@ -146,12 +157,7 @@ it("write a ratio with two figures, and never on the wrong side of 1", () => {
 
 describe("an address", () => {
   it("has defaults, and is refused in words for a value that does not exist", async () => {
-    expect(parseRatesQuery(new URLSearchParams(""))).toEqual({
-      injuries: "time-loss",
-      sessions: "training-and-matches",
-      by: "sex-age",
-      per: "aes",
-    });
+    expect(parseRatesQuery(new URLSearchParams(""))).toEqual(defaultFilters);
     expect(() => parseRatesQuery(new URLSearchParams("per=days"))).toThrow(/per: Use one of: aes, hours/);
     expect(() => parseRatesQuery(new URLSearchParams("per=aes&per=hours"))).toThrow(/once/);
     expect(() => parseRatesQuery(new URLSearchParams("season=x"))).toThrow(/season/);

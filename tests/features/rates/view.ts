@@ -1,6 +1,6 @@
 import type { ExposureCell, InjuryRow } from "~/features/rates/counting";
 import type { SessionTally } from "~/features/rates/coverage";
-import type { Counts } from "~/features/rates/rates";
+import type { Counts } from "~/features/rates/selection";
 
 /** Counts put together by hand for the pure tests of rates. */
 
@@ -9,6 +9,16 @@ export const injury = (given: Partial<InjuryRow> = {}): InjuryRow => ({
   athleteId: "a",
   sex: "female",
   age: 15,
+  onsetDay: "2026-10-05",
+  day: "2026-10-05",
+  sessionId: "s",
+  contact: "non_contact",
+  movement: "cutting",
+  bodyArea: "knee",
+  side: "left",
+  tissue: null,
+  pathology: null,
+  warmedUp: null,
   onset: "sudden",
   subsequence: "index",
   outsideSport: false,
@@ -27,6 +37,7 @@ export const injury = (given: Partial<InjuryRow> = {}): InjuryRow => ({
 
 export const cell = (given: Partial<ExposureCell> = {}): ExposureCell => ({
   teamId: "t",
+  day: "2026-10-05",
   kind: "training",
   grade: "recorded",
   sex: "female",
@@ -38,6 +49,7 @@ export const cell = (given: Partial<ExposureCell> = {}): ExposureCell => ({
 
 export const tally = (given: Partial<SessionTally> = {}): SessionTally => ({
   teamId: "t",
+  day: "2026-10-05",
   kind: "training",
   held: 10,
   recorded: 10,
@@ -50,11 +62,15 @@ export const tally = (given: Partial<SessionTally> = {}): SessionTally => ({
 });
 
 export const counts = (given: Partial<Counts> = {}): Counts => ({
+  from: "2026-08-01",
+  to: "2026-12-01",
+  seasons: [{ id: "y", name: "2026/27", startsOn: "2026-08-01", endsOn: "2027-06-30" }],
   cells: [],
+  silent: [],
   injuries: [],
   sessions: [tally()],
   teams: [{ id: "t", name: "Girls U16", sport: "soccer", sex: "girls" }],
-  confirming: [],
+  confirmedWeeks: [],
   bands: [
     { label: "13-14", from: 13, to: 14 },
     { label: "15-16", from: 15, to: 16 },

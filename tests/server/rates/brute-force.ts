@@ -6,8 +6,15 @@ import type { Plan } from "./generated-club";
 
 type Rule = { sport: string; fromAge: number; players: number; minutes: number };
 type Bands = readonly { label: string; from: number; to: number | null }[];
-export type World = { plan: Plan; rules: readonly Rule[]; bands: Bands; today: string };
+export type World = {
+  plan: Plan;
+  rules: readonly Rule[];
+  bands: Bands;
+  today: string;
+  seasonId: string;
+};
 type Session = Plan["sessions"][number];
+type Hurt = Plan["injuries"][number];
 type Share = { athleteId: string | null; aes: number; hours: number };
 
 /** What does not depend on the view is walked through once. */
@@ -97,20 +104,71 @@ function sharesOf({ plan, rules }: World, session: Session): { grade: string; sh
   return { grade: session.exposureGrade, shares };
 }
 
-function keyOf(
-  world: World,
-  by: RatesFilters["by"],
-  who: string | null,
-  day: string,
-  teamId: string,
-  kind: string | null,
-) {
+type Place = { who: string | null; day: string; teamId: string; kind: string | null; countedOn: string };
+
+function placeOf(world: World, { who, day, teamId }: Place) {
   const athlete = world.plan.athletes.find(({ id }) => id === who);
-  const sex = athlete?.sex ?? "unknown";
-  const years = band(world.bands, age(athlete?.born ?? null, day));
-  const sport = world.plan.teams.find(({ id }) => id === teamId)?.sport ?? "none";
-  return { sex, age: years, "sex-age": `${sex} ${years}`, sport, kind: kind ?? "none", team: teamId }[by];
+  return {
+    sex: athlete?.sex ?? "unknown",
+    age: band(world.bands, age(athlete?.born ?? null, day)),
+    sport: world.plan.teams.find(({ id }) => id === teamId)?.sport ?? "none",
+  };
 }
+
+function keyOf(world: World, by: RatesFilters["by"], place: Place, hurt?: Hurt): string {
+  const { sex, age: years, sport } = placeOf(world, place);
+  const said = (code: string | null | undefined) => (hurt ? (code ?? "none") : "");
+  const keys: Record<RatesFilters["by"], string> = {
+    sex,
+    age: years,
+    "sex-age": `${sex} ${years}`,
+    sport,
+    kind: place.kind ?? "none",
+    team: place.teamId,
+    month: place.countedOn.slice(0, 7),
+    season: world.seasonId,
+    contact: said(hurt?.contact),
+    movement: said(hurt?.movement),
+    tissue: said(hurt?.tissue),
+    area: said(hurt?.bodyArea),
+    "area-side": `${said(hurt?.bodyArea)} ${said(hurt?.side)}`,
+  };
+  return keys[by];
+}
+
+function isWhose(world: World, filters: RatesFilters, place: Place) {
+  const own = placeOf(world, place);
+  return (["sex", "age", "sport"] as const).every(
+    (name) => filters[name] === "any" || filters[name] === own[name],
+  );
+}
+
+function isWhat(filters: RatesFilters, hurt: Hurt) {
+  const { contact } = hurt;
+  const indirect = contact === "indirect_athlete" || contact === "indirect_object";
+  const contacts = {
+    any: true,
+    without: contact === "non_contact" || indirect,
+    non_contact: contact === "non_contact",
+    indirect,
+    direct: contact === "direct_athlete" || contact === "direct_object",
+    unknown: contact === "unknown" || contact == null,
+  };
+  const isSudden = hurt.onset === "sudden" || hurt.onset === "sudden_repetitive";
+  return (
+    contacts[filters.contact] &&
+    { any: true, sudden: isSudden, gradual: hurt.onset === "gradual" }[filters.onset] &&
+    {
+      all: true,
+      recurrent: hurt.subsequence === "recurrent",
+      index: hurt.subsequence === "index" || hurt.subsequence == null,
+    }[filters.occurrence] &&
+    (filters.area === "any" || filters.area === hurt.bodyArea) &&
+    (filters.side === "any" || filters.side === hurt.side)
+  );
+}
+
+const ofInjuriesAlone = ["contact", "movement", "tissue", "area", "area-side"];
 
 const inKinds = (filters: RatesFilters, kind: string) =>
   filters.sessions === "training-and-matches"
@@ -141,10 +199,13 @@ export function countByHand(world: World, filters: RatesFilters): Brute {
     return result[key];
   };
   const { held, lost } = walk(world);
+  const whole = { injuries: 0, recorded: 0, headcount: 0, estimated: 0 };
   for (const { session, grade, shares } of held) {
     if (!inKinds(filters, session.kind)) continue;
     for (const share of shares) {
-      const group = at(keyOf(world, filters.by, share.athleteId, session.day, session.teamId, session.kind));
+      const place = { ...session, who: share.athleteId, countedOn: session.day };
+      if (!isWhose(world, filters, place)) continue;
+      const group = ofInjuriesAlone.includes(filters.by) ? whole : at(keyOf(world, filters.by, place));
       group[grade as "recorded" | "headcount" | "estimated"] +=
         filters.per === "aes" ? share.aes : share.hours;
     }
@@ -187,7 +248,11 @@ export function countByHand(world: World, filters: RatesFilters): Brute {
       if (!teamId || weekAmount(teamId, day) <= 0) continue;
     } else if (!own || amount(own.shares) <= 0) continue;
     const kind = own?.session.kind ?? null;
-    at(keyOf(world, filters.by, injury.athleteId, injury.onsetDay, teamId ?? "", kind)).injuries += 1;
+    const place = { who: injury.athleteId, day: injury.onsetDay, teamId: teamId ?? "", kind, countedOn: day };
+    if (!isWhose(world, filters, place) || !isWhat(filters, injury)) continue;
+    at(keyOf(world, filters.by, place, injury)).injuries += 1;
   }
-  return result;
+  if (!ofInjuriesAlone.includes(filters.by)) return result;
+  const { injuries: _none, ...exposure } = whole;
+  return Object.fromEntries(Object.entries(result).map(([key, row]) => [key, { ...row, ...exposure }]));
 }

@@ -1,20 +1,21 @@
 import { sql } from "drizzle-orm";
 import { beforeAll, describe, expect, it } from "vitest";
 import { defaultAgeBands, defaultSportRules } from "~/features/accounts/founding.server";
+import { resolveViewing } from "~/features/accounts/viewing.server";
 import { timeLossOf } from "~/features/availability/availability";
-import { ageInYears, sumExposureCells } from "~/features/rates/exposure.queries.server";
+import { ageInYears } from "~/features/rates/exposure.queries.server";
 import {
   caseDefinitions,
+  defaultFilters,
   groupings,
   type RatesFilters,
   sessionChoices,
   units,
 } from "~/features/rates/filters";
-import { listInjuryRows } from "~/features/rates/injury-rows.queries.server";
 import { type Counts, computeRates, type Rates } from "~/features/rates/rates";
-import { listRatedTeams, tallySessions } from "~/features/rates/rates.queries.server";
 import { ratesQuery } from "~/features/rates/rates.schema";
 import { incidenceOf } from "~/features/rates/rates.server";
+import { countSeasons, openView } from "~/features/rates/view.server";
 import { addDays } from "~/platform/clock";
 import { ageOn } from "~/statistics";
 import { read, type Scope } from "~db/client.server";
@@ -25,7 +26,30 @@ import { planClub, plantClub } from "./generated-club";
 
 const everyFilter = caseDefinitions.flatMap((injuries) =>
   sessionChoices.flatMap((sessions) =>
-    groupings.flatMap((by) => units.map((per): RatesFilters => ({ injuries, sessions, by, per }))),
+    groupings.flatMap((by) =>
+      units.map((per): RatesFilters => ({ ...defaultFilters, injuries, sessions, by, per })),
+    ),
+  ),
+);
+
+const narrowings: Partial<RatesFilters>[] = [
+  { sex: "female", area: "knee", contact: "without" },
+  { sex: "not_stated" },
+  { sport: "soccer", onset: "sudden" },
+  { sport: "volleyball", side: "left", contact: "indirect" },
+  { age: "15-16", onset: "gradual" },
+  { age: "unknown" },
+  { contact: "unknown", occurrence: "index" },
+  { contact: "direct", area: "ankle" },
+  { contact: "non_contact", side: "none" },
+  { occurrence: "recurrent", sex: "male" },
+];
+/** Each narrowing in both units, by a grouping that shares out the exposure and one that does not. */
+const narrowedFilters = narrowings.flatMap((narrowing) =>
+  units.flatMap((per) =>
+    (["sex-age", "team", "area"] as const).map(
+      (by): RatesFilters => ({ ...defaultFilters, injuries: "medical-attention", ...narrowing, by, per }),
+    ),
   ),
 );
 
@@ -54,7 +78,7 @@ describe.each([1, 2])("counts of a generated club (seed %i)", (seed) => {
     const organisation = await makeOrganisation();
     const staff = staffScope(organisation);
     const plan = planClub(seed, staff.today);
-    await makeSeason(staff, { startsOn: plan.season.from, endsOn: plan.season.to });
+    const season = await makeSeason(staff, { startsOn: plan.season.from, endsOn: plan.season.to });
     await plantClub(staff, plan);
     scope = await memberScope(await makePerson(organisation, { roles: ["lead"] }), organisation);
     const rules = defaultSportRules.map(([sport, fromAge, players, minutes]) => ({
@@ -63,20 +87,18 @@ describe.each([1, 2])("counts of a generated club (seed %i)", (seed) => {
       players,
       minutes,
     }));
-    world = { plan, rules, bands: defaultAgeBands, today: staff.today };
-    const range = { from: plan.season.from, to: staff.today, teamIds: null };
-    counts = await read(scope, async (tx) => ({
-      bands: defaultAgeBands,
-      cells: await sumExposureCells(tx, range),
-      injuries: await listInjuryRows(tx, range),
-      sessions: await tallySessions(tx, range),
-      teams: await listRatedTeams(tx, null),
-      confirming: [],
-    }));
+    world = { plan, rules, bands: defaultAgeBands, today: staff.today, seasonId: season.id };
+    counts = await read(scope, async (tx) => {
+      const { seasons } = await resolveViewing(tx, new URL("http://x/rates"));
+      return countSeasons(tx, seasons, null);
+    });
   });
 
-  it("equal those made by hand, in every view", () => {
-    for (const filters of everyFilter) {
+  it.each([
+    ["every view", everyFilter],
+    ["narrowed views", narrowedFilters],
+  ])("equal those made by hand, in %s", (_, list) => {
+    for (const filters of list) {
       const { groups, total } = groupsOf(computeRates(counts, filters), filters);
       const [found, expected] = [filled(groups), filled(countByHand(world, filters))];
       const name = JSON.stringify(filters);
@@ -96,10 +118,13 @@ describe.each([1, 2])("counts of a generated club (seed %i)", (seed) => {
   });
 
   it("are what the page is given", async () => {
-    const filters = ratesQuery.parse({});
-    const { rates } = await read(scope, (tx) => incidenceOf(tx, new URL("http://x/rates"), filters));
-    const { counted: _counted, ...expected } = computeRates(counts, filters);
-    expect(rates).toEqual(expected);
+    const query = ratesQuery.parse({});
+    const found = await read(scope, async (tx) => {
+      const view = await openView(tx, new URL("http://x/rates"), query);
+      return view && incidenceOf(tx, view);
+    });
+    const { counted: _counted, ...expected } = computeRates(counts, query);
+    expect(found?.rates).toEqual(expected);
   });
 
   it("hold the days lost that a walk from day to day finds, as the injury's own page says them", () => {
@@ -135,6 +160,7 @@ describe.each([1, 2])("counts of a generated club (seed %i)", (seed) => {
         grade,
       ).toBe(true);
     const reported = countByHand(world, {
+      ...defaultFilters,
       injuries: "medical-attention",
       sessions: "training-and-matches",
       by: "sex-age",

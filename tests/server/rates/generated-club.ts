@@ -145,6 +145,7 @@ function addSession(plan: Plan, random: Random, day: string) {
 
 function addInjury(plan: Plan, random: Random, anyDay: string, today: string) {
   const injuryId = randomUUID();
+  const codes = codesOf(plan.injuries.length);
   const athlete = random.pick(plan.athletes);
   const session = random.chance(0.65) ? random.pick(plan.sessions) : null;
   // A session that ends after midnight injures on the next day.
@@ -157,8 +158,7 @@ function addInjury(plan: Plan, random: Random, anyDay: string, today: string) {
     onsetDay,
     sessionId: session?.id ?? null,
     outsideSport: !session && random.chance(0.3),
-    bodyArea: "knee",
-    side: "left",
+    ...codes,
     onset: random.pick(["sudden", "sudden", "sudden_repetitive", "gradual", "gradual", null]),
     subsequence: random.pick(["index", "index", "recurrent", "local", "other_site", "exacerbation", null]),
     withdrawn: random.chance(0.06),
@@ -178,6 +178,25 @@ function addInjury(plan: Plan, random: Random, anyDay: string, today: string) {
   // A correction of the day of return, and a setback.
   if (random.chance(0.3)) change(3, addDays(back, random.int(-3, 6)), "full");
   if (random.chance(0.2)) change(4, addDays(back, 12), "unavailable");
+}
+
+/** What was hurt and how, from a stream of its own. */
+function codesOf(index: number) {
+  const random = randomOf(index + 1000);
+  return {
+    bodyArea: random.pick(["knee", "knee", "ankle", "thigh", "head", "multiple"]),
+    side: random.pick(["left", "left", "right", "both", "none", "unknown"]),
+    contact: random.pick([
+      "non_contact",
+      "indirect_athlete",
+      "indirect_object",
+      "direct_athlete",
+      "unknown",
+      null,
+    ]),
+    movement: random.pick(["cutting", "landing", "none", null]),
+    tissue: random.pick(["ligament_capsule", "bone", null]),
+  };
 }
 
 const chunked = <T>(list: readonly T[]) =>

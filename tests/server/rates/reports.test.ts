@@ -5,10 +5,11 @@ import { describe, expect, it } from "vitest";
 import { ratesQuery } from "~/features/rates/rates.schema";
 import { fixedTablesOf, incidenceOf } from "~/features/rates/rates.server";
 import { incidenceJson } from "~/features/rates/rates-json";
-import { addDays } from "~/platform/clock";
+import { openView } from "~/features/rates/view.server";
+import { addDays, weekStart } from "~/platform/clock";
 import { incidenceRate } from "~/statistics";
 import { read, type Scope, write } from "~db/client.server";
-import { athletes, participations, sessions } from "~db/schema";
+import { athletes, noInjuryWeeks, participations, sessions } from "~db/schema";
 import {
   makeAthlete,
   makeClub,
@@ -25,7 +26,13 @@ import {
 const filters = ratesQuery.parse({});
 const address = (search = "") => new URL(`http://localhost/club/rates${search}`);
 const incidence = (scope: Scope, search = "", given = filters) =>
-  read(scope, (tx) => incidenceOf(tx, address(search), given));
+  read(scope, async (tx) => {
+    const view = await openView(tx, address(search), given);
+    return {
+      view,
+      ...(view ? await incidenceOf(tx, view) : { rates: null, club: null, reportedWeeks: null }),
+    };
+  });
 
 describe("the exposure by athlete of the examples", () => {
   it("is 454 athlete-exposures and the file's own hours", async () => {
@@ -86,11 +93,21 @@ describe("the exposure by athlete of the examples", () => {
       ...(await memberScope(await makePerson(organisation, { roles: ["lead"] }), organisation)),
       today: "2027-07-01",
     };
-    const { rates, exposure } = await incidence(scope);
+    // Nobody has said yet that nobody was hurt: that exposure has no numerator.
+    const silent = await incidence(scope);
+    expect(silent.rates).toMatchObject({ total: { denominator: 0, rate: null }, silentExposure: 454 });
+    const weeks = new Map(
+      [...held.values()].map(({ row }) => {
+        const [teamId, week] = [teamIds.get(row.team) ?? "", weekStart(row.date)];
+        return [`${teamId} ${week}`, { ...org, teamId, weekStart: week }];
+      }),
+    );
+    await write(staff, (tx) => tx.insert(noInjuryWeeks).values([...weeks.values()]));
+    const { rates } = await incidence(scope);
     expect(data).toHaveLength(454);
     expect(rates?.total.denominator).toBe(454);
-    expect(exposure?.aes).toEqual({ recorded: 454, headcount: 0, estimated: 0 });
-    expect(exposure?.hours.recorded).toBeCloseTo(
+    expect(rates?.total.exposure?.aes).toEqual({ recorded: 454, headcount: 0, estimated: 0 });
+    expect(rates?.total.exposure?.hours.recorded).toBeCloseTo(
       data.reduce((sum, { minutes }) => sum + Number(minutes), 0) / 60,
       8,
     );
@@ -104,11 +121,13 @@ describe("an organisation with nothing yet", () => {
     const organisation = await makeOrganisation();
     const lead = await makePerson(organisation, { roles: ["lead"] });
     const scope = await memberScope(lead, organisation);
-    expect(await incidence(scope)).toMatchObject({ period: null, rates: null });
+    expect(await incidence(scope)).toMatchObject({ view: null, rates: null });
     await makeSeason(staffScope(organisation));
     const empty = await incidence(scope);
     expect(empty.rates?.total).toMatchObject({ injuries: 0, rate: null, reason: "no athlete-exposures" });
-    const json = JSON.stringify(incidenceJson(empty, filters));
+    const { view, rates, club, reportedWeeks } = empty;
+    if (!rates || !reportedWeeks) throw new Error("a season is there");
+    const json = JSON.stringify(incidenceJson(view, { rates, club, reportedWeeks }, filters));
     expect(json).not.toMatch(/NaN|Infinity/);
     expect(JSON.parse(json)).toMatchObject({ groups: [], total: { rate: null }, coverage: { share: null } });
     const admin = await memberScope(await makePerson(organisation, { roles: ["admin"] }), organisation);

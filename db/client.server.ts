@@ -125,29 +125,24 @@ function closable(tx: Database, scope: Scope): { handle: Tx; close: () => void }
   };
 }
 
-async function scoped<T>(
-  scope: Scope,
-  mode: "read only" | "read write",
-  fn: (tx: Tx) => Promise<T>,
-): Promise<T> {
+type Mode = { accessMode: "read only" | "read write"; isolationLevel?: "serializable" };
+
+async function scoped<T>(scope: Scope, mode: Mode, fn: (tx: Tx) => Promise<T>): Promise<T> {
   const { db, gate } = pool();
   return gate.run(() =>
-    db.transaction(
-      async (tx) => {
-        await tx.execute(sql`select
+    db.transaction(async (tx) => {
+      await tx.execute(sql`select
           set_config('app.organisation_id', ${scope.organisationId}, true),
           set_config('app.person_id', ${scope.personId ?? ""}, true),
           set_config('app.door_id', ${scope.doorId ?? ""}, true),
           set_config('app.actors', ${scope.actors.join(",")}, true)`);
-        const { handle, close } = closable(tx as unknown as Database, scope);
-        try {
-          return await fn(handle);
-        } finally {
-          close();
-        }
-      },
-      { accessMode: mode },
-    ),
+      const { handle, close } = closable(tx as unknown as Database, scope);
+      try {
+        return await fn(handle);
+      } finally {
+        close();
+      }
+    }, mode),
   );
 }
 
@@ -156,12 +151,20 @@ async function scoped<T>(
  * Inside: no redirect thrown, no mail, no hashing, no deferred data.
  */
 export function read<T>(scope: Scope, fn: (tx: Tx) => Promise<T>): Promise<T> {
-  return scoped(scope, "read only", fn);
+  return scoped(scope, { accessMode: "read only" }, fn);
 }
 
-/** One read-write transaction in a scope: all of it commits or none. An action opens one. */
-export function write<T>(scope: Scope, fn: (tx: Tx) => Promise<T>): Promise<T> {
-  return scoped(scope, "read write", fn);
+/**
+ * One read-write transaction in a scope: all of it commits or none. An action opens one.
+ * @param isolation left out: read committed. Serializable answers every statement from one snapshot and fails with
+ *   SQLSTATE 40001 where another such transaction came between: the caller tries again.
+ */
+export function write<T>(
+  scope: Scope,
+  fn: (tx: Tx) => Promise<T>,
+  { isolation }: { isolation?: "serializable" } = {},
+): Promise<T> {
+  return scoped(scope, { accessMode: "read write", ...(isolation && { isolationLevel: isolation }) }, fn);
 }
 
 /** The scope of a signed-in person before an organisation is chosen: only their own memberships are visible. */

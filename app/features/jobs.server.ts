@@ -7,6 +7,7 @@ import { sealAllAudits } from "./audit/audit.server";
 import { runImportJob } from "./imports/imports.server";
 import { composeFreshLinkDelivery, composeNoticeDelivery } from "./notices/composing.server";
 import { type Composer, deliver, sweepOutbox, type Template } from "./outbox/outbox.server";
+import { rollUpAll } from "./rates/rollups.server";
 
 const composers: Record<Template, Composer> = {
   invitation: async (tx, scope, { invitationId }) =>
@@ -37,6 +38,8 @@ export async function startWorkers() {
   await schedule("sweep", "* * * * *");
   await work("seal", sealAllAudits);
   await schedule("seal", "*/5 * * * *");
+  await work("rollup", rollUpAll);
+  await schedule("rollup", "* * * * *");
   // What was left waiting while no process ran goes out now, not with the next minute.
   await sweepOutbox().catch((error: unknown) =>
     log.error({ error: error instanceof Error ? error.name : "unknown" }, "first sweep"),

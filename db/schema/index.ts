@@ -6,6 +6,7 @@ export * from "./injuries";
 export * from "./key-check";
 export * from "./notices";
 export * from "./platform";
+export * from "./rollups";
 export * from "./roster";
 export * from "./sessions";
 export * from "./warm-ups";

@@ -7,6 +7,7 @@ import * as importing from "./imports";
 import * as injuring from "./injuries";
 import * as noticing from "./notices";
 import * as platform from "./platform";
+import * as rollups from "./rollups";
 import * as roster from "./roster";
 import * as sessions from "./sessions";
 import * as warmUps from "./warm-ups";
@@ -196,6 +197,15 @@ export const tenancy: readonly Access[] = [
   {
     table: platform.auditEvents,
     allow: { select: ["admin", "lead", "job"], insert: [...everyone, "guardian", "invitee"] },
+  },
+  { table: rollups.exposureRollup, allow: { select: staff, insert: ["job"], delete: ["job"] } },
+  // Not the administrator's: single injuries by team, day, sex and age could be told apart.
+  { table: rollups.injuryRollup, allow: { select: clinical, insert: ["job"], delete: ["job"] } },
+  {
+    table: rollups.rollupMarks,
+    // Whoever may write a record marks it, by the triggers of its table.
+    allow: { select: staff, insert: everyone, delete: ["job"] },
+    sweeperSees: true,
   },
   { table: platform.auditSeals, allow: { select: ["admin", "lead", "job"], insert: ["job"] } },
   {

@@ -1,6 +1,7 @@
 import { type SQL, sql } from "drizzle-orm";
 import type { Tx } from "~db/client.server";
 import type { ExposureCell } from "./counting";
+import { markedSlices, nothingMarked, readsRollups } from "./rollups-marks.queries.server";
 
 /** The SQL of exposure: what counts as one athlete-exposure, and how headcounts and estimates are shared out. */
 
@@ -39,8 +40,9 @@ export const countedGrade = sql`case when s.kind <> 'match' and s.exposure_grade
 /**
  * Trainings and matches that took place, with the grade of their exposure and, for a headcount or an estimate, its
  * players and minutes each. The same rules as `exposureOfSession` of the sessions, for many sessions at once.
+ * @param only a further condition on the session `s`
  */
-export const countedSessions = (tx: Tx, { from, to, teamIds }: Range) => sql`
+export const countedSessions = (tx: Tx, { from, to, teamIds }: Range, only: SQL = sql`true`) => sql`
   graded as (
     select s.id, s.team_id, s.day, s.kind, t.sport, t.under_age, s.headcount, s.headcount_minutes,
       case when s.state = 'abandoned' then s.abandoned_after end as stopped_after, ${countedGrade} as grade
@@ -49,7 +51,7 @@ export const countedSessions = (tx: Tx, { from, to, teamIds }: Range) => sql`
     where s.organisation_id = ${tx.scope.organisationId}::uuid
       and s.day between ${from}::date and ${to}::date
       and s.state in ('held', 'abandoned') and s.kind in ('training', 'match')
-      and ${inTeams(sql`s.team_id`, teamIds)}
+      and ${inTeams(sql`s.team_id`, teamIds)} and ${only}
   ),
   counted as (
     select g.id, g.team_id, g.day, g.kind, g.grade,
@@ -70,8 +72,8 @@ export const countedSessions = (tx: Tx, { from, to, teamIds }: Range) => sql`
  * each athlete of that day's roster who is not unavailable, so that a group's hours and its injuries stay together.
  * What lies above the roster has no athlete.
  */
-export const exposureParts = (tx: Tx, range: Range) => sql`
-  ${countedSessions(tx, range)},
+const exposureParts = (tx: Tx, range: Range, only?: SQL) => sql`
+  ${countedSessions(tx, range, only)},
   unavailable as materialized (
     select athlete_id, from_day, to_day from availability_contributions
     where organisation_id = ${tx.scope.organisationId}::uuid and state = 'unavailable'
@@ -100,17 +102,49 @@ export const exposureParts = (tx: Tx, range: Range) => sql`
     where c.players > coalesce(s.sharers, 0) and c.minutes > 0
   )`;
 
-/** Exposure summed by team, day, kind, grade, sex and age in years on the day of the session. */
+/** Exposure summed by team, day, kind, grade, sex and age in years on the day of the session; age null if not known. */
+export const exposureCells = (tx: Tx, range: Range, only?: SQL) => sql`
+  with ${exposureParts(tx, range, only)}
+  select p.team_id, p.day, p.kind, p.grade, coalesce(a.sex, 'unknown') as sex,
+    ${ageInYears(sql`a.date_of_birth`, sql`p.day`)} as age,
+    sum(case when p.grade = 'estimated' then 0 else p.people end) as aes,
+    sum(p.people * p.minutes) / 60 as hours
+  from parts p
+  left join athletes a on a.organisation_id = ${tx.scope.organisationId}::uuid and a.id = p.athlete_id
+  group by 1, 2, 3, 4, 5, 6`;
+
+const cellRow = sql`c.team_id as "teamId", c.day::text as day, c.kind, c.grade, c.sex, c.age, c.aes, c.hours`;
+
+/** The cells counted from the records themselves: what the roll-up must equal. */
+export async function sumExposureCellsLive(tx: Tx, range: Range): Promise<ExposureCell[]> {
+  const rows = await tx.execute<ExposureCell>(sql`select ${cellRow} from (${exposureCells(tx, range)}) c`);
+  return [...rows];
+}
+
+const rolledCells = (tx: Tx, { from, to, teamIds }: Range, only: SQL) => sql`
+  select r.team_id, r.day, r.kind, r.grade, r.sex, nullif(r.age, -1)::int as age, r.aes, r.hours
+  from exposure_rollup r
+  where r.organisation_id = ${tx.scope.organisationId}::uuid and r.day between ${from}::date and ${to}::date
+    and ${inTeams(sql`r.team_id`, teamIds)} and ${only}`;
+
+/**
+ * Exposure by team, day, kind, grade, sex and age. Clean days of a team come from the roll-up, others from the same
+ * counting as the live one; each statement answers from one snapshot of both. The first serves when nothing is marked,
+ * as it mostly is: it is short to plan. It finds nothing where something is marked, and then the second decides.
+ */
 export async function sumExposureCells(tx: Tx, range: Range): Promise<ExposureCell[]> {
+  if (!readsRollups(tx)) return sumExposureCellsLive(tx, range);
+  const clean = await tx.execute<ExposureCell>(
+    sql`select ${cellRow} from (${rolledCells(tx, range, nothingMarked(tx))}) c`,
+  );
+  if (clean.length > 0) return [...clean];
   const rows = await tx.execute<ExposureCell>(sql`
-    with ${exposureParts(tx, range)}
-    select p.team_id as "teamId", p.day::text as day, p.kind, p.grade, coalesce(a.sex, 'unknown') as sex,
-      ${ageInYears(sql`a.date_of_birth`, sql`p.day`)} as age,
-      sum(case when p.grade = 'estimated' then 0 else p.people end) as aes,
-      sum(p.people * p.minutes) / 60 as hours
-    from parts p
-    left join athletes a on a.organisation_id = ${tx.scope.organisationId}::uuid and a.id = p.athlete_id
-    group by 1, 2, 3, 4, 5, 6`);
+    with ${markedSlices(tx)}
+    select ${cellRow} from (
+      ${rolledCells(tx, range, sql`not exists (select 1 from marked_slices m where m.team_id = r.team_id and m.day = r.day)`)}
+      union all
+      (${exposureCells(tx, range, sql`(s.team_id, s.day) in (select team_id, day from marked_slices)`)})
+    ) c`);
   return [...rows];
 }
 

@@ -9,6 +9,7 @@ export const queues = {
   import: { retryLimit: 2, retryDelay: 5, expireInSeconds: 1800, deadLetter: undefined },
   sweep: { retryLimit: 0, expireInSeconds: 120, deadLetter: undefined },
   seal: { retryLimit: 0, expireInSeconds: 300, deadLetter: undefined },
+  rollup: { retryLimit: 0, expireInSeconds: 300, deadLetter: undefined },
 } as const;
 
 export type QueueName = keyof typeof queues;

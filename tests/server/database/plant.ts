@@ -71,7 +71,8 @@ function inventValue(column: PgColumn): unknown {
   if (type === "text") return `x ${randomBytes(6).toString("hex")}`;
   if (type === "boolean") return false;
   if (type === "integer" || type === "bigint") return randomInt(2, 1_000_000);
-  if (type.startsWith("numeric")) return 1;
+  if (type === "smallint") return randomInt(2, 30_000);
+  if (type.startsWith("numeric") || type === "double precision") return 1;
   if (type === "jsonb") return {};
   if (type === "bytea") return randomBytes(8);
   if (type === "date") return new Date(Date.UTC(2020, 0, randomInt(1, 3000))).toISOString().slice(0, 10);

@@ -144,9 +144,11 @@ export async function loadRates<T>(
   scope: MemberScope,
   url: URL,
   run: (tx: Tx, view: RatesView) => Promise<T>,
+  /** `write` where records of single athletes are read, which is audited. */
+  open: typeof read = read,
 ): Promise<{ frame: Frame; data: T } | { frame: null; data: null }> {
   const query = parseRatesQuery(url.searchParams);
-  return read(scope, async (tx) => {
+  return open(scope, async (tx) => {
     const view = await openView(tx, url, query);
     if (!view) return { frame: null, data: null };
     return { frame: frameOf(scope, view), data: await run(tx, view) };

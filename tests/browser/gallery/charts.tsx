@@ -2,10 +2,12 @@ import { Page, Region } from "~/ui";
 import { BurdenChart } from "~/ui/charts/burden-chart";
 import { ControlChart } from "~/ui/charts/control-chart";
 import { FunnelChart } from "~/ui/charts/funnel-chart";
+import { PeriodGrid } from "~/ui/charts/period-grid";
 import { StepCurve } from "~/ui/charts/step-curve";
 import { ThresholdChart } from "~/ui/charts/threshold-chart";
+import { TwoSidedBars } from "~/ui/charts/two-sided-bars";
 import { controlPoints, funnelLimits, funnelPoints, sums, weeks } from "./chart-data";
-import { burdenCurves, burdenPoints, curves } from "./chart-shapes-data";
+import { burdenCurves, burdenPoints, curves, gridPeriods, gridRows, sides } from "./chart-shapes-data";
 
 /** Every chart, at its fullest and at its barest. */
 export function Charts() {
@@ -68,6 +70,24 @@ export function Charts() {
           yUnit="injuries per 1000 athlete-exposures"
           title="Severity against incidence by body area"
           caption="What is frequent and what is long"
+        />
+      </Region>
+      <Region heading="Sides and weeks">
+        <TwoSidedBars
+          rows={sides}
+          leftLabel="left"
+          rightLabel="right"
+          unit="injuries per 1000 athlete-exposures"
+          decimals={2}
+          title="Rates by body area, left and right"
+          caption="Left and right"
+        />
+        <PeriodGrid
+          rows={gridRows}
+          periods={gridPeriods}
+          title="Sessions with a warm-up by team and week"
+          caption="Sessions with a warm-up"
+          emptyText="No session yet."
         />
       </Region>
     </Page>

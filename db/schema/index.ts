@@ -1,6 +1,7 @@
 export * from "./accounts";
 export * from "./auth";
 export * from "./availability";
+export * from "./evaluation";
 export * from "./imports";
 export * from "./injuries";
 export * from "./key-check";

@@ -3,6 +3,7 @@ import type { PgTable } from "drizzle-orm/pg-core";
 import * as accounts from "./accounts";
 import * as availability from "./availability";
 import type { Role } from "./codes";
+import * as evaluation from "./evaluation";
 import * as importing from "./imports";
 import * as injuring from "./injuries";
 import * as noticing from "./notices";
@@ -198,6 +199,8 @@ export const tenancy: readonly Access[] = [
     table: platform.auditEvents,
     allow: { select: ["admin", "lead", "job"], insert: [...everyone, "guardian", "invitee"] },
   },
+  // The plan counts for the organisation, so it is the lead's alone; whoever reads clinical rates reads it.
+  { table: evaluation.evaluationPlans, allow: { select: clinical, insert: ["lead"] } },
   { table: rollups.exposureRollup, allow: { select: staff, insert: ["job"], delete: ["job"] } },
   // Not the administrator's: single injuries by team, day, sex and age could be told apart.
   { table: rollups.injuryRollup, allow: { select: clinical, insert: ["job"], delete: ["job"] } },

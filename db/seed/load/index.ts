@@ -12,6 +12,7 @@ import { loadInjuries } from "./injuries";
 import { find, type Loading, type OwnScenario, openLoading, scenarioOf } from "./loading";
 import { loadNotices } from "./notices";
 import { ensurePeople } from "./people";
+import { loadPlans } from "./plans";
 import { loadReports } from "./reports";
 import { loadRoster } from "./roster";
 import { loadSessions } from "./sessions";
@@ -59,6 +60,7 @@ async function loadRecords(loading: Loading) {
   await loadRoster(loading);
   await loadSessions(loading);
   await loadWarmUps(loading);
+  await loadPlans(loading);
   await loadInjuries(loading);
   await loadReports(loading);
   await loadAvailability(loading);

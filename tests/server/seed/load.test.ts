@@ -97,6 +97,17 @@ describe("what is loaded", () => {
       ]);
   });
 
+  it("has one plan for judging the programme in each organisation, written before the season under way", async () => {
+    const rows = await maintenance()<{ slug: string; early: boolean }[]>`
+      select o.slug, p.recorded_at < max(s.starts_on) as early
+      from evaluation_plans p
+      join organisations o on o.organisation_id = p.organisation_id
+      join seasons s on s.organisation_id = p.organisation_id
+      where s.starts_on <= ${today}::date
+      group by o.slug, p.id, p.recorded_at order by o.slug`;
+    expect([...rows]).toEqual([...both].sort().map((slug) => ({ slug, early: true })));
+  });
+
   it("takes less than 30 seconds", () => {
     expect(seconds).toBeLessThan(30);
   });
@@ -228,6 +239,7 @@ describe("what is loaded", () => {
       ["coach_reports", "reported_by"],
       ["encounters", "recorded_by"],
       ["no_injury_weeks", "confirmed_by"],
+      ["evaluation_plans", "recorded_by"],
     ] as const) {
       const sql = maintenance();
       const [row] = await sql<{ strangers: number }[]>`

@@ -1,10 +1,10 @@
 import { ScatterPlot, type ScatterPlotLayerProps } from "@nivo/scatterplot";
 import type { ReactNode } from "react";
-import { Marker } from "../marker";
-import { formatTick, niceScale } from "../scale";
-import { seriesLook, unstableDash } from "../series";
+import { formatTick } from "../scale";
 import { ChartFrame, chartTheme, textWidth } from "./chart-frame";
-import { type IntervalGroup, type IntervalRow, layoutRows, placeLabel } from "./interval-rows";
+import { fewerTicks, type IntervalAxis, linearAxis, ratioAxis } from "./interval-axis";
+import { IntervalLine } from "./interval-line";
+import { type IntervalGroup, layoutRows, wordLine } from "./interval-rows";
 
 export type { IntervalGroup, IntervalPoint } from "./interval-rows";
 
@@ -19,6 +19,11 @@ type Props = {
   decimals?: number;
   /** End of the axis; the smallest round number above every upper limit unless given. */
   max?: number;
+  /**
+   * For ratios: equal distances are equal factors, the reference is 1 unless given, the axis ends at 1/max and max.
+   * An upper limit of Infinity and a lower limit of 0 are no limits: the line ends in an arrow.
+   */
+  logarithmic?: boolean;
 };
 
 type Datum = { x: number; y: number };
@@ -29,59 +34,6 @@ const axisRoom = 34;
 const unitRoom = 22;
 /** Room above the lines for the words of the reference. */
 const headRoom = 26;
-
-function IntervalLine({ row, place, right, narrow }: LineProps) {
-  const { rate, series, unstable = false } = row.point;
-  const { colour, textColour, shape, dash } = seriesLook(series);
-  const outline = { stroke: "var(--color-chalk)", strokeWidth: 6, paintOrder: "stroke" } as const;
-  if (!rate) {
-    return (
-      <text
-        x={narrow ? 0 : 6}
-        y={row.y + (narrow ? -11 : 5)}
-        fontSize={15}
-        fill="var(--color-soft)"
-        {...outline}
-      >
-        – {row.text}
-      </text>
-    );
-  }
-  const [from, to] = [place(rate.lower), place(rate.upper)];
-  const label = narrow
-    ? { x: 0, anchor: "start" as const, above: true }
-    : placeLabel(row.text, from, to, right);
-  const drop = narrow ? -14 : label.above ? -9 : 5;
-  return (
-    <g>
-      <line
-        x1={from}
-        x2={to}
-        y1={row.y}
-        y2={row.y}
-        stroke={colour}
-        strokeWidth={3}
-        strokeLinecap={unstable ? "round" : "butt"}
-        strokeDasharray={unstable ? unstableDash : dash}
-      />
-      <g transform={`translate(${place(rate.estimate)},${row.y})`}>
-        <Marker shape={shape} colour={colour} hollow={unstable} radius={7} />
-      </g>
-      <text
-        x={label.x}
-        y={row.y + drop}
-        textAnchor={label.anchor}
-        fontSize={15}
-        fill={textColour}
-        {...outline}
-      >
-        {row.text}
-      </text>
-    </g>
-  );
-}
-
-type LineProps = { row: IntervalRow; place: (value: number) => number; right: number; narrow: boolean };
 
 function Reference({ x, width, height, label }: { x: number; width: number; height: number; label: string }) {
   const fits = x + 6 + textWidth(label) <= width;
@@ -115,7 +67,7 @@ type DrawingProps = LayerProps &
     unit: string;
     narrow: boolean;
     margin: { left: number; right: number };
-    end: number;
+    axis: IntervalAxis;
   };
 
 /** What lies on nivo's grid and axis. */
@@ -129,25 +81,27 @@ function Drawing({
   unit,
   narrow,
   margin,
-  end,
+  axis,
 }: DrawingProps) {
   const right = innerWidth + margin.right;
-  // The axis is linear, as the chart below sets it; nivo's own type allows for dates and words as well.
-  const place = (value: number) => Number((xScale as (value: number) => number)(Math.min(value, end)));
+  // The axis is one of numbers, as the chart below sets it; nivo's own type allows for dates and words as well.
+  const place = (value: number) =>
+    Number((xScale as (value: number) => number)(Math.max(axis.min, Math.min(value, axis.max))));
+  // Narrow words begin a little to the right of the picture's edge, whatever room the axis takes there.
+  const start = 8 - margin.left;
   return (
     <g>
       {reference ? (
         <Reference x={place(reference.value)} width={right} height={innerHeight} label={reference.label} />
       ) : null}
       {narrow ? (
-        <text x={0} y={innerHeight + axisRoom + 12} fontSize={15} fill="var(--color-soft)">
+        <text x={start} y={innerHeight + axisRoom + 12} fontSize={15} fill="var(--color-soft)">
           {unit}
         </text>
       ) : null}
-      {headings.map(({ key, y, label }) => (
+      {headings.map(({ key, y, lines }) => (
         <text
           key={key}
-          x={narrow ? 0 : -margin.left}
           y={y + 5}
           fontSize={narrow ? 17 : 16}
           fontWeight={narrow ? 500 : 400}
@@ -156,11 +110,16 @@ function Drawing({
           strokeWidth={4}
           paintOrder="stroke"
         >
-          {label}
+          {lines.map((line, index) => (
+            // biome-ignore lint/suspicious/noArrayIndexKey: lines of one text never change their order
+            <tspan key={`${index} ${line}`} x={narrow ? start : -margin.left} dy={index === 0 ? 0 : wordLine}>
+              {line}
+            </tspan>
+          ))}
         </text>
       ))}
       {rows.map((row) => (
-        <IntervalLine key={row.key} row={row} place={place} right={right} narrow={narrow} />
+        <IntervalLine key={row.key} {...{ row, place, right, narrow, axis, start }} />
       ))}
     </g>
   );
@@ -170,17 +129,17 @@ function Drawing({
  * Estimates with their intervals, by group, on one axis: each line carries its own words, so there is no legend.
  * On a narrow screen the words stand above the lines.
  */
-export function IntervalChart({ groups, unit, title, caption, reference, decimals = 1, max }: Props) {
+export function IntervalChart(props: Props) {
+  const { groups, unit, title, caption, decimals = 1, max, logarithmic = false } = props;
+  const reference = props.reference ?? (logarithmic ? { value: 1, label: "" } : undefined);
   const rates = groups.flatMap((group) => group.points.flatMap((point) => point.rate ?? []));
-  const reach = max ?? Math.max(0, reference?.value ?? 0, ...rates.map((rate) => rate.upper));
-  const scale = niceScale(reach);
+  const axis = (logarithmic ? ratioAxis : linearAxis)({ rates, reference: reference?.value, max });
   const layouts = {
-    wide: layoutRows(groups, false, decimals),
-    narrow: layoutRows(groups, true, decimals),
+    wide: layoutRows(groups, false, decimals, logarithmic),
+    narrow: layoutRows(groups, true, decimals, logarithmic),
   };
   const labelRoom = Math.min(300, Math.max(60, ...groups.map((group) => textWidth(group.label) + 40)));
-  const data = [{ id: "estimates", data: rates.map((rate, index) => ({ x: rate.estimate, y: index })) }];
-  const lastTick = scale.ticks.at(-1);
+  const lastTick = axis.ticks.at(-1);
 
   return (
     <ChartFrame
@@ -191,31 +150,32 @@ export function IntervalChart({ groups, unit, title, caption, reference, decimal
       {({ width, height, narrow }) => {
         const { headings, rows } = narrow ? layouts.narrow : layouts.wide;
         const margin = narrow
-          ? { top: headRoom, right: 36, bottom: axisRoom + unitRoom, left: 8 }
+          ? { top: headRoom, right: 36, bottom: axisRoom + unitRoom, left: logarithmic ? 28 : 8 }
           : { top: headRoom, right: 150, bottom: axisRoom, left: labelRoom };
         return (
           <ScatterPlot
             width={width}
             height={height}
             margin={margin}
-            data={data}
-            xScale={{ type: "linear", min: 0, max: scale.max }}
+            data={[{ id: "corner", data: [{ x: axis.min, y: 0 }] }]}
+            xScale={{
+              ...(logarithmic ? { type: "log", base: 2, nice: false } : { type: "linear" }),
+              min: axis.min,
+              max: axis.max,
+            }}
             yScale={{ type: "linear", min: 0, max: 1 }}
             theme={chartTheme}
             animate={false}
             isInteractive={false}
             enableGridY={false}
-            gridXValues={scale.ticks}
+            gridXValues={axis.ticks}
             axisTop={null}
             axisRight={null}
             axisLeft={null}
             axisBottom={{
               tickSize: 0,
               tickPadding: 12,
-              tickValues:
-                narrow && scale.ticks.length > 6
-                  ? scale.ticks.filter((_, index) => index % 2 === 0)
-                  : scale.ticks,
+              tickValues: narrow ? fewerTicks(axis) : axis.ticks,
               format: (tick) =>
                 tick === lastTick && !narrow ? `${formatTick(tick)} ${unit}` : formatTick(Number(tick)),
             }}
@@ -227,7 +187,7 @@ export function IntervalChart({ groups, unit, title, caption, reference, decimal
                   {...layer}
                   {...{ headings, rows, reference, unit, narrow }}
                   margin={margin}
-                  end={scale.max}
+                  axis={axis}
                 />
               ),
             ]}

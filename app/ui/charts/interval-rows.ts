@@ -1,6 +1,8 @@
 import type { RateEstimate } from "../rate-bar";
 import type { SeriesNumber } from "../series";
 import { textWidth } from "./chart-frame";
+import { wrapWords } from "./end-labels";
+import { intervalWords } from "./interval-words";
 
 export type IntervalPoint = {
   series: SeriesNumber;
@@ -15,40 +17,56 @@ export type IntervalPoint = {
 
 export type IntervalGroup = { label: string; points: IntervalPoint[] };
 
-/** One line of the chart: where it lies and what it says. `y` is in px from the top of the drawing. */
-export type IntervalRow = { key: string; y: number; point: IntervalPoint; text: string };
-export type IntervalHeading = { key: string; y: number; label: string };
+/**
+ * One line of the chart: where it lies and what it says, wrapped for a narrow screen in `lines`. `y` is in px from the
+ * top of the drawing, of a heading that of its first line.
+ */
+export type IntervalRow = { key: string; y: number; point: IntervalPoint; text: string; lines: string[] };
+export type IntervalHeading = { key: string; y: number; lines: string[] };
 
-const wide = { line: 22, gap: 28, top: 14 };
-const narrow = { heading: 26, line: 50, gap: 10, top: 8 };
+/** Widths of words in px by the estimate of `textWidth`; a heading is a little larger than that allows for. */
+const wide = { line: 22, gap: 28, top: 14, words: 280 };
+const narrow = { heading: 26, line: 50, gap: 10, top: 8, words: 300, headingWords: 265 };
+/** From one line of words to the next. */
+export const wordLine = 19;
 
 /** The label of a point, with its figures and their interval unless a note stands for them. */
-export function describePoint({ label, rate, note, unstable }: IntervalPoint, decimals: number): string {
+export function describePoint(
+  { label, rate, note, unstable }: IntervalPoint,
+  decimals: number,
+  ratios = false,
+): string {
   if (note) return `${label}, ${note}`;
-  if (!rate) return `${label}: no figure`;
-  const [estimate, lower, upper] = [rate.estimate, rate.lower, rate.upper].map((value) =>
-    value.toFixed(decimals),
-  );
-  return `${label} ${estimate} (${lower} to ${upper})${unstable ? ", unstable" : ""}`;
+  if (!rate || !Number.isFinite(rate.estimate)) return `${label}: no figure`;
+  const words = `${rate.estimate.toFixed(decimals)} (${intervalWords(rate, decimals, ratios)})`;
+  return `${label} ${words}${unstable ? ", unstable" : ""}`;
 }
 
 /** Places every heading and line. `height` is that of the drawing without the axis below it. */
-export function layoutRows(groups: IntervalGroup[], isNarrow: boolean, decimals: number) {
+export function layoutRows(groups: IntervalGroup[], isNarrow: boolean, decimals: number, ratios = false) {
   const headings: IntervalHeading[] = [];
   const rows: IntervalRow[] = [];
   let y = isNarrow ? narrow.top : wide.top;
   for (const [groupIndex, group] of groups.entries()) {
     const key = `${groupIndex} ${group.label}`;
+    const words = wrapWords(group.label, isNarrow ? narrow.headingWords : wide.words);
+    const more = (words.length - 1) * wordLine;
     if (isNarrow) {
-      headings.push({ key, y: y + 12, label: group.label });
-      y += narrow.heading;
+      headings.push({ key, y: y + 12, lines: words });
+      y += narrow.heading + more;
     } else {
-      headings.push({ key, y: y + ((group.points.length - 1) * wide.line) / 2, label: group.label });
+      // A heading of several lines stands around the middle of its group, which is made as high as it needs.
+      const short = Math.max(0, more - (group.points.length - 1) * wide.line - wide.gap / 2);
+      y += short / 2;
+      headings.push({ key, y: y + ((group.points.length - 1) * wide.line - more) / 2, lines: words });
     }
     for (const [index, point] of group.points.entries()) {
-      const at = isNarrow ? y + 34 : y;
-      rows.push({ key: `${key} ${index}`, y: at, point, text: describePoint(point, decimals) });
-      y += isNarrow ? narrow.line : wide.line;
+      const text = describePoint(point, decimals, ratios);
+      const lines = isNarrow ? wrapWords(text, narrow.words) : [text];
+      const above = (lines.length - 1) * wordLine;
+      const at = isNarrow ? y + 34 + above : y;
+      rows.push({ key: `${key} ${index}`, y: at, point, text, lines });
+      y += isNarrow ? narrow.line + above : wide.line;
     }
     y += isNarrow ? narrow.gap : wide.gap;
   }

@@ -1,5 +1,6 @@
 import { textWidth } from "./chart-frame";
 import { wrapWords } from "./end-labels";
+import { intervalWords } from "./interval-words";
 
 export type SideRate = {
   value: number;
@@ -25,12 +26,8 @@ const narrow = { name: 22, middle: 19, words: 18, line: 34 };
 /** Room for the figures of one side on the narrowest screen, by the estimate of `textWidth`. */
 const narrowWords = 158;
 
-/** What a side says beside its line. An upper limit that is no number of its own is said in words. */
-export function sideWords({ value, lower, upper }: SideRate, decimals: number): string {
-  const [estimate, from] = [value, lower].map((figure) => figure.toFixed(decimals));
-  return Number.isFinite(upper)
-    ? `${estimate} (${from} to ${upper.toFixed(decimals)})`
-    : `${estimate} (${from} upwards, no upper limit)`;
+function sideWords(side: SideRate, decimals: number): string {
+  return `${side.value.toFixed(decimals)} (${intervalWords(side, decimals)})`;
 }
 
 /** What a side says on a wide screen, on one line. */

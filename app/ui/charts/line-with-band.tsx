@@ -1,13 +1,12 @@
-import { Line } from "@nivo/line";
 import type { ReactNode } from "react";
-import { Marker } from "../marker";
 import type { RateEstimate } from "../rate-bar";
-import { formatTick, niceScale } from "../scale";
+import { type NiceScale, niceScale } from "../scale";
 import { type SeriesNumber, seriesLook } from "../series";
-import { ChartFrame, chartTheme, textWidth } from "./chart-frame";
+import { BandLine, type PlacedPoint } from "./band-series";
+import { ChartFrame, textWidth } from "./chart-frame";
 import { type EndWord, EndWords } from "./end-words";
-import { splitAtGaps } from "./gaps";
-import { linePath } from "./svg-path";
+import { namedPeriods } from "./period-plot";
+import { AxisWords, Plot, type PlotArea, tickRoom } from "./plot";
 
 export type BandPoint = (RateEstimate & { unstable?: boolean }) | null;
 export type BandSeries = {
@@ -27,97 +26,43 @@ type Props = {
   reference?: { value: number; label: string };
 };
 
-type Datum = { x: string; y: number | null };
-type NivoSeries = { id: string; data: Datum[] };
-type Placed = { x: number; estimate: number; lower: number; upper: number; unstable: boolean };
+/** Where so many periods meet on a narrow screen, each series gets a picture of its own on the same axis. */
+const crowded = 20;
+const panelHeight = 210;
 
-function Series({ look, runs }: { look: ReturnType<typeof seriesLook>; runs: Placed[][] }) {
-  return (
-    <g>
-      {runs.map((run) => {
-        const there = run.map(({ x, upper }) => ({ x, y: upper }));
-        const back = run.map(({ x, lower }) => ({ x, y: lower })).reverse();
-        return (
-          <g key={run[0]?.x}>
-            {run.length > 1 ? (
-              <path d={`${linePath([...there, ...back])}Z`} fill={look.colour} opacity={0.16} />
-            ) : null}
-            <path
-              d={linePath(run.map(({ x, estimate }) => ({ x, y: estimate })))}
-              fill="none"
-              stroke={look.colour}
-              strokeWidth={2.5}
-              strokeDasharray={look.dash}
-            />
-            {run.map(({ x, estimate, lower, upper, unstable }) => (
-              <g key={x}>
-                {/* A period on its own has no band, so it gets its interval as a line. */}
-                {run.length === 1 ? (
-                  <line x1={x} x2={x} y1={lower} y2={upper} stroke={look.colour} strokeWidth={2.5} />
-                ) : null}
-                <g transform={`translate(${x},${estimate})`}>
-                  <Marker shape={look.shape} colour={look.colour} hollow={unstable} radius={5.5} />
-                </g>
-              </g>
-            ))}
-          </g>
-        );
-      })}
-    </g>
-  );
+function placePoints(points: BandPoint[], periods: string[], { x, y }: PlotArea) {
+  return periods.map((_, index): PlacedPoint | null => {
+    const point = points[index];
+    if (!point || !Number.isFinite(point.estimate)) return null;
+    const { estimate, lower, upper, unstable = false } = point;
+    return { index, x: x(index), estimate: y(estimate), lower: y(lower), upper: y(upper), unstable };
+  });
 }
 
-type DrawingProps = Pick<Props, "periods" | "series" | "unit" | "reference"> & {
-  x: (period: string) => number;
-  y: (value: number) => number;
-  innerWidth: number;
-  innerHeight: number;
-  left: number;
-  /** Width of the labels behind the last period. */
-  room: number;
-};
-
-/** What lies on nivo's grid and axes. */
-function Drawing({
-  periods,
-  series,
-  unit,
-  reference,
-  x,
-  y,
-  innerWidth,
-  innerHeight,
-  left,
-  room,
-}: DrawingProps) {
-  const drawn = series.map(({ series: number, label, points }) => {
-    const placed = periods.map((period, index): Placed | null => {
-      const point = points[index];
-      if (!point) return null;
-      const { estimate, lower, upper, unstable = false } = point;
-      return { x: x(period), estimate: y(estimate), lower: y(lower), upper: y(upper), unstable };
-    });
-    return { number, label, look: seriesLook(number), placed };
-  });
-  const labels = drawn.flatMap(({ label, look, placed }): EndWord[] => {
+/** The lines, the reference, and the words at their ends, spread so that none covers another. */
+function Drawing({ periods, series, reference, area, slot, room }: DrawingProps) {
+  const drawn = series.map((one) => ({ ...one, placed: placePoints(one.points, periods, area) }));
+  const words = drawn.flatMap(({ label, series: number, placed }): EndWord[] => {
     const end = placed.findLast((point) => point !== null);
-    return end ? [{ text: label, y: end.estimate, colour: look.textColour }] : [];
+    return end ? [{ text: label, y: end.estimate, colour: seriesLook(number).textColour }] : [];
   });
-  const level = reference ? y(reference.value) : 0;
-  if (reference) labels.push({ text: reference.label, y: level, colour: "var(--color-ink)" });
-
+  const level = reference ? area.y(reference.value) : 0;
+  if (reference) words.push({ text: reference.label, y: level, colour: "var(--color-ink)" });
   return (
     <g>
-      <text x={left} y={-20} fontSize={15} fill="var(--color-soft)">
-        {unit}
-      </text>
-      {drawn.map(({ number, look, placed }) => (
-        <Series key={number} look={look} runs={splitAtGaps(placed)} />
+      {drawn.map(({ series: number, label, placed }) => (
+        <BandLine
+          key={`${number} ${label}`}
+          series={number}
+          points={placed}
+          slot={slot}
+          opacity={series.length > 2 ? 0.12 : 0.16}
+        />
       ))}
       {reference ? (
         <line
           x1={0}
-          x2={innerWidth}
+          x2={area.innerWidth}
           y1={level}
           y2={level}
           stroke="var(--color-ink)"
@@ -125,73 +70,89 @@ function Drawing({
           strokeDasharray="2 4"
         />
       ) : null}
-      <EndWords words={labels} x={innerWidth + 12} room={room} limit={innerHeight + 24} />
+      <EndWords words={words} x={area.innerWidth + 12} room={room} limit={area.innerHeight + 24} />
     </g>
   );
 }
+
+type DrawingProps = Pick<Props, "periods" | "series" | "reference"> & {
+  area: PlotArea;
+  slot: number;
+  /** Width of the labels behind the last period. */
+  room: number;
+};
+
+/** One picture of some of the series. */
+function Panel({ periods, series, unit, title, reference, scale, ...size }: PanelProps) {
+  const { width, height, right } = size;
+  const y = { min: 0, ...scale };
+  const left = tickRoom(y);
+  const slot = Math.max(0, width - left - right) / Math.max(1, periods.length - 1);
+  const alone = periods.length < 2;
+  return (
+    <Plot
+      width={width}
+      height={height}
+      margin={{ top: 40, right, bottom: 36, left }}
+      x={{
+        min: alone ? -0.5 : 0,
+        max: alone ? 0.5 : periods.length - 1,
+        ticks: namedPeriods(periods, slot),
+        format: (index) => periods[index] ?? "",
+      }}
+      y={y}
+      title={title}
+    >
+      {(area) => (
+        <g>
+          <AxisWords left={left} top={-20} y={unit} />
+          <Drawing {...{ periods, series, reference, area, slot }} room={right - 14} />
+        </g>
+      )}
+    </Plot>
+  );
+}
+
+type PanelProps = Omit<Props, "caption"> & {
+  scale: NiceScale;
+  width: number;
+  height: number;
+  right: number;
+};
 
 /**
  * Estimates over periods with their intervals as bands, each line named at its end. Hollow spots rest on too few
  * events; the line stops where there is no figure.
  */
-export function LineWithBand({ periods, series, unit, title, caption, reference }: Props) {
-  const uppers = series.flatMap(({ points }) => points.flatMap((point) => point?.upper ?? []));
-  const scale = niceScale(Math.max(0, reference?.value ?? 0, ...uppers));
-  const data: NivoSeries[] = series.map(({ series: number, points }) => ({
-    id: String(number),
-    data: periods.map((x, index) => ({ x, y: points[index]?.estimate ?? null })),
-  }));
+export function LineWithBand(props: Props) {
+  const { periods, series, unit, title, caption, reference } = props;
+  const figures = series.flatMap(({ points }) =>
+    points.flatMap((point) => (point ? [point.estimate, point.upper] : [])),
+  );
+  const scale = niceScale(Math.max(0, reference?.value ?? 0, ...figures.filter(Number.isFinite)));
   const ends = [...series, ...(reference ? [reference] : [])];
   const labelRoom = Math.min(170, Math.max(24, ...ends.map(({ label }) => textWidth(label) + 16)));
+  const apart = periods.length > crowded && series.length > 1;
 
   return (
-    <ChartFrame caption={caption} wideHeight={340} narrowHeight={320}>
+    <ChartFrame caption={caption} wideHeight={340} narrowHeight={apart ? panelHeight * series.length : 320}>
       {({ width, height, narrow }) => {
-        const margin = { top: 40, right: narrow ? Math.min(labelRoom, 96) : labelRoom, bottom: 36, left: 40 };
-        const slot = (width - margin.left - margin.right) / Math.max(1, periods.length - 1);
-        const widest = Math.max(...periods.map(textWidth), 1);
-        const every = Math.max(1, Math.ceil((widest + 10) / Math.max(slot, 1)));
+        const right = narrow ? Math.min(labelRoom, 96) : labelRoom;
+        const shared = { periods, reference, scale, width, right };
+        if (!narrow || !apart) return <Panel {...shared} {...{ series, unit, title, height }} />;
         return (
-          <Line
-            width={width}
-            height={height}
-            margin={margin}
-            data={data}
-            xScale={{ type: "point" }}
-            yScale={{ type: "linear", min: 0, max: scale.max }}
-            theme={chartTheme}
-            animate={false}
-            isInteractive={false}
-            enableGridX={false}
-            gridYValues={scale.ticks}
-            axisLeft={{
-              tickSize: 0,
-              tickPadding: 12,
-              tickValues: scale.ticks,
-              format: (tick) => formatTick(Number(tick)),
-            }}
-            axisBottom={{
-              tickSize: 0,
-              tickPadding: 14,
-              tickValues: periods.filter((_, index) => index % every === 0),
-            }}
-            layers={[
-              "grid",
-              "axes",
-              ({ xScale, yScale, innerWidth, innerHeight }) => (
-                <Drawing
-                  {...{ periods, series, unit, reference, innerWidth, innerHeight }}
-                  // A point scale and a linear one, as set above; nivo's own type allows for others as well.
-                  x={xScale as (period: string) => number}
-                  y={yScale as (value: number) => number}
-                  left={-margin.left}
-                  room={margin.right - 14}
-                />
-              ),
-            ]}
-            role="img"
-            ariaLabel={title}
-          />
+          <div>
+            {series.map((one, index) => (
+              <Panel
+                key={`${one.series} ${one.label}`}
+                {...shared}
+                series={[one]}
+                unit={index === 0 ? unit : ""}
+                title={`${title}: ${one.label}`}
+                height={panelHeight}
+              />
+            ))}
+          </div>
         );
       }}
     </ChartFrame>

@@ -1,4 +1,6 @@
 import type { ControlPoint } from "~/ui/charts/control-chart";
+import type { IntervalGroup } from "~/ui/charts/interval-chart";
+import type { BandSeries } from "~/ui/charts/line-with-band";
 
 /** Invented figures, the same at every drawing. */
 const wave = (index: number, step: number) => Math.sin(index * step) + Math.sin(index * step * 2.7) * 0.5;
@@ -49,3 +51,34 @@ const funnelLimit = (label: string, z: number) => ({
   }),
 });
 export const funnelLimits = [funnelLimit("95 %", 1.96), funnelLimit("99.8 %", 3.09)];
+
+const ratio = (estimate: number, lower: number, upper: number) => ({ estimate, lower, upper });
+export const ratios: IntervalGroup[] = [
+  { label: "soccer", points: [{ series: 1, label: "girls", rate: ratio(1.62, 0.98, 2.6) }] },
+  { label: "basketball", points: [{ series: 1, label: "girls", rate: ratio(0.74, 0.31, 1.6) }] },
+  {
+    label: "handball",
+    points: [{ series: 1, label: "girls", rate: ratio(3.1, 0.42, Number.POSITIVE_INFINITY), unstable: true }],
+  },
+  {
+    label: "rugby union in the league of the northern counties, second teams",
+    points: [{ series: 1, label: "girls", rate: ratio(0.3, 0, 1.9), unstable: true }],
+  },
+  { label: "volleyball", points: [{ series: 1, label: "girls", rate: ratio(9, 1.4, 61) }] },
+  { label: "athletics", points: [{ series: 1, label: "girls", rate: null, note: "no exposure" }] },
+];
+const band = (series: 1 | 2 | 3, label: string, level: number): BandSeries => ({
+  series,
+  label,
+  points: weeks.map((_, index) => {
+    if ((index + series * 9) % 31 === 0) return null;
+    const estimate = Math.max(0, level + wave(index + series * 5, 0.5));
+    return {
+      estimate,
+      lower: Math.max(0, estimate - 1.2),
+      upper: estimate + 1.7,
+      unstable: (index + series) % 6 === 0,
+    };
+  }),
+});
+export const bands = [band(1, "girls", 3.4), band(2, "boys", 2.6), band(3, "mixed teams", 3)];

@@ -2,11 +2,13 @@ import { Page, Region } from "~/ui";
 import { BurdenChart } from "~/ui/charts/burden-chart";
 import { ControlChart } from "~/ui/charts/control-chart";
 import { FunnelChart } from "~/ui/charts/funnel-chart";
+import { IntervalChart } from "~/ui/charts/interval-chart";
+import { LineWithBand } from "~/ui/charts/line-with-band";
 import { PeriodGrid } from "~/ui/charts/period-grid";
 import { StepCurve } from "~/ui/charts/step-curve";
 import { ThresholdChart } from "~/ui/charts/threshold-chart";
 import { TwoSidedBars } from "~/ui/charts/two-sided-bars";
-import { controlPoints, funnelLimits, funnelPoints, sums, weeks } from "./chart-data";
+import { bands, controlPoints, funnelLimits, funnelPoints, ratios, sums, weeks } from "./chart-data";
 import { burdenCurves, burdenPoints, curves, gridPeriods, gridRows, sides } from "./chart-shapes-data";
 
 /** Every chart, at its fullest and at its barest. */
@@ -88,6 +90,25 @@ export function Charts() {
           title="Sessions with a warm-up by team and week"
           caption="Sessions with a warm-up"
           emptyText="No session yet."
+        />
+      </Region>
+      <Region heading="Ratios, and long lines">
+        <IntervalChart
+          groups={ratios}
+          unit="times the boys' rate"
+          title="Girls' rates as multiples of the boys' rates"
+          caption="Girls against boys"
+          decimals={2}
+          reference={{ value: 1, label: "no difference" }}
+          logarithmic
+        />
+        <LineWithBand
+          periods={weeks}
+          series={bands}
+          unit="injuries per 1000 athlete-exposures"
+          title="Rates by week"
+          caption="Sixty weeks, three groups"
+          reference={{ value: 3.1, label: "last season 3.1" }}
         />
       </Region>
     </Page>

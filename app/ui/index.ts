@@ -1,7 +1,7 @@
 /**
  * The interface's parts. They know nothing of the trade; every one renders on the server and works without script.
- * Import from "~/ui"; DataTable ("~/ui/data-table"), SearchSelect ("~/ui/search-select") and charts
- * ("~/ui/charts/interval-chart", "~/ui/charts/line-with-band") by path, so that pages without them stay small.
+ * Import from "~/ui"; DataTable ("~/ui/data-table"), SearchSelect ("~/ui/search-select") and charts ("~/ui/charts/…") by
+ * path, so that pages without them stay small.
  *
  * Actions
  *   Button        look: primary|secondary|quiet|danger, size: regular|large, wide, busy, and a button's props
@@ -39,6 +39,24 @@
  *   ChalkStatus   line: broken|solid, children?
  *   RateBar       rate: { estimate, lower, upper } | null, reason?, scale, series?: 1..8, unstable?, decimals?, unit?
  *   RateAxis      scale, label;  NoRate reason;  niceScale(max, count?) -> { max, ticks };  formatTick(value)
+ * Charts          each ~/ui/charts/<file> has its component as default export too, for lazy(); all take title (the words
+ *                 for screen readers) and caption?; a null point is a gap, unstable?: true a hollow spot
+ *   interval-chart    IntervalChart   groups: { label, points: { series, label, rate, unstable?, note? }[] }[], unit,
+ *                                     reference?, decimals?, max?, logarithmic? (ratios: no limits end in arrows)
+ *   line-with-band    LineWithBand    periods, series: { series, label, points }[], unit, reference?
+ *   control-chart     ControlChart    periods, points: ({ value, lower, upper, signal, unstable? } | null)[], centre,
+ *                                     limitLabel, unit, gapNote?
+ *   threshold-chart   ThresholdChart  periods, values, threshold, crossings: number[] (indexes), unit
+ *   funnel-chart      FunnelChart     points: { label, exposure, rate, outside, unstable? }[], centre,
+ *                                     limits: { label, points: { exposure, lower, upper }[] }[], xUnit, yUnit
+ *   step-curve        StepCurve       curves: { series, label, steps: { x, y, lower, upper }[], censored }[], start,
+ *                                     xUnit, yUnit, mark?: { y, label }
+ *   burden-chart      BurdenChart     points: { label, x, y, unstable?, events }[], curves: { value, label }[] (equal
+ *                                     products), xUnit, yUnit
+ *   two-sided-bars    TwoSidedBars    rows: { label, left, right, middle?: { text } }[], leftLabel, rightLabel, unit,
+ *                                     decimals
+ *   period-grid       PeriodGrid      rows: { label, href?, cells: ({ share, text } | null)[] }[],
+ *                                     periods: { short, long }[], emptyText
  * Frame
  *   TopBar        name, home, scope?, person?;  Mark className?
  *   NavLinks      items: { to, label, end? }[], label?

@@ -1,13 +1,20 @@
 import { normalDeviate, normalPValue } from "./numeric";
 import type { Coefficient } from "./regression";
 import type { Estimate, LevelOption } from "./types";
-import { defaultLevel, reject, requireFinite, requireLevel } from "./validate";
+import {
+  defaultLevel,
+  reject,
+  requireFinite,
+  requireLevel,
+  requireNonNegative,
+  requirePositive,
+} from "./validate";
 
 /**
  * A coefficient as a rate ratio with normal limits on the log scale. `robust` (the default) never gives a narrower
  * interval than the model's own: with few teams the sandwich can fall below it by chance, and the method then
  * says that the model's was used.
- * @throws RangeError naming `level` or `standardError`, the latter when too few clusters leave no robust one
+ * @throws RangeError naming `level`, `coefficient` or `standardError`, the last when too few clusters leave no robust one
  */
 export function coefficientRatio(
   coefficient: Coefficient,
@@ -18,6 +25,10 @@ export function coefficientRatio(
 ): Estimate & { pValue: number } {
   requireLevel(level);
   requireFinite("coefficient.estimate", coefficient.estimate);
+  requirePositive("coefficient.standardError", coefficient.standardError);
+  requirePositive("coefficient.quasiStandardError", coefficient.quasiStandardError);
+  if (coefficient.robustStandardError !== null)
+    requireNonNegative("coefficient.robustStandardError", coefficient.robustStandardError);
   const { used, method } = chooseError(coefficient, standardError);
   const margin = normalDeviate(level) * used;
   return {

@@ -1,7 +1,15 @@
 import { gammaProbability } from "./gamma";
 import { normalDeviate } from "./numeric";
 import type { Interval, RateOptions } from "./types";
-import { defaultLevel, defaultPer, requireLevel, requireNonNegative, requirePositive } from "./validate";
+import {
+  defaultLevel,
+  defaultPer,
+  largestCount,
+  reject,
+  requireLevel,
+  requireNonNegative,
+  requirePositive,
+} from "./validate";
 
 /**
  * Funnel limits: between which a single team's observed rate should lie if its true rate were that of the whole,
@@ -26,6 +34,8 @@ export function funnelLimits({
   requirePositive("per", per);
   requireLevel(level);
   const expected = (rate / per) * exposure;
+  // Beyond this the search for a quantile would take seconds.
+  if (expected > largestCount) reject("exposure", `with at most ${largestCount} events expected`, expected);
   if (expected === 0) return { lower: 0, upper: 0 };
   const tail = (1 - level) / 2;
   const deviate = normalDeviate(level);

@@ -83,6 +83,8 @@ export function poissonRegression({
 /** Shared with the correlated fit: the same rows are refused by the same names. */
 export function requireRegressionRows(rows: readonly RegressionRow[], names: readonly string[]) {
   requireNonEmpty("rows", rows);
+  for (const [index, name] of names.entries())
+    if (typeof name !== "string") reject(`names[${index}]`, "a text", name);
   if (new Set(names).size !== names.length) reject("names", "all different", names.join(", "));
   const clustered = rows[0]?.cluster !== undefined;
   for (const [index, row] of rows.entries()) {

@@ -8,20 +8,27 @@ export function reject(name: string, must: string, got?: unknown): never {
   throw new RangeError(`${name}: must be ${must}${got === undefined ? "" : `, got ${String(got)}`}`);
 }
 
+// Far outside any exposure, rate or count of days; between them squares and quotients stay finite.
+const largest = 1e60;
+const smallest = 1e-60;
+
 export function requireFinite(name: string, value: number) {
-  if (!Number.isFinite(value)) reject(name, "a finite number", value);
+  if (!Number.isFinite(value) || Math.abs(value) > largest)
+    reject(name, `a finite number, at most ${largest} in size`, value);
 }
 
 export function requirePositive(name: string, value: number) {
-  if (!Number.isFinite(value) || value <= 0) reject(name, "a finite number above 0", value);
+  if (!Number.isFinite(value) || value < smallest || value > largest)
+    reject(name, `a finite number above 0 (${smallest} to ${largest})`, value);
 }
 
 export function requireNonNegative(name: string, value: number) {
-  if (!Number.isFinite(value) || value < 0) reject(name, "a finite number of 0 or more", value);
+  if (!Number.isFinite(value) || value < 0 || value > largest)
+    reject(name, `a finite number of 0 or more, at most ${largest}`, value);
 }
 
 // Far above any count of injuries, days or years; beyond it the exact methods would take seconds.
-const largestCount = 10_000_000;
+export const largestCount = 10_000_000;
 
 export function requireCount(name: string, value: number) {
   if (!Number.isInteger(value) || value < 0 || value > largestCount) {

@@ -1,12 +1,11 @@
 import { group } from "d3-array";
 import { addDays, weekStart } from "~/platform/clock";
-import { proportion } from "~/statistics";
 import type { Tx } from "~db/client.server";
 import { type Coverage, coverageOf, type SessionTally } from "./coverage";
 import { dayWords } from "./periods";
 import { type Counts, select } from "./selection";
 import { type ReportedWeeks, reportedWeeks } from "./silence";
-import { type Cell, figure, type TableColumn, type TableData } from "./tables";
+import type { Cell, TableColumn, TableData } from "./tables";
 import { countView, type RatesView } from "./view.server";
 
 /** How much of the exposure is recorded, by team and week, and how much of the time was reported on. */
@@ -66,17 +65,9 @@ export function coverageRows(counts: Counts, sessions: readonly SessionTally[]):
   });
 }
 
-const shareColumn: TableColumn = {
-  id: "share",
-  header: "Recorded share",
-  kind: "figure",
-  form: "share",
-  unit: "per cent of held sessions",
-  bar: true,
-};
+const shareColumn: TableColumn = { id: "share", header: "Recorded share", kind: "percent" };
 
-const shareCell = (successes: number, trials: number): Cell =>
-  trials === 0 ? { reason: "no session held" } : figure(proportion({ successes, trials }));
+const shareCell = ({ share }: Coverage): Cell => share ?? { reason: "no session held" };
 
 function teamTable(rows: readonly CoverageRow[]): TableData {
   const count = (id: string, header: string): TableColumn => ({ id, header, kind: "count" });
@@ -101,7 +92,7 @@ function teamTable(rows: readonly CoverageRow[]): TableData {
         held: coverage.held,
         recorded: coverage.recorded,
         ...sums,
-        share: shareCell(coverage.recorded, coverage.held),
+        share: shareCell(coverage),
         reported: `${reported.reported} of ${reported.all}`,
       },
     })),
@@ -121,8 +112,9 @@ function weekTable(counts: Counts, sessions: readonly SessionTally[]): TableData
       shareColumn,
     ],
     rows: weeksOf(counts.from, counts.to).flatMap((week) => {
-      const { held, recorded } = coverageOf(byWeek.get(week) ?? []);
-      const cells = { week: dayWords(week, true), held, recorded, share: shareCell(recorded, held) };
+      const coverage = coverageOf(byWeek.get(week) ?? []);
+      const { held, recorded } = coverage;
+      const cells = { week: dayWords(week, true), held, recorded, share: shareCell(coverage) };
       return held > 0 ? [{ key: week, cells }] : [];
     }),
   };

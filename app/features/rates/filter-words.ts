@@ -1,5 +1,6 @@
 import { bodyAreaWords, sideWords, sportWords } from "~/features/vocabulary";
 import { bodyAreas, type Sport, sides } from "~db/schema/codes";
+import { formatCount } from "./figures";
 import type {
   CaseDefinition,
   ContactChoice,
@@ -112,19 +113,33 @@ export function narrowingChoices(
   };
 }
 
-/** The injuries that a view counts, in words: "non-contact knee injuries with time loss". */
-export function injuriesInWords({ injuries, area, side, contact, onset, occurrence }: RatesFilters): string {
-  const before = [
+/** What stands before the noun: "non-contact and indirect contact knee"; empty when nothing is narrowed. */
+function adjectives({ area, side, contact, onset, occurrence }: Narrowing): string {
+  return [
     occurrence === "index" ? "index" : "",
     onset === "any" ? "" : onset,
     contact === "any" || contact === "unknown" ? "" : contactChoiceWords[contact],
     side === "left" || side === "right" ? side : "",
     area === "any" ? "" : (bodyAreaWords[area as keyof typeof bodyAreaWords] ?? area),
-  ].filter(Boolean);
-  const noun = occurrence === "recurrent" ? "re-injuries" : "injuries";
-  const after = injuries === "time-loss" ? "with time loss" : "that needed attention";
-  const rest = contact === "unknown" ? ", contact not known" : "";
-  return [...before, noun, after].join(" ") + rest;
+  ]
+    .filter(Boolean)
+    .join(" ");
+}
+
+/** A number of the injuries that a view counts: "no knee injuries", "1 re-injury", "6 non-contact injuries". */
+export function countedInWords(count: number, filters: Narrowing): string {
+  const [one, many] =
+    filters.occurrence === "recurrent" ? ["re-injury", "re-injuries"] : ["injury", "injuries"];
+  const number = count === 0 ? "no" : formatCount(count);
+  return [number, adjectives(filters), count === 1 ? one : many].filter(Boolean).join(" ");
+}
+
+/** The injuries that a view counts, in words: "non-contact knee injuries with time loss". */
+export function injuriesInWords(filters: Narrowing & Pick<RatesFilters, "injuries">): string {
+  const noun = filters.occurrence === "recurrent" ? "re-injuries" : "injuries";
+  const after = filters.injuries === "time-loss" ? "with time loss" : "that needed attention";
+  const rest = filters.contact === "unknown" ? ", contact not known" : "";
+  return [adjectives(filters), noun, after].filter(Boolean).join(" ") + rest;
 }
 
 /** Whose injuries, in words: "girls and women aged 15-16 in soccer"; empty for everybody. */

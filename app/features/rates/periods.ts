@@ -1,6 +1,4 @@
-import { addMonths } from "~/platform/clock";
-
-/** Months, weeks and seasons of a view, as keys and as words. Days are ISO dates. */
+/** Months and seasons of a view, as keys and as words. Days are ISO dates. Small enough for the browser. */
 
 export type SeasonDays = { id: string; name: string; startsOn: string; endsOn: string };
 
@@ -11,9 +9,13 @@ export const seasonOf = (day: string, seasons: readonly SeasonDays[]) =>
 /** Every month from the one of `from` to the one of `to`: "2026-09". */
 export function monthsOf(from: string, to: string): string[] {
   const months: string[] = [];
-  for (let month = `${from.slice(0, 7)}-01`; month <= to; month = addMonths(month, 1))
-    months.push(month.slice(0, 7));
-  return months;
+  let [year, month] = [Number(from.slice(0, 4)), Number(from.slice(5, 7))];
+  for (;;) {
+    const key = `${year}-${String(month).padStart(2, "0")}`;
+    if (key > to.slice(0, 7)) return months;
+    months.push(key);
+    [year, month] = month === 12 ? [year + 1, 1] : [year, month + 1];
+  }
 }
 
 const names = ["Jan", "Feb", "Mar", "Apr", "May", "Jun", "Jul", "Aug", "Sep", "Oct", "Nov", "Dec"];

@@ -26,7 +26,7 @@ function group(row: RateRow) {
 
 function comparison(compared: Rates["comparison"]) {
   if (!compared) return null;
-  const { first, second, ratio } = compared;
+  const { first, second, ratio, robust } = compared;
   return {
     first: first.key,
     second: second.key,
@@ -34,6 +34,13 @@ function comparison(compared: Rates["comparison"]) {
       ...ratio,
       estimate: finite(ratio.estimate),
       upper: finite(ratio.upper),
+    },
+    rateRatioAllowingForTeams: robust && {
+      estimate: robust.estimate,
+      lower: robust.lower,
+      upper: robust.upper,
+      level: robust.level,
+      method: robust.method,
     },
   };
 }

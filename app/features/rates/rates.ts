@@ -1,5 +1,11 @@
 import { group } from "d3-array";
-import { type Estimate, incidenceRate, type RateRatio, rateRatio } from "~/statistics";
+import {
+  clusterRobustRateRatio,
+  type Estimate,
+  incidenceRate,
+  type RateRatio,
+  rateRatio,
+} from "~/statistics";
 import { denominator, type ExposureByUnit, sumExposure } from "./counting";
 import { type Coverage, coverageOf, percent, type SessionTally, stableFrom } from "./coverage";
 import { type RatesFilters, type RateUnit, splitsExposure } from "./filters";
@@ -19,7 +25,13 @@ export type RateRow = Group & {
   unstable: boolean;
 };
 
-export type Comparison = { first: RateRow; second: RateRow; ratio: RateRatio | null };
+export type Comparison = {
+  first: RateRow;
+  second: RateRow;
+  ratio: RateRatio | null;
+  /** The same ratio with limits that allow for teams as clusters; null where those cannot be had. */
+  robust: Estimate | null;
+};
 
 const unitWords: Record<RateUnit, string> = { aes: "athlete-exposures", hours: "exposure hours" };
 
@@ -64,9 +76,11 @@ const unreported = (row: RateRow): RateRow => ({
 
 const only = <T>(list: readonly T[]) => (list.length === 1 ? list[0] : undefined);
 
+type Compared = { rows: readonly RateRow[]; by: RatesFilters["by"]; counts: Counts; selection: Selection };
+
 /** Two groups to compare: the sexes or the session kinds, those with the most exposure, the higher rate first. */
-function compare(rows: readonly RateRow[]): Comparison | null {
-  const largest = rows
+function compare(compared: Compared, unit: RateUnit): Comparison | null {
+  const largest = compared.rows
     .filter(
       ({ rate, sex, key }) =>
         rate && (sex === "female" || sex === "male" || ["training", "match"].includes(key)),
@@ -81,7 +95,31 @@ function compare(rows: readonly RateRow[]): Comparison | null {
     exposure: amount ?? 0,
   });
   const [a, b] = [side(first), side(second)];
-  return { first, second, ratio: a.events + b.events === 0 ? null : rateRatio(a, b) };
+  if (a.events + b.events === 0) return { first, second, ratio: null, robust: null };
+  return { first, second, ratio: rateRatio(a, b), robust: allowForTeams([first, second], compared, unit) };
+}
+
+/** The ratio of two groups with their teams as clusters; null without events on both sides or with too few teams. */
+function allowForTeams(
+  [first, second]: readonly [RateRow, RateRow],
+  { by, counts, selection }: Compared,
+  unit: RateUnit,
+): Estimate | null {
+  if (!first.injuries || !second.injuries) return null;
+  const keyOf = groupKey(by, counts);
+  const rows = [first, second].flatMap(({ key }, index) => {
+    const cells = selection.cells.filter((cell) => keyOf(placeCell(cell)) === key);
+    const injuries = selection.counted.filter((injury) => keyOf(placeInjury(injury)) === key);
+    const exposed = group(cells, ({ teamId }) => teamId);
+    return [...exposed].map(([cluster, own]) => ({
+      group: index === 0 ? ("a" as const) : ("b" as const),
+      cluster,
+      events: injuries.filter(({ teamId }) => teamId === cluster).length,
+      exposure: denominator(sumExposure(own), unit),
+    }));
+  });
+  const ratio = clusterRobustRateRatio(rows.filter(({ exposure }) => exposure > 0));
+  return ratio.varianceInflation === null ? null : ratio;
 }
 
 export type { Counts } from "./selection";
@@ -109,7 +147,7 @@ export function tabulate(
   const keyOf = groupKey(grouping, counts);
   const keyed = group(cells, (cell) => keyOf(placeCell(cell)));
   const events = group(counted, (injury) => keyOf(placeInjury(injury)));
-  return listGroups(grouping, counts).flatMap((each) => {
+  const rows = listGroups(grouping, counts).flatMap((each) => {
     const own = splitsExposure(grouping) ? (keyed.get(each.key) ?? []) : cells;
     const injuries = events.get(each.key)?.length ?? 0;
     const isEmpty = injuries === 0 && (own.length === 0 || !splitsExposure(grouping));
@@ -119,6 +157,8 @@ export function tabulate(
     const row = rateRow({ group: each, events: injuries, exposure: sumExposure(own), unit, coverage });
     return [isEmpty ? unreported(row) : row];
   });
+  // Groups of injuries have no order of their own: the most frequent first.
+  return splitsExposure(grouping) ? rows : rows.sort((a, b) => (b.injuries ?? 0) - (a.injuries ?? 0));
 }
 
 /** Everything a view of rates shows, from its counts and filters. */
@@ -141,7 +181,10 @@ export function computeRates(counts: Counts, filters: RatesFilters) {
   return {
     rows,
     total,
-    comparison: by === "kind" || by === "sex" || by === "sex-age" ? compare(compared) : null,
+    comparison:
+      by === "kind" || by === "sex" || by === "sex-age"
+        ? compare({ rows: compared, by: by === "kind" ? "kind" : "sex", counts, selection }, unit)
+        : null,
     /** The one group with exposure, where nothing can be compared. */
     single: only(compared.filter(({ denominator: amount }) => (amount ?? 0) > 0)) ?? null,
     coverage,

@@ -1,5 +1,6 @@
 import { stableFrom } from "./coverage";
 import { decimalsFor, formatCount, formatRate, formatRatio } from "./figures";
+import { countedInWords, peopleInWords } from "./filter-words";
 import type { RatesFilters, RateUnit } from "./filters";
 import type { Comparison, RateRow, Rates } from "./rates";
 import type { ReportedWeeks } from "./silence";
@@ -27,8 +28,6 @@ export const unitWords: Record<RateUnit, string> = {
 const several = (count: number, one: string, many: string) =>
   `${formatCount(count)} ${Math.round(count) === 1 ? one : many}`;
 
-const injuriesWords = (count: number) => (count === 0 ? "no injuries" : several(count, "injury", "injuries"));
-
 /** "girls" belongs to somebody: "the girls' rate"; "women": "the women's rate"; matches: "the rate of matches". */
 function ownerOf({ label, sex }: RateRow) {
   const words = label.toLowerCase();
@@ -44,28 +43,45 @@ function ratePart(row: RateRow, decimals: number): Part[] {
   return [strong(`${estimate} per 1000`), plain(" "), interval(`(${lower} to ${upper})`)];
 }
 
-function clause(subject: string, row: RateRow, unit: RateUnit, decimals: number): Part[] {
-  const [one, many] = exposureWords[unit];
-  const counts = `${injuriesWords(row.injuries ?? 0)} in ${several(row.denominator ?? 0, one, many)}`;
+function clause(subject: string, row: RateRow, filters: RatesFilters, decimals: number): Part[] {
+  const [one, many] = exposureWords[filters.per];
+  const counts = `${countedInWords(row.injuries ?? 0, filters)} in ${several(row.denominator ?? 0, one, many)}`;
   return [plain(`${subject} had `), strong(counts), plain(", "), ...ratePart(row, decimals)];
 }
 
+type Interval = { lower: number; upper: number };
+
+/** Both intervals together: a difference has to stand in each of them. */
+const wider = (ratio: Interval, robust: Interval | null): Interval =>
+  robust ? { lower: Math.min(ratio.lower, robust.lower), upper: Math.max(ratio.upper, robust.upper) } : ratio;
+
 /** What the interval of a ratio says about no difference. */
-export function readRatio({ lower, upper }: { lower: number; upper: number }) {
+export function readRatio({ lower, upper }: Interval) {
   if (lower <= 1 && upper >= 1) return "the interval includes no difference";
   return lower > 1
     ? "the whole interval lies above no difference"
     : "the whole interval lies below no difference";
 }
 
-function comparisonParts({ first, second, ratio }: Comparison, unit: RateUnit, decimals: number): Part[] {
-  const parts = clause(first.label, first, unit, decimals);
+/** The interval of a ratio, and beside it the one that allows for teams. */
+function ratioInterval(ratio: Interval, robust: Interval | null) {
+  const limits = ({ lower, upper }: Interval) => `${formatRatio(lower)} to ${formatRatio(upper)}`;
+  return interval(`(${limits(ratio)}${robust ? `; allowing for teams ${limits(robust)}` : ""})`);
+}
+
+function comparisonParts(
+  { first, second, ratio, robust }: Comparison,
+  filters: RatesFilters,
+  decimals: number,
+): Part[] {
+  const who = peopleInWords({ ...filters, sex: "any" });
+  const parts = clause(who ? `${first.label} ${who}` : first.label, first, filters, decimals);
   if (!ratio) return [...parts, plain(`. ${second.label} had none either.`)];
   if (ratio.estimate === Infinity) {
     return [
       ...parts,
       plain(". "),
-      ...clause(second.label, second, unit, decimals),
+      ...clause(second.label, second, filters, decimals),
       plain(`; the ratio has no upper limit and could be as low as ${formatRatio(ratio.lower)}.`),
     ];
   }
@@ -75,8 +91,8 @@ function comparisonParts({ first, second, ratio }: Comparison, unit: RateUnit, d
     plain(". That is "),
     strong(`${formatRatio(ratio.estimate)} times`),
     plain(` ${before}${after} `),
-    interval(`(${formatRatio(ratio.lower)} to ${formatRatio(ratio.upper)})`),
-    plain(`; ${readRatio(ratio)}.`),
+    ratioInterval(ratio, robust),
+    plain(`; ${readRatio(wider(ratio, robust))}.`),
   ];
 }
 
@@ -89,25 +105,26 @@ const isThin = ({ first, second }: Comparison) => first.unstable || second.unsta
  */
 export function writeSentence(rates: Rates, filters: RatesFilters, scope: string): Part[] {
   const { total, comparison, coverage } = rates;
-  const { per: unit } = filters;
+  const who = peopleInWords(filters);
+  const subject = who ? `${scope}, ${who},` : scope;
+  const counted = countedInWords(total.injuries ?? 0, filters);
   const shown = [total, ...rates.rows].flatMap(({ rate }) => rate?.estimate ?? []);
   const decimals = decimalsFor(shown);
   if (coverage.state === "none")
     return [plain(`${scope} has no session in this season that was held, so there is no rate yet.`)];
   if (coverage.state === "withheld")
     return [
-      plain(`${scope} had `),
-      strong(injuriesWords(total.injuries ?? 0)),
+      plain(`${subject} had `),
+      strong(counted),
       plain(", but too little of the exposure is recorded to show a rate that could be trusted."),
     ];
-  if (!total.rate)
-    return [plain(`${scope} had ${injuriesWords(total.injuries ?? 0)} and no exposure of this unit.`)];
+  if (!total.rate) return [plain(`${subject} had ${counted} and no exposure of this unit.`)];
   if (comparison) {
     const thin = isThin(comparison) ? [plain(" "), attention("This is thin evidence.")] : [];
-    return [...comparisonParts(comparison, unit, decimals), ...thin];
+    return [...comparisonParts(comparison, filters, decimals), ...thin];
   }
   const thin = total.unstable ? [plain(" "), attention("This is thin evidence.")] : [];
-  return [...clause(scope, total, unit, decimals), plain("."), ...thin];
+  return [...clause(subject, total, filters, decimals), plain("."), ...thin];
 }
 
 const definitionNote: Record<RatesFilters["injuries"], string> = {

@@ -23,6 +23,8 @@ export type TableColumn =
   | { id: string; header: string; kind: "count" }
   /** A plain number that no interval goes with, such as a quartile of days. */
   | { id: string; header: string; kind: "number"; decimals: number }
+  /** A share of a whole that was counted, not sampled (0 to 1): it has no interval. */
+  | { id: string; header: string; kind: "percent" }
   /** An estimate with its interval; `bar` draws it on the column's own axis. `unit`: "per 1000 hours". */
   | { id: string; header: string; kind: "figure"; form: FigureForm; unit: string; bar?: boolean };
 

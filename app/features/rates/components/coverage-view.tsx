@@ -3,7 +3,7 @@ import { Attention, Lede, Region } from "~/ui";
 import { coverageFloor, coverageWarning, percent } from "../coverage";
 import type { CoverageRow, CoverageView as View } from "../coverage-view.server";
 import { formatCount } from "../figures";
-import { dayWords } from "../periods";
+import { dayWords, monthWords } from "../periods";
 import { CoverageNote } from "./coverage-note";
 import { FigureTable } from "./figure-table";
 
@@ -58,12 +58,15 @@ export function CoverageView({ slug, ...view }: View & { slug: string }) {
       <Suspense fallback={<div style={{ height: rows.length * 34 + 60 }} />}>
         <PeriodGrid
           rows={rows.map(({ name, weeks: cells, coverage: own }) => ({
-            label: own.share === null ? name : `${name}, ${percent(own.share)}`,
+            label: own.share === null ? name : `${name}, ${percent(own.share).replace(" ", "\u00a0")}`,
             cells: cells.map((cell) =>
               cell ? { share: cell.share, text: `${cell.recorded} of ${cell.held} recorded` } : null,
             ),
           }))}
-          periods={weeks.map((week) => ({ short: week, long: `week from ${dayWords(week, true)}` }))}
+          periods={weeks.map((week) => ({
+            short: monthWords(week).split(" ")[0] ?? "",
+            long: `week from ${dayWords(week, true)}`,
+          }))}
           title="Share of each team's held sessions with recorded exposure, week by week; the tables below hold the numbers."
           emptyText="no session held"
         />

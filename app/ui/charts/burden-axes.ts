@@ -10,10 +10,13 @@ function roundFigures(from: number, to: number): number[] {
 
 /**
  * A logarithmic axis around positive values, with a little room on both sides. Its ends need not be round, so that
- * no half of the picture stays empty; at least a factor of four lies between them.
+ * no half of the picture stays empty; at least a factor of four lies between them. Values under 1e-9 or over 1e12
+ * are drawn at the ends.
  */
 export function logarithmicAxis(values: number[], perDecade: "all" | "tens" = "all"): PlotAxis {
-  const known = values.filter((value) => Number.isFinite(value) && value > 0).map(Math.log10);
+  const known = values
+    .filter((value) => Number.isFinite(value) && value > 0)
+    .map((value) => Math.min(12, Math.max(-9, Math.log10(value))));
   const low = known.length > 0 ? Math.min(...known) : 0;
   const high = known.length > 0 ? Math.max(...known) : 1;
   const room = Math.max(0.12 * (high - low), 0.3 - (high - low) / 2, 0.15);

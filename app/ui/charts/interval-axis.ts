@@ -14,6 +14,8 @@ export function linearAxis({ rates, reference = 0, max }: Input): IntervalAxis {
 
 /** How far an axis of ratios follows a limit: further off the limit ends in an arrow, or all else would be pressed. */
 const farthest = 16;
+/** A ratio past a million lies at the end. */
+const mostPowers = 20;
 /** At most this many figures are written at an axis of ratios. */
 const mostTicks = 9;
 
@@ -29,8 +31,8 @@ export function ratioAxis({ rates, reference = 1, max }: Input): IntervalAxis {
   const reach = max !== undefined && max > 1 ? { low: 1 / max, high: max } : null;
   const low = reach?.low ?? Math.min(0.5, ...ends, ...near, ...fixed);
   const high = reach?.high ?? Math.max(2, ...ends, ...near, ...fixed);
-  const from = Math.floor(Math.log2(low) + 1e-9);
-  const to = Math.ceil(Math.log2(high) - 1e-9);
+  const from = Math.max(-mostPowers, Math.floor(Math.log2(low) + 1e-9));
+  const to = Math.min(mostPowers, Math.ceil(Math.log2(high) - 1e-9));
   const every = Math.ceil((to - from + 1) / mostTicks);
   const ticks: number[] = [];
   // 1 is always among them.

@@ -86,7 +86,11 @@ function Drawing({
   const right = innerWidth + margin.right;
   // The axis is one of numbers, as the chart below sets it; nivo's own type allows for dates and words as well.
   const place = (value: number) =>
-    Number((xScale as (value: number) => number)(Math.max(axis.min, Math.min(value, axis.max))));
+    Number(
+      (xScale as (value: number) => number)(
+        Number.isNaN(value) ? axis.min : Math.max(axis.min, Math.min(value, axis.max)),
+      ),
+    );
   // Narrow words begin a little to the right of the picture's edge, whatever room the axis takes there.
   const start = 8 - margin.left;
   return (

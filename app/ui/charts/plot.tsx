@@ -38,9 +38,9 @@ type Props = {
   children: (area: PlotArea) => ReactElement;
 };
 
-/** Room on the left for the figures of an upright axis, in px. */
+/** Room on the left for the figures of an upright axis, in px; more than a thousand million would have no room. */
 export function tickRoom({ ticks, format = formatTick }: PlotAxis): number {
-  return Math.max(40, ...ticks.map((tick) => textWidth(format(tick)) + 14));
+  return Math.min(132, Math.max(40, ...ticks.map((tick) => textWidth(format(tick)) + 14)));
 }
 
 const scaleOf = ({ min, max, logarithmic }: PlotAxis) =>

@@ -99,7 +99,7 @@ function wordsOf({ curves, start, mark }: Pick<Props, "curves" | "start" | "mark
     colour: seriesLook(curve.series).textColour,
     x: Math.min(
       area.innerWidth + 10,
-      Math.max(area.x(endOf(curve)) + 8, area.innerWidth < 400 ? area.innerWidth + 10 : 0),
+      Math.max(area.x(endOf(curve)) + 10, area.innerWidth < 400 ? area.innerWidth + 10 : 0),
     ),
   }));
   return mark ? [...words, { text: mark.label, y: area.y(mark.y), colour: "var(--color-ink)" }] : words;

@@ -74,6 +74,8 @@ function selectCurrent(tx: Tx, ...conditions: (SQL | undefined)[]) {
         number: athletes.number,
         dateOfBirth: athletes.dateOfBirth,
         sex: athletes.sex,
+        /** Set when the athlete left the organisation. */
+        archivedAt: athletes.archivedAt,
       },
       session: {
         id: sessions.id,

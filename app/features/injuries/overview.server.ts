@@ -5,7 +5,7 @@ import {
   timeLossOf,
 } from "~/features/availability/availability";
 import { contributionsOfInjuries } from "~/features/availability/availability.server";
-import { daysBetween } from "~/platform/clock";
+import { dayIn, daysBetween } from "~/platform/clock";
 import type { Sealer } from "~/platform/crypto/keys.server";
 import { type SeverityBand, severityBand, type TimeLoss } from "~/statistics";
 import type { Tx } from "~db/client.server";
@@ -51,6 +51,13 @@ export type InjuryOverview = InjuryRow & {
   open: boolean;
 };
 
+/** The day up to which the time loss of an injury is known: leaving the organisation ends it, and censors it. */
+function knownUntil({ timeZone }: Tx["scope"], { athlete, revision }: InjuryRow, asOf: string) {
+  const left = athlete.archivedAt && dayIn(timeZone, athlete.archivedAt);
+  if (!left || left >= asOf) return asOf;
+  return left < revision.onsetDay ? revision.onsetDay : left;
+}
+
 /** Adds what follows from the rules to rows of injuries: time loss to today, severity, gaps, teams. */
 export async function overviewsOf(tx: Tx, rows: readonly InjuryRow[]): Promise<InjuryOverview[]> {
   const { today } = tx.scope;
@@ -68,7 +75,7 @@ export async function overviewsOf(tx: Tx, rows: readonly InjuryRow[]): Promise<I
     const parts = contributions.get(row.id) ?? [];
     // An onset entered for a later day than today by another clock is counted from itself.
     const asOf = daysBetween(today, revision.onsetDay) > 0 ? revision.onsetDay : today;
-    const loss = timeLossOf(revision.onsetDay, parts, asOf);
+    const loss = timeLossOf(revision.onsetDay, parts, knownUntil(tx.scope, row, asOf));
     const hasEarlier =
       before.some(({ athleteId }) => athleteId === row.athleteId) ||
       all.some(

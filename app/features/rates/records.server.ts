@@ -2,7 +2,7 @@ import { audit } from "~/platform/audit.server";
 import type { Tx } from "~db/client.server";
 import { numeratorRules, reasonLeftOut } from "./counting";
 import { exposureBehind, figurePartOf, groupLabel, injuriesBehind } from "./records";
-import { listVisibleNames } from "./records.queries.server";
+import { listNames } from "./records.queries.server";
 import { isOfKind, peopleOf, select } from "./selection";
 import { countView, type RatesView } from "./view.server";
 
@@ -30,15 +30,16 @@ export async function recordsBehind(tx: Tx, view: RatesView, url: URL) {
   const leftOut = others.filter(
     ({ injury }) => injuriesBehind(part, counts, { counted: [injury] }).length > 0,
   );
-  const names = await listVisibleNames(
+  const names = await listNames(
     tx,
     [...counted, ...leftOut.map(({ injury }) => injury)].map(({ athleteId }) => athleteId),
   );
   await audit(tx, { action: "injury.list", fields: { count: counted.length, purpose: "rates" } });
   const teams = new Map(counts.teams.map(({ id, name }) => [id, name]));
   const line = (injury: (typeof counted)[number], reason: string | null) => {
-    const name = names.get(injury.athleteId);
-    const { id, onsetDay, bodyArea, side, contact, daysLost, ongoing, teamId } = injury;
+    const { id, onsetDay, bodyArea, side, contact, daysLost, ongoing, teamId, sessionId } = injury;
+    const known = names.get(injury.athleteId);
+    const name = known && (known.visible || sessionId) ? known.name : null;
     const team = (teamId && teams.get(teamId)) || null;
     return name ? [{ id, name, onsetDay, bodyArea, side, contact, daysLost, ongoing, team, reason }] : [];
   };

@@ -30,18 +30,21 @@ export function HowComputed({ filters }: { filters: RatesFilters }) {
           unavailable; what exceeds the roster is of unknown athletes. A match with neither gives estimated
           hours, players on the field times regulation minutes, spread the same way, and never
           athlete-exposures. Athlete-exposures and hours are never mixed in one rate. Ages are those on the
-          day of the session and of the onset.
+          day of the session and of the onset. Contact, movement, body area, side and tissue belong to
+          injuries alone: each of their groups has the whole exposure under it.
         </p>
         <p>
           <strong className="font-semibold">Intervals.</strong> 95 %, exact (Poisson). The ratio of two rates
-          has a mid-P interval. Athletes of one team share their risks, so the true uncertainty of a
-          comparison is somewhat wider. A rate from fewer than {stableFrom} injuries is marked unstable.
+          has a mid-P interval. Athletes of one team share their risks: a comparison therefore shows beside it
+          an interval that allows for teams (sandwich, clustered by team). With fewer than 40 teams even this
+          one is optimistic. A rate from fewer than {stableFrom} injuries is marked unstable.
         </p>
         <p>
           <strong className="font-semibold">Coverage.</strong> The share of held sessions whose participations
           are recorded. Under {share(coverageWarning)} the rates carry a warning, under {share(coverageFloor)}{" "}
-          they are withheld. A team that has entered no injury and confirmed no week without one reads “not
-          reported”, never 0.
+          they are withheld. A team that has entered no injury in a season reads “not reported”, never 0, and
+          its exposure counts only in the weeks that somebody confirmed as without a new injury. A team that
+          has entered an injury reports, and all its exposure counts.
         </p>
       </div>
     </Disclosure>

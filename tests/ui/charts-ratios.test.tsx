@@ -1,6 +1,6 @@
 import fc from "fast-check";
 import { describe, expect, test } from "vitest";
-import { fewerTicks, linearAxis, ratioAxis } from "~/ui/charts/interval-axis";
+import { linearAxis, ratioAxis, shownTicks } from "~/ui/charts/interval-axis";
 import { IntervalChart } from "~/ui/charts/interval-chart";
 import { describePoint, layoutRows, wordLine } from "~/ui/charts/interval-rows";
 import { intervalWords } from "~/ui/charts/interval-words";
@@ -31,7 +31,7 @@ describe("ratios", () => {
         expect(axis.ticks).toContain(1);
         expect(axis.ticks.length).toBeLessThanOrEqual(10);
         for (const tick of axis.ticks) expect(Number.isInteger(Math.log2(tick))).toBe(true);
-        expect(fewerTicks(axis)).toContain(1);
+        for (const width of [60, 220, 600]) expect(shownTicks(axis, width)).toContain(1);
         for (const estimate of estimates) {
           expect(estimate).toBeGreaterThan(axis.min);
           expect(estimate).toBeLessThan(axis.max);

@@ -2,8 +2,15 @@ import { ResponsiveWrapper } from "@nivo/core";
 import type { PartialTheme } from "@nivo/theming";
 import type { CSSProperties, ReactElement, ReactNode } from "react";
 
-/** Below this width labels stand above their lines. It is the `@xl` of a container query in rem: 36 x 16. */
-export const narrowBelow = 576;
+/**
+ * Widths below which a chart is drawn narrow, labels above their lines: `@xl`, `@3xl` and `@4xl` of a container query,
+ * in px of 16 to the rem. Charts with words on both sides of their lines need more.
+ */
+const breaks = {
+  phone: { below: 576, height: "@xl:h-(--wide-height)" },
+  tablet: { below: 768, height: "@3xl:h-(--wide-height)" },
+  desk: { below: 896, height: "@4xl:h-(--wide-height)" },
+};
 
 /** Width drawn on the server: the page's own on a desk. The browser measures and draws again. */
 const serverWidth = 1125;
@@ -24,10 +31,22 @@ export function textWidth(text: string): number {
   return text.length * 7.9 + 4;
 }
 
+/**
+ * The ticks whose words fit at `spacing` px from one to the next: all, or every second, third and so on, always with
+ * the one at `keep`.
+ */
+export function ticksThatFit(words: string[], spacing: number, keep = 0): number[] {
+  const widest = Math.max(1, ...words.map(textWidth));
+  const every = Math.max(1, Math.ceil((widest + 6) / Math.max(spacing, 1)));
+  return words.map((_, index) => index).filter((index) => (index - keep) % every === 0);
+}
+
 type Props = {
-  /** Height in px when wide, and when narrower than `narrowBelow`. Both are known before the width is. */
+  /** Height in px when wide, and when narrow. Both are known before the width is. */
   wideHeight: number;
   narrowHeight: number;
+  /** Up to which kind of screen the chart is drawn narrow: below 576 px unless given, 768 or 896. */
+  narrowOn?: keyof typeof breaks;
   caption?: ReactNode;
   children: (size: { width: number; height: number; narrow: boolean }) => ReactElement;
 };
@@ -36,19 +55,19 @@ type Props = {
  * The box of a chart. Its height comes from the style sheet by the box's own width, so nothing on the page moves
  * when the browser takes over from the server.
  */
-export function ChartFrame({ wideHeight, narrowHeight, caption, children }: Props) {
+export function ChartFrame({ wideHeight, narrowHeight, narrowOn = "phone", caption, children }: Props) {
   const heights = { "--wide-height": `${wideHeight}px`, "--narrow-height": `${narrowHeight}px` };
   return (
     <figure className="my-6">
       {caption ? <figcaption className="mb-2 font-semibold">{caption}</figcaption> : null}
       <div className="@container">
         <div
-          className="h-(--narrow-height) overflow-hidden @xl:h-(--wide-height)"
+          className={`h-(--narrow-height) overflow-hidden ${breaks[narrowOn].height}`}
           style={heights as CSSProperties}
         >
           <ResponsiveWrapper defaultWidth={serverWidth} defaultHeight={wideHeight}>
             {({ width }) => {
-              const narrow = width < narrowBelow;
+              const narrow = width < breaks[narrowOn].below;
               return children({ width, height: narrow ? narrowHeight : wideHeight, narrow });
             }}
           </ResponsiveWrapper>

@@ -1,7 +1,7 @@
 import type { ReactNode } from "react";
 import { Marker } from "../marker";
 import { formatTick, niceScale } from "../scale";
-import { ChartFrame, textWidth } from "./chart-frame";
+import { ChartFrame, textWidth, ticksThatFit } from "./chart-frame";
 import { EndWords } from "./end-words";
 import { placeNames } from "./name-places";
 import { AxisWords, Plot, type PlotArea, type PlotAxis, tickRoom } from "./plot";
@@ -141,8 +141,9 @@ export function FunnelChart(props: Props) {
       {({ width, height, narrow }) => {
         const left = tickRoom(y);
         const right = narrow ? Math.min(endRoom, 92) : endRoom;
-        const few = narrow && x.ticks.length > 4;
-        const ticks = few ? x.ticks.filter((_, index) => index % 2 === 0) : x.ticks;
+        const spacing = (width - left - right) / Math.max(1, x.ticks.length - 1);
+        const shown = new Set(ticksThatFit(x.ticks.map(formatTick), spacing));
+        const ticks = x.ticks.filter((_, index) => shown.has(index));
         return (
           <Plot
             width={width}

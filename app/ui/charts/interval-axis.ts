@@ -1,5 +1,6 @@
 import type { RateEstimate } from "../rate-bar";
-import { niceScale } from "../scale";
+import { formatTick, niceScale } from "../scale";
+import { ticksThatFit } from "./chart-frame";
 
 /** The axis of an interval chart: from `min` to `max`, with the figures written at it. */
 export type IntervalAxis = { min: number; max: number; ticks: number[]; logarithmic: boolean };
@@ -40,9 +41,10 @@ export function ratioAxis({ rates, reference = 1, max }: Input): IntervalAxis {
   return { min: 2 ** from, max: 2 ** to, ticks, logarithmic: true };
 }
 
-/** Every second figure, of ratios those that keep 1. */
-export function fewerTicks({ ticks, logarithmic }: IntervalAxis): number[] {
-  if (ticks.length <= 6) return ticks;
-  const first = logarithmic ? ticks.indexOf(1) % 2 : 0;
-  return ticks.filter((_, index) => index % 2 === first);
+/** The figures whose words fit on an axis of this width in px, always with 0 or, of ratios, 1. */
+export function shownTicks({ ticks, logarithmic }: IntervalAxis, width: number): number[] {
+  const keep = logarithmic ? Math.max(0, ticks.indexOf(1)) : 0;
+  const spacing = width / Math.max(1, ticks.length - 1);
+  const shown = new Set(ticksThatFit(ticks.map(formatTick), spacing, keep));
+  return ticks.filter((_, index) => shown.has(index));
 }

@@ -2,7 +2,7 @@ import { ScatterPlot, type ScatterPlotLayerProps } from "@nivo/scatterplot";
 import type { ReactNode } from "react";
 import { formatTick } from "../scale";
 import { ChartFrame, chartTheme, textWidth } from "./chart-frame";
-import { fewerTicks, type IntervalAxis, linearAxis, ratioAxis } from "./interval-axis";
+import { type IntervalAxis, linearAxis, ratioAxis, shownTicks } from "./interval-axis";
 import { IntervalLine } from "./interval-line";
 import { type IntervalGroup, layoutRows, wordLine } from "./interval-rows";
 
@@ -66,6 +66,7 @@ type DrawingProps = LayerProps &
     reference?: { value: number; label: string };
     unit: string;
     narrow: boolean;
+    ownLine: boolean;
     margin: { left: number; right: number };
     axis: IntervalAxis;
   };
@@ -80,6 +81,7 @@ function Drawing({
   reference,
   unit,
   narrow,
+  ownLine,
   margin,
   axis,
 }: DrawingProps) {
@@ -98,8 +100,8 @@ function Drawing({
       {reference ? (
         <Reference x={place(reference.value)} width={right} height={innerHeight} label={reference.label} />
       ) : null}
-      {narrow ? (
-        <text x={start} y={innerHeight + axisRoom + 12} fontSize={15} fill="var(--color-soft)">
+      {narrow || ownLine ? (
+        <text x={narrow ? start : 0} y={innerHeight + axisRoom + 12} fontSize={15} fill="var(--color-soft)">
           {unit}
         </text>
       ) : null}
@@ -143,19 +145,23 @@ export function IntervalChart(props: Props) {
     narrow: layoutRows(groups, true, decimals, logarithmic),
   };
   const labelRoom = Math.min(300, Math.max(60, ...groups.map((group) => textWidth(group.label) + 40)));
-  const lastTick = axis.ticks.at(-1);
+  // A short unit stands behind the last figure, a long one, or any on a narrow screen, on a line of its own.
+  const ownLine = textWidth(unit) > 110;
 
   return (
     <ChartFrame
       caption={caption}
-      wideHeight={layouts.wide.height + axisRoom + headRoom}
+      narrowOn="tablet"
+      wideHeight={layouts.wide.height + axisRoom + headRoom + (ownLine ? unitRoom : 0)}
       narrowHeight={layouts.narrow.height + axisRoom + headRoom + unitRoom}
     >
       {({ width, height, narrow }) => {
         const { headings, rows } = narrow ? layouts.narrow : layouts.wide;
         const margin = narrow
           ? { top: headRoom, right: 36, bottom: axisRoom + unitRoom, left: logarithmic ? 28 : 8 }
-          : { top: headRoom, right: 150, bottom: axisRoom, left: labelRoom };
+          : { top: headRoom, right: 150, bottom: axisRoom + (ownLine ? unitRoom : 0), left: labelRoom };
+        const shown = shownTicks(axis, width - margin.left - margin.right);
+        const lastTick = narrow || ownLine ? undefined : shown.at(-1);
         return (
           <ScatterPlot
             width={width}
@@ -179,9 +185,9 @@ export function IntervalChart(props: Props) {
             axisBottom={{
               tickSize: 0,
               tickPadding: 12,
-              tickValues: narrow ? fewerTicks(axis) : axis.ticks,
+              tickValues: shown,
               format: (tick) =>
-                tick === lastTick && !narrow ? `${formatTick(tick)} ${unit}` : formatTick(Number(tick)),
+                tick === lastTick ? `${formatTick(tick)} ${unit}` : formatTick(Number(tick)),
             }}
             layers={[
               "grid",
@@ -189,7 +195,7 @@ export function IntervalChart(props: Props) {
               (layer) => (
                 <Drawing
                   {...layer}
-                  {...{ headings, rows, reference, unit, narrow }}
+                  {...{ headings, rows, reference, unit, narrow, ownLine }}
                   margin={margin}
                   axis={axis}
                 />

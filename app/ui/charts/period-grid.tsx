@@ -90,11 +90,14 @@ function Stroke({ cell, index, long }: { cell: GridCell; index: number; long: st
 const nameCell =
   "sticky left-0 z-1 flex w-[min(13rem,38vw)] shrink-0 items-center bg-chalk py-1 pr-3 leading-snug";
 
+/** On paper nothing scrolls, so that a long season is drawn smaller; all rows alike, since all are as wide. */
+const drawing = "block shrink-0 self-center print:min-w-0 print:shrink";
+
 function Heads({ periods, width }: { periods: Props["periods"]; width: number }) {
   return (
     <div className="flex" aria-hidden="true">
       <span className={nameCell} />
-      <svg aria-hidden="true" width={width} height={24} className="block shrink-0">
+      <svg aria-hidden="true" width={width} height={24} viewBox={`0 0 ${width} 24`} className={drawing}>
         {headings(periods).map((index) => (
           <text key={index} x={index * slot + 3} y={16} fontSize={15} fill="var(--color-soft)">
             {periods[index]?.short}
@@ -122,7 +125,8 @@ function Row({ row, periods, width, emptyText }: RowProps) {
         aria-label={rowWords(row, periods, emptyText)}
         width={width}
         height={rowHeight}
-        className="block shrink-0 self-center"
+        viewBox={`0 0 ${width} ${rowHeight}`}
+        className={drawing}
       >
         {periods.map(({ long }, index) => (
           // biome-ignore lint/suspicious/noArrayIndexKey: a cell is its period
@@ -148,8 +152,8 @@ export function PeriodGrid({ rows, periods, title, caption, emptyText }: Props) 
         <p className="text-soft">{emptyText}</p>
       ) : (
         // biome-ignore lint/a11y/noNoninteractiveTabindex: what scrolls must be reachable by keys
-        <section className="relative overflow-x-auto" aria-label={title} tabIndex={0}>
-          <div className="w-max">
+        <section className="relative overflow-x-auto print:overflow-visible" aria-label={title} tabIndex={0}>
+          <div className="w-max print:w-full">
             <Heads periods={periods} width={width} />
             <ul className="border-b border-line">
               {rows.map((row, index) => (

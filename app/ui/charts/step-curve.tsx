@@ -1,7 +1,7 @@
 import type { ReactNode } from "react";
 import { formatTick, niceScale } from "../scale";
 import { type SeriesNumber, seriesLook } from "../series";
-import { ChartFrame, textWidth } from "./chart-frame";
+import { ChartFrame, textWidth, ticksThatFit } from "./chart-frame";
 import { EndWords } from "./end-words";
 import { AxisWords, Plot, type PlotArea, tickRoom } from "./plot";
 import { linePath } from "./svg-path";
@@ -120,8 +120,9 @@ export function StepCurve(props: Props) {
         const y = { ...yAxis, format: percent };
         const left = tickRoom(y);
         const right = narrow ? Math.min(endRoom, 96) : endRoom;
-        const ticks =
-          narrow && scale.ticks.length > 5 ? scale.ticks.filter((_, index) => index % 2 === 0) : scale.ticks;
+        const spacing = (width - left - right) / Math.max(1, scale.ticks.length - 1);
+        const shown = new Set(ticksThatFit(scale.ticks.map(formatTick), spacing));
+        const ticks = scale.ticks.filter((_, index) => shown.has(index));
         return (
           <Plot
             width={width}

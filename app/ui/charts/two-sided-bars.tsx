@@ -2,7 +2,7 @@ import type { ReactNode } from "react";
 import { Marker } from "../marker";
 import { formatTick, type NiceScale, niceScale } from "../scale";
 import { seriesLook, unstableDash } from "../series";
-import { ChartFrame, textWidth } from "./chart-frame";
+import { ChartFrame, textWidth, ticksThatFit } from "./chart-frame";
 import {
   layoutSides,
   middleRoom,
@@ -39,9 +39,10 @@ function place({ zero, way, length, scale }: Side, value: number): number {
   return zero + way * length * share;
 }
 
-function Axis({ side, label, height, few }: { side: Side; label: string; height: number; few: boolean }) {
+function Axis({ side, label, height }: { side: Side; label: string; height: number }) {
   const { scale, way } = side;
-  const every = few && scale.ticks.length > 3 ? 2 : 1;
+  const words = scale.ticks.map(formatTick);
+  const shown = new Set(ticksThatFit(words, side.length / Math.max(1, words.length - 1)));
   return (
     <g fontSize={15}>
       {scale.ticks.map((tick, index) => (
@@ -54,14 +55,14 @@ function Axis({ side, label, height, few }: { side: Side; label: string; height:
             stroke="var(--color-line)"
             strokeWidth={1.5}
           />
-          {index % every === 0 ? (
+          {shown.has(index) ? (
             <text
               x={place(side, tick)}
               y={headRoom + height + 20}
               textAnchor="middle"
               fill="var(--color-ink)"
             >
-              {formatTick(tick)}
+              {words[index]}
             </text>
           ) : null}
         </g>
@@ -208,6 +209,7 @@ export function TwoSidedBars({ rows, leftLabel, rightLabel, unit, decimals, titl
   return (
     <ChartFrame
       caption={caption}
+      narrowOn="desk"
       wideHeight={headRoom + layouts.wide.height + axisRoom}
       narrowHeight={headRoom + layouts.narrow.height + axisRoom}
     >
@@ -221,8 +223,8 @@ export function TwoSidedBars({ rows, leftLabel, rightLabel, unit, decimals, titl
         const right: Side = { zero: room + gap, way: 1, length, scale, series: 2 };
         return (
           <svg width={width} height={height} role="img" aria-label={title}>
-            <Axis side={left} label={leftLabel} height={layout.height} few={narrow} />
-            <Axis side={right} label={rightLabel} height={layout.height} few={narrow} />
+            <Axis side={left} label={leftLabel} height={layout.height} />
+            <Axis side={right} label={rightLabel} height={layout.height} />
             <Names placed={layout.rows} centre={width / 2} narrow={narrow} />
             {layout.rows.map(({ row, key, line }) => (
               <g key={key}>

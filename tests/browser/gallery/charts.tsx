@@ -8,6 +8,7 @@ import { PeriodGrid } from "~/ui/charts/period-grid";
 import { StepCurve } from "~/ui/charts/step-curve";
 import { ThresholdChart } from "~/ui/charts/threshold-chart";
 import { TwoSidedBars } from "~/ui/charts/two-sided-bars";
+import { BareCharts } from "./bare-charts";
 import { bands, controlPoints, funnelLimits, funnelPoints, ratios, sums, weeks } from "./chart-data";
 import { burdenCurves, burdenPoints, curves, gridPeriods, gridRows, sides } from "./chart-shapes-data";
 
@@ -111,6 +112,7 @@ export function Charts() {
           reference={{ value: 3.1, label: "last season 3.1" }}
         />
       </Region>
+      <BareCharts />
     </Page>
   );
 }

@@ -73,6 +73,7 @@ const shots: Shot[] = ["", "charts", "words", "forms"].flatMap((path) =>
 );
 shots.push({ path: "", width: 1280, scheme: "light", script: false });
 shots.push({ path: "", width: 800, scheme: "light", media: "print" });
+shots.push({ path: "charts", width: 800, scheme: "light", media: "print" });
 shots.push({ path: "charts", width: 1280, scheme: "light", script: false });
 shots.push({ path: "words", width: 390, scheme: "daylight" });
 const wanted = process.argv.slice(3);

@@ -1,21 +1,25 @@
+import { comparisonsViewOf } from "~/features/rates/comparisons-view.server";
+import { ComparisonsView } from "~/features/rates/components/comparisons-view";
 import { NoSeason } from "~/features/rates/components/no-season";
 import { RatesFrame } from "~/features/rates/components/rates-frame";
 import { loadRates } from "~/features/rates/view.server";
 import { memberLoader } from "~/middleware/handlers.server";
 import type { Route } from "./+types/comparisons";
 
-export const loader = memberLoader(({ scope, url }) => loadRates(scope, url, async () => ({})));
+export const loader = memberLoader(({ scope, url }) =>
+  loadRates(scope, url, (tx, view) => comparisonsViewOf(tx, view, url)),
+);
 
 export const meta = ({ loaderData }: Route.MetaArgs) => [
   { title: `Comparisons, ${loaderData?.frame?.organisation ?? "rates"} - Haleside` },
 ];
 
 export default function Page({ loaderData }: Route.ComponentProps) {
-  const { frame } = loaderData;
+  const { frame, data } = loaderData;
   if (!frame) return <NoSeason />;
   return (
-    <RatesFrame frame={frame} current="rates/comparisons" heading="Comparisons">
-      <p>Comparisons</p>
+    <RatesFrame frame={frame} current="rates/comparisons" heading="Comparisons" parts={["per"]}>
+      <ComparisonsView frame={frame} data={data} />
     </RatesFrame>
   );
 }

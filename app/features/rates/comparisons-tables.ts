@@ -1,0 +1,249 @@
+import { type Counted, type Estimate, rateRatio } from "~/statistics";
+import type { Pair, Robust, SportPair } from "./comparisons";
+import type { ComparedStratum } from "./comparisons-strata";
+import { groupWords } from "./comparisons-words";
+import { stableFrom } from "./coverage";
+import type { RateUnit } from "./filters";
+import type { RateRow } from "./rates";
+import { unitWords } from "./sentence";
+import { type Cell, figure, type TableColumn, type TableData, type TableRow } from "./tables";
+
+/** The tables of a comparison: its rates, its ratios, its strata, and girls and boys by sport. */
+
+const exposureHead: Record<RateUnit, string> = { aes: "Exposures", hours: "Hours" };
+const perWords = (unit: RateUnit) => `per ${unitWords[unit]}`;
+
+const text = (id: string, header: string): TableColumn => ({ id, header, kind: "text" });
+const count = (id: string, header: string): TableColumn => ({ id, header, kind: "count" });
+const rateColumn = (id: string, header: string, unit: RateUnit): TableColumn => ({
+  ...{ id, header, unit: perWords(unit) },
+  kind: "figure",
+  form: "rate",
+  bar: true,
+});
+const ratioColumn = (id: string, header: string): TableColumn => ({
+  ...{ id, header, unit: "times" },
+  kind: "figure",
+  form: "ratio",
+});
+
+const rateCell = ({ rate, reason, unstable }: RateRow): Cell =>
+  rate ? figure(rate, unstable) : { reason: reason ?? "no rate" };
+
+export function ratesTable({ first, second, adjusted, strata }: Pair, unit: RateUnit): TableData {
+  const row = (side: RateRow, series: 1 | 2): TableRow => ({
+    key: side.key,
+    series,
+    cells: {
+      group: side.label,
+      injuries: side.injuries,
+      exposure: side.denominator,
+      rate: rateCell(side),
+      method: side.rate?.method ?? null,
+    },
+  });
+  const standardised = (side: RateRow, name: "a" | "b", series: 1 | 2): TableRow[] => {
+    if (!adjusted) return [];
+    const shared = strata.filter(({ state }) => state === "both").map((stratum) => stratum[name]);
+    const events = shared.reduce((sum, each) => sum + each.events, 0);
+    const rate = adjusted.standardised[name];
+    const cells = {
+      group: `${side.label}, at the same ages and session kinds`,
+      injuries: events,
+      exposure: shared.reduce((sum, { exposure }) => sum + exposure, 0),
+      rate: figure(rate, events < stableFrom),
+      method: `directly standardised, ${rate.method}`,
+    };
+    return [{ key: `${side.key} standardised`, series, cells }];
+  };
+  return {
+    id: "rates",
+    caption: "Both rates",
+    columns: [
+      text("group", "Group"),
+      count("injuries", "Injuries"),
+      count("exposure", exposureHead[unit]),
+      rateColumn("rate", "Rate", unit),
+      text("method", "How the limits are made"),
+    ],
+    rows: [row(first, 1), row(second, 2), ...standardised(first, "a", 1), ...standardised(second, "b", 2)],
+  };
+}
+
+type Line = {
+  key: string;
+  label: string;
+  ratio: Estimate | null;
+  reason?: string | null;
+  difference?: Estimate | null;
+};
+
+/** Infinity is not a number to show: the table says why there is none, and its lower limit. */
+function ratioCell(ratio: Estimate | null, reason: string | null | undefined, unstable: boolean): Cell {
+  if (!ratio) return { reason: reason ?? "no injury on either side" };
+  if (ratio.estimate === Infinity)
+    return { reason: `no upper limit, at least ${ratio.lower.toPrecision(2)}: the second has no injury` };
+  return figure(ratio, unstable);
+}
+
+const robustLines = (key: string, label: string, { ratio, short }: Robust): Line[] => [
+  { key: `${key}-teams`, label: `${label}, teams as clusters`, ratio, reason: short },
+  ...(ratio
+    ? [
+        {
+          key: `${key}-few-teams`,
+          label: `${label}, teams as clusters, corrected for few of them`,
+          ratio: ratio.smallSample,
+          reason: "too few teams for it",
+        },
+      ]
+    : []),
+];
+
+/** Every way in which the two rates are held against each other, the crude one first. */
+export function ratioLines({ ratio, difference, robust, adjusted, notAdjusted, setAside }: Pair): Line[] {
+  const isWhole = Object.values(setAside).every(({ events, exposure }) => events === 0 && exposure === 0);
+  return [
+    { key: "crude", label: "As they are", ratio, difference },
+    ...robustLines("crude", "As they are", robust),
+    ...(adjusted && !isWhole
+      ? [{ key: "shared", label: "As they are, of what both sides have", ratio: adjusted.sameCrude }]
+      : []),
+    {
+      key: "adjusted",
+      label: "At the same ages and session kinds",
+      ratio: adjusted?.ratio ?? null,
+      reason: notAdjusted,
+      difference: adjusted?.difference ?? null,
+    },
+    ...(adjusted ? robustLines("adjusted", "At the same ages and session kinds", adjusted.robust) : []),
+  ];
+}
+
+export function ratiosTable(pair: Pair, unit: RateUnit): TableData {
+  const unstable = pair.first.unstable || pair.second.unstable;
+  return {
+    id: "ratios",
+    caption: `${pair.first.label} against ${groupWords(pair.second, pair.dimension)}`,
+    columns: [
+      text("measure", "How they are compared"),
+      ratioColumn("ratio", "Rate ratio"),
+      {
+        ...{ id: "difference", header: "Rate difference", unit: perWords(unit) },
+        ...{ kind: "figure", form: "difference" },
+      },
+      text("method", "How the ratio's limits are made"),
+    ],
+    rows: ratioLines(pair).map(({ key, label, ratio, reason, difference }) => ({
+      key,
+      cells: {
+        measure: label,
+        ratio: ratioCell(ratio, reason, unstable),
+        difference: difference ? figure(difference, unstable) : null,
+        method: ratio?.method ?? null,
+      },
+    })),
+  };
+}
+
+const stateWords = (first: RateRow, second: RateRow): Record<ComparedStratum["state"], string> => ({
+  both: "no injury on either side",
+  "only-a": `exposure of ${first.label} only`,
+  "only-b": `exposure of ${second.label} only`,
+  "no-kind": "of no one session kind",
+  "no-age": "ages not known",
+  "no-exposure": "no exposure on either side",
+});
+
+const few = (a: Counted, b: Counted) => a.events < stableFrom || b.events < stableFrom;
+
+export function strataTable({ first, second, strata }: Pair, unit: RateUnit): TableData {
+  const words = stateWords(first, second);
+  return {
+    id: "strata",
+    caption: "What is held against what: each age band and session kind",
+    columns: [
+      text("stratum", "Age band and sessions"),
+      count("injuriesA", `Injuries: ${first.label}`),
+      count("exposureA", `${exposureHead[unit]}: ${first.label}`),
+      count("injuriesB", `Injuries: ${second.label}`),
+      count("exposureB", `${exposureHead[unit]}: ${second.label}`),
+      ratioColumn("ratio", "Rate ratio"),
+    ],
+    rows: strata.map(({ key, label, a, b, state }) => ({
+      key,
+      cells: {
+        stratum: label.charAt(0).toUpperCase() + label.slice(1),
+        injuriesA: a.events,
+        exposureA: a.exposure,
+        injuriesB: b.events,
+        exposureB: b.exposure,
+        ratio: ratioCell(
+          state === "both" && a.events + b.events > 0 ? rateRatio(a, b) : null,
+          words[state],
+          few(a, b),
+        ),
+      },
+    })),
+  };
+}
+
+/** Rates of each sport's girls and women, and of its boys and men. */
+export function sportsTable(
+  pairs: readonly SportPair[],
+  unit: RateUnit,
+  [girls, boys]: readonly [string, string],
+): TableData {
+  const side = (row: RateRow, { key, label }: SportPair, series: 1 | 2): TableRow => ({
+    key: `${key} ${row.key}`,
+    series,
+    cells: {
+      group: `${label}, ${row.label.toLowerCase()}`,
+      injuries: row.injuries,
+      exposure: row.denominator,
+      rate: rateCell(row),
+    },
+  });
+  return {
+    id: "sports",
+    caption: `Rates of ${girls.toLowerCase()} and of ${boys.toLowerCase()}, by sport`,
+    columns: [
+      text("group", "Sport and sex"),
+      count("injuries", "Injuries"),
+      count("exposure", exposureHead[unit]),
+      rateColumn("rate", "Rate", unit),
+    ],
+    rows: pairs.flatMap((pair) => [side(pair.female, pair, 1), side(pair.male, pair, 2)]),
+    empty: "No sport here is played by girls or women as well as by boys or men.",
+  };
+}
+
+export function sportRatiosTable(
+  pairs: readonly SportPair[],
+  [girls, boys]: readonly [string, string],
+): TableData {
+  return {
+    id: "sport-ratios",
+    caption: `${girls} over ${boys.toLowerCase()}, by sport`,
+    columns: [
+      text("sport", "Sport"),
+      text("injuries", "Injuries of both"),
+      ratioColumn("ratio", "Rate ratio, mid-P"),
+      ratioColumn("robust", "With teams as clusters"),
+    ],
+    rows: pairs.map(({ key, label, female, male, ratio, robust }) => {
+      const unstable = female.unstable || male.unstable;
+      const reason = female.rate && male.rate ? null : "withheld";
+      return {
+        key,
+        cells: {
+          sport: label,
+          injuries: `${female.injuries} and ${male.injuries}`,
+          ratio: ratioCell(ratio, reason, unstable),
+          robust: ratioCell(robust.ratio, robust.short, unstable),
+        },
+      };
+    }),
+    empty: "Nothing to compare.",
+  };
+}

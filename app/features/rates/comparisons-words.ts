@@ -1,0 +1,212 @@
+import type { Pair, Robust, SportPair } from "./comparisons";
+import { type Dimension, heldEqual } from "./comparisons-strata";
+import { decimalsFor, formatCount, formatRate, formatRatio } from "./figures";
+import { countedInWords } from "./filter-words";
+import type { RatesFilters, RateUnit } from "./filters";
+import type { RateRow } from "./rates";
+import { type Part, readRatio, unitWords } from "./sentence";
+import { attention, chanceWords, interval, listWords, plain, ratioLimits, strong } from "./wording";
+
+/** What a comparison says in words. */
+
+export const dimensionWords: Record<Dimension, string> = {
+  sex: "sex",
+  sport: "sport",
+  age: "age band",
+  team: "team",
+  kind: "session kind",
+  season: "season",
+};
+
+const capital = (words: string) => words.charAt(0).toUpperCase() + words.slice(1);
+
+/** A group as it stands in a sentence: "girls and women", "athletes aged 13 to 14", "season 2025/26". */
+export function groupWords({ key, label }: Pick<RateRow, "key" | "label">, dimension: Dimension): string {
+  if (dimension === "team") return label;
+  if (dimension === "season") return `season ${label}`;
+  const words = label.charAt(0).toLowerCase() + label.slice(1);
+  if (dimension !== "age") return words;
+  return key === "unknown" ? "athletes of unknown age" : `athletes aged ${words}`;
+}
+
+const exposureWords: Record<RateUnit, string> = { aes: "exposures", hours: "hours" };
+
+function sideParts(row: RateRow, subject: string, filters: RatesFilters, decimals: number): Part[] {
+  const counts = `${countedInWords(row.injuries ?? 0, filters)} in ${formatCount(row.denominator ?? 0)} ${exposureWords[filters.per]}`;
+  if (!row.rate) return [plain(`${subject} had `), strong(counts)];
+  const [estimate, lower, upper] = [row.rate.estimate, row.rate.lower, row.rate.upper].map((value) =>
+    formatRate(value, decimals),
+  );
+  return [
+    plain(`${subject} had `),
+    strong(counts),
+    plain(", "),
+    strong(`${estimate} per 1000`),
+    plain(" "),
+    interval(`(${lower} to ${upper})`),
+  ];
+}
+
+const arePeople = (dimension: Dimension) => dimension === "sex" || dimension === "age";
+
+/** "Girls and women were injured 1.6 times as often (1.1 to 2.4)". */
+function ratioParts({ first, second, ratio, dimension }: Pair): Part[] {
+  const [a, b] = [groupWords(first, dimension), groupWords(second, dimension)];
+  if (!ratio) return [plain(" So there is nothing to compare yet.")];
+  if (ratio.estimate === Infinity)
+    return [plain(` The ratio has no upper limit and could be as low as ${formatRatio(ratio.lower)}.`)];
+  const times = strong(`${formatRatio(ratio.estimate)} times`);
+  const start = arePeople(dimension)
+    ? [plain(` ${capital(a)} were injured `), times, plain(` as often as ${b} `)]
+    : [plain(` The rate of ${a} is `), times, plain(` that of ${b} `)];
+  return [...start, interval(ratioLimits(ratio)), plain(".")];
+}
+
+function heldWords(dimension: Dimension, filters: RatesFilters): string {
+  const held = heldEqual(dimension).filter(
+    (name) => name === "age" || filters.sessions === "training-and-matches",
+  );
+  const words = { age: "the same ages", kind: "the same share of matches" };
+  return held.map((name) => words[name]).join(" and ");
+}
+
+function adjustedParts({ adjusted, dimension }: Pair, filters: RatesFilters): Part[] {
+  const held = heldWords(dimension, filters);
+  if (!adjusted || !held) return [];
+  const { ratio } = adjusted;
+  if (ratio.estimate === Infinity) return [plain(` Held against ${held} it has no upper limit either.`)];
+  return [
+    plain(` Held against ${held} it is `),
+    strong(`${formatRatio(ratio.estimate)}`),
+    plain(" "),
+    interval(ratioLimits(ratio)),
+    plain("."),
+  ];
+}
+
+/** What allowing for teams does to the interval, and what the interval then says. */
+function teamParts({ ratio, robust, adjusted }: Pair): Part[] {
+  if (!ratio) return [];
+  const shown = adjusted?.robust.ratio ?? robust.ratio;
+  if (!shown) return [plain(` Here ${readRatio(ratio)}.`)];
+  const which = adjusted?.robust.ratio ? "the last interval" : "the interval";
+  return [
+    plain(` Athletes of one team share their risks: allowing for that, ${which} is `),
+    strong(ratioLimits(shown).slice(1, -1)),
+    plain(
+      `, and ${readRatio(shown).replace("the interval", "it").replace("the whole interval lies", "all of it lies")}.`,
+    ),
+  ];
+}
+
+/** The answer to the page's question. */
+export function pairSentence(pair: Pair, filters: RatesFilters): Part[] {
+  const { first, second, dimension } = pair;
+  const decimals = decimalsFor([first, second].flatMap(({ rate }) => rate?.estimate ?? []));
+  const thin = first.unstable || second.unstable;
+  return [
+    ...sideParts(first, capital(groupWords(first, dimension)), filters, decimals),
+    plain("; "),
+    ...sideParts(second, groupWords(second, dimension), filters, decimals),
+    plain("."),
+    ...ratioParts(pair),
+    ...adjustedParts(pair, filters),
+    ...teamParts(pair),
+    ...(thin ? [plain(" "), attention("This is thin evidence: a side has fewer than 5 injuries.")] : []),
+  ];
+}
+
+/** Whether the ratio is the same everywhere, as far as that can be told. */
+export function heterogeneityWords({ adjusted }: Pair): string {
+  if (!adjusted) return "";
+  const { df, pValue } = adjusted.ratio.heterogeneity;
+  if (df === 0)
+    return "Too few ages and session kinds have injuries on both sides to tell whether the ratio is the same in all of them.";
+  const p = pValue < 0.001 ? "below 0.001" : `${chanceWords(pValue)}`;
+  return pValue < 0.05
+    ? `The ratio differs between ages and session kinds by more than luck would often make (heterogeneity, p ${p}): one figure hides that, so read it by stratum in the table.`
+    : `Nothing shows that the ratio differs between ages and session kinds (heterogeneity, p ${p}), though only large differences would show with these numbers.`;
+}
+
+const sumWords = ({ events, exposure }: { events: number; exposure: number }, unit: RateUnit) => {
+  const parts = [
+    ...(events > 0 ? [`${formatCount(events)} ${events === 1 ? "injury" : "injuries"}`] : []),
+    ...(exposure > 0 ? [`${formatCount(exposure)} ${exposureWords[unit]}`] : []),
+  ];
+  return parts.join(" and ");
+};
+
+/** What the adjusted figures leave out because it stands on one side only, or cannot be placed. */
+export function setAsideWords({ setAside, adjusted }: Pair, unit: RateUnit): string {
+  if (!adjusted) return "";
+  const why = {
+    oneSide: "at an age or in a kind of session that only one side has",
+    noKind: "gradual and tied to no session",
+    noAge: "of athletes whose age is not known",
+    noExposure: "where neither side has exposure",
+  } as const;
+  const parts = (Object.keys(why) as (keyof typeof why)[]).flatMap((name) => {
+    const words = sumWords(setAside[name], unit);
+    return words ? [`${words} ${why[name]}`] : [];
+  });
+  return parts.length === 0 ? "" : `The adjusted figures leave out ${listWords(parts)}.`;
+}
+
+/** How far the interval that allows for teams can be trusted. */
+export function teamsWords({ ratio, reason, dropped }: Robust): string {
+  const out =
+    dropped > 0
+      ? ` ${dropped === 1 ? "One injury" : `${dropped} injuries`} of a team without exposure on that side cannot enter it.`
+      : "";
+  if (!ratio) return `No interval allows for teams: ${reason}.${out}`;
+  if (!ratio.fewClusters) return `The interval rests on ${ratio.clusters} teams.${out}`;
+  const small = ratio.smallSample;
+  const corrected = small
+    ? ` Corrected for so few teams it is ${ratioLimits(small).slice(1, -1)}.`
+    : " A correction for so few teams cannot be made.";
+  return `With ${ratio.clusters} teams, fewer than 40, even the interval that allows for teams is optimistic.${corrected}${out}`;
+}
+
+/** The smaller lines under the sentence. */
+export function pairNote(pair: Pair, filters: RatesFilters): Part[] {
+  const { difference, adjusted, notAdjusted, robust } = pair;
+  const decimals = difference ? decimalsFor([Math.abs(difference.estimate), difference.upper]) : 1;
+  const signed = (value: number) => formatRate(value, decimals).replace("-", "−");
+  const texts = [
+    difference
+      ? `The rates differ by ${signed(difference.estimate)} per ${unitWords[filters.per]} (${signed(difference.lower)} to ${signed(difference.upper)}).`
+      : "",
+    notAdjusted && pair.ratio ? `The ratio is not adjusted: ${notAdjusted}.` : "",
+    heterogeneityWords(pair),
+    setAsideWords(pair, filters.per),
+    pair.ratio ? teamsWords(adjusted?.robust.ratio ? adjusted.robust : robust) : "",
+  ];
+  return texts.filter(Boolean).map((text, index) => plain(index === 0 ? text : ` ${text}`));
+}
+
+/** Girls and boys by sport, in words. */
+export function sportsSentence(
+  pairs: readonly SportPair[],
+  oneSided: readonly string[],
+  girls: string,
+): Part[] {
+  const rated = pairs.filter(({ ratio }) => ratio !== null);
+  const clear = rated.filter(({ ratio, robust }) => {
+    const shown = robust.ratio ?? ratio;
+    return shown && (shown.lower > 1 || shown.upper < 1);
+  });
+  const only = oneSided.length > 0 ? ` ${listWords(oneSided)}: one sex only.` : "";
+  if (rated.length === 0) return [plain(`No sport has injuries and exposure of both.${only}`)];
+  const words = clear.map(({ label, ratio }) =>
+    ratio && ratio.estimate > 1 ? `${label.toLowerCase()} (higher)` : `${label.toLowerCase()} (lower)`,
+  );
+  const answer =
+    clear.length === 0
+      ? `In none of ${rated.length} sports does the interval of the ratio lie wholly above or below no difference.`
+      : `The rate of ${girls.toLowerCase()} differs beyond its interval in ${listWords(words)}, of ${rated.length} sports.`;
+  const many =
+    rated.length > 1
+      ? ` With ${rated.length} looks at once, about ${(rated.length * 0.05).toFixed(1)} would by luck alone.`
+      : "";
+  return [plain(answer + many + only)];
+}

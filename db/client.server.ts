@@ -50,6 +50,8 @@ function pool() {
       statement_timeout: 15_000,
       lock_timeout: 5_000,
       idle_in_transaction_session_timeout: 20_000,
+      // Compiling a statement takes longer than any of ours runs.
+      jit: "off",
     },
   });
   shared = {

@@ -7,7 +7,7 @@ import { sealAllAudits } from "./audit/audit.server";
 import { runImportJob } from "./imports/imports.server";
 import { composeFreshLinkDelivery, composeNoticeDelivery } from "./notices/composing.server";
 import { type Composer, deliver, sweepOutbox, type Template } from "./outbox/outbox.server";
-import { rollUpAll } from "./rates/rollups.server";
+import { rollUpMarked } from "./rates/rollups.server";
 
 const composers: Record<Template, Composer> = {
   invitation: async (tx, scope, { invitationId }) =>
@@ -38,7 +38,7 @@ export async function startWorkers() {
   await schedule("sweep", "* * * * *");
   await work("seal", sealAllAudits);
   await schedule("seal", "*/5 * * * *");
-  await work("rollup", rollUpAll);
+  await work("rollup", rollUpMarked);
   await schedule("rollup", "* * * * *");
   // What was left waiting while no process ran goes out now, not with the next minute.
   await sweepOutbox().catch((error: unknown) =>

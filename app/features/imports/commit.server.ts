@@ -1,4 +1,5 @@
 import { audit } from "~/platform/audit.server";
+import { enqueue } from "~/platform/jobs/queue.server";
 import { log } from "~/platform/log.server";
 import { sqlState, type Tx, write } from "~db/client.server";
 import type { MemberScope } from "../accounts/scope.server";
@@ -75,6 +76,8 @@ async function commit(tx: Tx, record: ImportRecord) {
     progressDone: record.progressTotal,
     failure: null,
   });
+  // Many days are marked now: they need not wait for the job of the next minute.
+  await enqueue(tx, "rollup", { organisationId: tx.scope.organisationId });
 }
 
 /** What a person mapped by hand. A heading that stands twice cannot be remembered. */

@@ -37,35 +37,71 @@ export const ageInYears = (born: SQL, day: SQL) => sql`case when ${born} <= ${da
 /** An estimate is for matches alone: whatever says so of a training has no exposure. */
 export const countedGrade = sql`case when s.kind <> 'match' and s.exposure_grade = 'estimated' then 'none' else s.exposure_grade end`;
 
+/** SQL: a session `s` is a training or a match that took place. */
+export const tookPlace = sql`s.state in ('held', 'abandoned') and s.kind in ('training', 'match')`;
+
+/** The rule of play of a team `t` for an estimate: players on the field and regulation minutes. */
+const ruleOfPlay = (tx: Tx) => sql`
+  select players_on_field, regulation_minutes from sport_rules
+  where g.grade = 'estimated' and organisation_id = ${tx.scope.organisationId}::uuid and sport = t.sport
+    and from_age < coalesce(t.under_age, 999)
+  order by from_age desc limit 1`;
+
+/** SQL over a session `s`, its grade `g.grade` and its rule `r`: players and minutes each of a headcount or an estimate. */
+const players = sql`case g.grade when 'headcount' then s.headcount when 'estimated' then r.players_on_field end`;
+const minutesEach = sql`case g.grade when 'headcount' then s.headcount_minutes::float8
+  when 'estimated' then least(r.regulation_minutes, case when s.state = 'abandoned' then s.abandoned_after end) end`;
+
 /**
  * Trainings and matches that took place, with the grade of their exposure and, for a headcount or an estimate, its
  * players and minutes each. The same rules as `exposureOfSession` of the sessions, for many sessions at once.
  * @param only a further condition on the session `s`
  */
-export const countedSessions = (tx: Tx, { from, to, teamIds }: Range, only: SQL = sql`true`) => sql`
-  graded as (
-    select s.id, s.team_id, s.day, s.kind, t.sport, t.under_age, s.headcount, s.headcount_minutes,
-      case when s.state = 'abandoned' then s.abandoned_after end as stopped_after, ${countedGrade} as grade
+const countedSessions = (tx: Tx, { from, to, teamIds }: Range, only: SQL = sql`true`) => sql`
+  counted as (
+    select s.id, s.team_id, s.day, s.kind, g.grade, ${players} as players, ${minutesEach} as minutes
     from sessions s
     join teams t on t.organisation_id = s.organisation_id and t.id = s.team_id
+    cross join lateral (select ${countedGrade} as grade) g
+    left join lateral (${ruleOfPlay(tx)}) r on true
     where s.organisation_id = ${tx.scope.organisationId}::uuid
       and s.day between ${from}::date and ${to}::date
-      and s.state in ('held', 'abandoned') and s.kind in ('training', 'match')
-      and ${inTeams(sql`s.team_id`, teamIds)} and ${only}
-  ),
-  counted as (
-    select g.id, g.team_id, g.day, g.kind, g.grade,
-      case g.grade when 'headcount' then g.headcount when 'estimated' then r.players_on_field end as players,
-      case g.grade when 'headcount' then g.headcount_minutes::float8
-        when 'estimated' then least(r.regulation_minutes, g.stopped_after) end as minutes
-    from graded g
-    left join lateral (
-      select players_on_field, regulation_minutes from sport_rules
-      where organisation_id = ${tx.scope.organisationId}::uuid and sport = g.sport
-        and from_age < coalesce(g.under_age, 999)
-      order by from_age desc limit 1
-    ) r on g.grade = 'estimated'
+      and ${tookPlace} and ${inTeams(sql`s.team_id`, teamIds)} and ${only}
   )`;
+
+/**
+ * A query of one row, for a lateral join: whether the sessions that meet a condition have exposure, in each unit.
+ * @param only the condition on the session `s`
+ */
+export const exposureOf = (tx: Tx, { from, to }: Pick<Range, "from" | "to">, only: SQL) => sql`
+  select coalesce(bool_or(e.exposed and g.grade <> 'estimated'), false) as aes,
+    coalesce(bool_or(e.exposed), false) as hours
+  from sessions s
+  join teams t on t.organisation_id = s.organisation_id and t.id = s.team_id
+  cross join lateral (select ${countedGrade} as grade) g
+  left join lateral (${ruleOfPlay(tx)}) r on true
+  cross join lateral (
+    select case g.grade when 'recorded' then exists (
+      select 1 from participations p where p.organisation_id = ${tx.scope.organisationId}::uuid and p.session_id = s.id
+        and p.presence = 'took_part' and p.minutes > 0
+    ) else coalesce(${players} > 0 and ${minutesEach} > 0, false) end as exposed
+    -- Kept apart, so that it is asked once.
+    offset 0
+  ) e
+  where s.organisation_id = ${tx.scope.organisationId}::uuid and s.day between ${from}::date and ${to}::date
+    and ${tookPlace} and ${only}`;
+
+/** The same of a team's days from the roll-up, where nothing is marked. @param between the condition on the day */
+export const exposureRolledUp = (
+  tx: Tx,
+  { from, to }: Pick<Range, "from" | "to">,
+  team: SQL,
+  between: SQL,
+) => sql`
+  select coalesce(bool_or(e.aes > 0), false) as aes, coalesce(bool_or(e.hours > 0), false) as hours
+  from exposure_rollup e
+  where e.organisation_id = ${tx.scope.organisationId}::uuid and e.team_id = ${team} and e.day ${between}
+    and e.day between ${from}::date and ${to}::date`;
 
 /**
  * One row per athlete and session: recorded minutes, or the share of a headcount or of an estimate that falls on
@@ -78,15 +114,20 @@ const exposureParts = (tx: Tx, range: Range, only?: SQL) => sql`
     select athlete_id, from_day, to_day from availability_contributions
     where organisation_id = ${tx.scope.organisationId}::uuid and state = 'unavailable'
   ),
-  sharing as (
-    select c.id, r.athlete_id, count(*) over (partition by c.id) as sharers
-    from counted c
-    join roster_entries r on r.organisation_id = ${tx.scope.organisationId}::uuid and r.team_id = c.team_id
-      and r.from_day <= c.day and (r.to_day is null or r.to_day >= c.day)
-    where c.players > 0 and c.minutes > 0 and not exists (
-      select 1 from unavailable u where u.athlete_id = r.athlete_id
-        and u.from_day <= c.day and (u.to_day is null or u.to_day >= c.day)
-    )
+  shared_sessions as materialized (
+    select c.*, array(
+      select u.athlete_id from unavailable u
+      where u.from_day <= c.day and (u.to_day is null or u.to_day >= c.day)
+    ) as absent
+    from counted c where c.players > 0 and c.minutes > 0
+  ),
+  shared as materialized (
+    select c.*, array(
+      select r.athlete_id from roster_entries r
+      where r.organisation_id = ${tx.scope.organisationId}::uuid and r.team_id = c.team_id
+        and r.from_day <= c.day and (r.to_day is null or r.to_day >= c.day) and r.athlete_id <> all (c.absent)
+    ) as sharers
+    from shared_sessions c
   ),
   parts as (
     select c.team_id, c.day, c.kind, c.grade, p.athlete_id, 1::float8 as people, p.minutes::float8 as minutes
@@ -94,12 +135,12 @@ const exposureParts = (tx: Tx, range: Range, only?: SQL) => sql`
     join participations p on p.organisation_id = ${tx.scope.organisationId}::uuid and p.session_id = c.id
     where c.grade = 'recorded' and p.presence = 'took_part' and p.minutes > 0
     union all
-    select c.team_id, c.day, c.kind, c.grade, s.athlete_id, least(1, c.players::float8 / s.sharers), c.minutes
-    from counted c join sharing s on s.id = c.id
+    select c.team_id, c.day, c.kind, c.grade, s.athlete_id, least(1, c.players::float8 / cardinality(c.sharers)),
+      c.minutes
+    from shared c cross join lateral unnest(c.sharers) as s(athlete_id)
     union all
-    select c.team_id, c.day, c.kind, c.grade, null, c.players - coalesce(s.sharers, 0), c.minutes
-    from counted c left join (select distinct id, sharers from sharing) s on s.id = c.id
-    where c.players > coalesce(s.sharers, 0) and c.minutes > 0
+    select c.team_id, c.day, c.kind, c.grade, null, c.players - cardinality(c.sharers), c.minutes
+    from shared c where c.players > cardinality(c.sharers)
   )`;
 
 /** Exposure summed by team, day, kind, grade, sex and age in years on the day of the session; age null if not known. */

@@ -1,7 +1,7 @@
 import { type SQL, sql } from "drizzle-orm";
 import type { Tx } from "~db/client.server";
 import { inTeams, type Range } from "./exposure.queries.server";
-import { contributionsOfInjuries, placedInjuries } from "./injury-rows.queries.server";
+import { contributionsOf, placedInjuries } from "./injury-rows.queries.server";
 import type { RolledInjuries } from "./rollups";
 import { markedSlices, markedWeeks, mondayOf, nothingMarked } from "./rollups-marks.queries.server";
 
@@ -15,12 +15,7 @@ const nobodysTeam = sql`'00000000-0000-0000-0000-000000000000'::uuid`;
  * @param only a further condition on the day that an injury is counted on
  */
 export const injuryCounts = (tx: Tx, range: Range, only?: (day: SQL) => SQL) => sql`
-  with ${placedInjuries(tx, range, only)},
-  ${contributionsOfInjuries(tx)},
-  lost as (
-    select injury_id, min(greatest(from_day, onset_day + 1)) as from_day from contributions
-    where greatest(from_day, onset_day + 1) <= coalesce(least(to_day, left_on), 'infinity') group by injury_id
-  )
+  with ${placedInjuries(tx, range, only)}
   select p.day, coalesce(p.team_id, ${nobodysTeam}) as team_id, coalesce(p.session_kind, 'none') as kind, p.sex,
     coalesce(p.age, -1)::smallint as age, coalesce(p.onset = 'gradual', false) as gradual,
     case
@@ -38,7 +33,10 @@ export const injuryCounts = (tx: Tx, range: Range, only?: (day: SQL) => SQL) => 
     case when p.onset = 'gradual' then p.week_hours else p.session_hours end as hours,
     coalesce(l.from_day, 'infinity') as time_loss_from, count(*)::int as injuries
   from injuries_placed p
-  left join lost l on l.injury_id = p.injury_id
+  cross join lateral (
+    select min(greatest(c.from_day, p.onset_day + 1)) as from_day from (${contributionsOf(tx)}) c
+    where greatest(c.from_day, p.onset_day + 1) <= coalesce(least(c.to_day, p.left_on), 'infinity')
+  ) l
   where ${inTeams(sql`p.team_id`, range.teamIds)}
   group by 1, 2, 3, 4, 5, 6, 7, 8, 9, 10`;
 

@@ -48,8 +48,8 @@ export async function rollUp(job: Scope): Promise<boolean> {
   }
 }
 
-/** The job: every organisation in which something was written since. */
-export async function rollUpAll() {
-  for (const organisationId of await read(sweeperScope, listMarkedOrganisations))
-    await rollUp(await openDoor("job", organisationId));
+/** The job: one organisation, where something big was written; else every one in which anything was. */
+export async function rollUpMarked({ organisationId }: Record<string, string> = {}) {
+  const all = organisationId ? [organisationId] : await read(sweeperScope, listMarkedOrganisations);
+  for (const each of all) await rollUp(await openDoor("job", each));
 }

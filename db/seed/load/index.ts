@@ -1,6 +1,7 @@
 import { count, sql } from "drizzle-orm";
 import postgres from "postgres";
 import { resolveMemberScope } from "~/features/accounts/scope.server";
+import { rollUpMarked } from "~/features/rates/rollups.server";
 import { audit } from "~/platform/audit.server";
 import { type Tx, write } from "~db/client.server";
 import { athletes, seasons } from "~db/schema";
@@ -50,6 +51,7 @@ export async function loadDemo({
       await writeAs("admin", own, people, seasons, loadSettings);
       await writeAs("lead", own, people, athletes, loadRecords);
     }
+    await rollUpMarked();
     return missing.map(({ slug }) => slug);
   } finally {
     await client.end();

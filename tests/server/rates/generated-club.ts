@@ -42,7 +42,7 @@ export type Plan = {
 };
 
 /** mulberry32: small, seeded, good enough to vary a test. */
-function randomOf(seed: number) {
+export function randomOf(seed: number) {
   let state = seed;
   const next = () => {
     state = (state + 0x6d2b79f5) | 0;
@@ -103,7 +103,7 @@ export function planClub(seed: number, today: string): Plan {
   return plan;
 }
 
-type Random = ReturnType<typeof randomOf>;
+export type Random = ReturnType<typeof randomOf>;
 
 function addSession(plan: Plan, random: Random, day: string) {
   const id = randomUUID();

@@ -1,7 +1,7 @@
 import { fsum, group } from "d3-array";
 import { dot, invert, multiply, transpose } from "./numeric";
 import { at, fitPoisson, scaleDesign } from "./poisson-fit";
-import { type RegressionRow, requireRegressionRows } from "./regression";
+import { type RegressionRow, requireRegressionRows, robustError } from "./regression";
 import { reject } from "./validate";
 
 export type ExchangeableRegression = {
@@ -12,6 +12,8 @@ export type ExchangeableRegression = {
   dispersion: number;
   clusters: number;
 };
+
+const noFit = "fit for an exchangeable correlation (the iteration does not settle)";
 
 /**
  * Poisson regression by generalised estimating equations with an exchangeable correlation within teams and the
@@ -36,20 +38,21 @@ export function exchangeableRegression({
   const { design, restore } = scaleDesign(rows, names.length);
   let { beta } = fitPoisson(rows, design);
   for (let iteration = 0; iteration < 100; iteration++) {
-    const { step, covariance, ...spread } = takeStep(rows, design, teams, beta);
+    const { step, covariance, model, ...spread } = takeStep(rows, design, teams, beta);
     beta = beta.map((value, k) => value + at(step, k));
     const impossible = teams.some((team) => (team.length - 1) * spread.correlation <= -1);
     if (impossible || !step.every(Number.isFinite)) break;
     if (!step.every((value) => Math.abs(value) < 1e-10)) continue;
-    const restored = multiply(multiply(restore, covariance), transpose(restore));
+    const back = (matrix: number[][]) => multiply(multiply(restore, matrix), transpose(restore));
+    const [restored, restoredModel] = [back(covariance), back(model)];
     const coefficients = ["(intercept)", ...names].map((name, k) => ({
       name,
       estimate: dot(restore[k] ?? [], beta),
-      robustStandardError: Math.sqrt(Math.max(0, at(restored[k], k))),
+      robustStandardError: robustError(at(restored[k], k), at(restoredModel[k], k)),
     }));
     return { coefficients, ...spread, clusters: teams.length };
   }
-  return reject("rows", "fit for an exchangeable correlation (the iteration does not settle)");
+  return reject("rows", noFit);
 }
 
 /** One Fisher scoring step at `beta`, and the sandwich there. */
@@ -85,8 +88,9 @@ function takeStep(rows: readonly RegressionRow[], design: number[][], teams: num
   const sumOf = (pick: (part: (typeof parts)[number], j: number, k: number) => number) =>
     beta.map((_, j) => beta.map((__, k) => fsum(parts, (part) => pick(part, j, k))));
   const bread = invert(sumOf(({ information }, j, k) => at(information[j], k)));
-  if (bread === null) return reject("rows", "fit for an exchangeable correlation");
+  if (bread === null) return reject("rows", noFit);
   const meat = sumOf(({ score }, j, k) => at(score, j) * at(score, k));
   const step = bread.map((row) => fsum(row, (value, k) => value * fsum(parts, ({ score }) => at(score, k))));
-  return { step, covariance: multiply(multiply(bread, meat), bread), correlation, dispersion };
+  const covariance = multiply(multiply(bread, meat), bread);
+  return { step, covariance, model: bread, correlation, dispersion };
 }

@@ -68,7 +68,7 @@ export function poissonRegression({
       estimate: dot(restore[k] ?? [], beta),
       standardError,
       quasiStandardError: standardError * widening,
-      robustStandardError: robustCovariance && Math.sqrt(Math.max(0, at(robustCovariance[k], k))),
+      robustStandardError: robustCovariance && robustError(at(robustCovariance[k], k), standardError ** 2),
     };
   });
   const deviance =
@@ -78,6 +78,11 @@ export function poissonRegression({
       return (events === 0 ? 0 : events * Math.log(events / mu)) - (events - mu);
     });
   return { coefficients, deviance: Math.max(0, deviance), pearson, df, dispersion, clusters };
+}
+
+/** A robust variance so far below the model's is the rounding of one that is 0 (every team as fitted). */
+export function robustError(variance: number, modelVariance: number) {
+  return variance > modelVariance * 1e-12 ? Math.sqrt(variance) : 0;
 }
 
 /** Shared with the correlated fit: the same rows are refused by the same names. */

@@ -1,11 +1,14 @@
 import { describe, expect, it } from "vitest";
 import {
   burden,
+  clusterRobustRateRatio,
   coefficientRatio,
   cusumRunLength,
   designEffect,
   directlyStandardisedRate,
   exceedance,
+  exchangeableRegression,
+  funnelLimits,
   gChart,
   incidenceRate,
   kaplanMeier,
@@ -24,6 +27,7 @@ import {
   shrunkenRates,
   smallestDetectableRatio,
   standardisedIncidenceRatio,
+  teamRateTest,
   tertiles,
   uChart,
 } from "~/statistics";
@@ -180,6 +184,39 @@ describe("what is empty, upside down or unknown is refused by name", () => {
     expectRefusal(() => incidenceRate(text), "events");
     const missing: typeof good = JSON.parse('{"events":3}');
     expectRefusal(() => incidenceRate(missing), "exposure");
+  });
+});
+
+describe("rows of teams are refused by name", () => {
+  const row = { events: 2, exposure: 300, group: "a" as const, cluster: "1" };
+  const other = { ...row, group: "b" as const };
+  const ratioOf = (bad: object) => () => clusterRobustRateRatio([other, { ...row, ...bad }]);
+
+  it.each([
+    [{ events: -1 }, "rows[1].events"],
+    [{ events: 0.5 }, "rows[1].events"],
+    [{ exposure: -3 }, "rows[1].exposure"],
+    [{ exposure: Number.NaN }, "rows[1].exposure"],
+    [{ exposure: 0 }, "rows[1].exposure"],
+    [{ group: "c" }, "rows[1].group"],
+    [{ cluster: 7 }, "rows[1].cluster"],
+    [{ stratum: "match" }, "rows[1].stratum"],
+  ])("%o", (bad, name) => {
+    expectRefusal(ratioOf(bad), name);
+  });
+
+  it("lists that cannot be compared", () => {
+    expectRefusal(() => clusterRobustRateRatio([]), "rows");
+    expectRefusal(() => clusterRobustRateRatio([row, row]), "rows");
+    expectRefusal(() => clusterRobustRateRatio([row, other], { level: 1 }), "level");
+    const none = [row, other].map((one) => ({ ...one, events: 0 }));
+    expectRefusal(() => clusterRobustRateRatio(none), "rows");
+    const idle = [row, { ...other, events: 0, exposure: 0 }];
+    expectRefusal(() => clusterRobustRateRatio(idle), "rows");
+    expectRefusal(() => teamRateTest([good], [good, { events: 3, exposure: 0 }]), "b[1].exposure");
+    expectRefusal(() => teamRateTest([good, { events: 5, exposure: 9 }], [good], { level: 0 }), "level");
+    expectRefusal(() => exchangeableRegression({ rows: [], names: [] }), "rows");
+    expectRefusal(() => funnelLimits({ rate: 5, exposure: 1e15 }), "exposure");
   });
 });
 

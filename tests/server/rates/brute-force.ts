@@ -12,24 +12,50 @@ export type World = {
   bands: Bands;
   today: string;
   seasonId: string;
+  /** Weeks of teams in which somebody confirmed that nobody was newly hurt, by their Monday. */
+  confirmed?: readonly { teamId: string; week: string }[];
+  /** The day on which an athlete left the organisation. */
+  left?: ReadonlyMap<string, string>;
 };
 type Session = Plan["sessions"][number];
 type Hurt = Plan["injuries"][number];
 type Share = { athleteId: string | null; aes: number; hours: number };
 
 /** What does not depend on the view is walked through once. */
-const walked = new WeakMap<World, { held: Held[]; lost: Map<string, number> }>();
+const walked = new WeakMap<World, Walk>();
 type Held = { session: Session; grade: string; shares: Share[] };
+type Walk = {
+  held: Map<string, Held>;
+  lost: Map<string, number>;
+  /** Exposure of a team's week, in each unit. */
+  weeks: Map<string, { aes: number; hours: number }>;
+};
 
-function walk(world: World) {
+const weekKey = (teamId: string, day: string) => `${teamId} ${weekStart(day)}`;
+
+const amountOf = (shares: readonly Share[], per: RatesFilters["per"]) =>
+  shares.reduce((sum, share) => sum + (per === "aes" ? share.aes : share.hours), 0);
+
+function walk(world: World): Walk {
   const known = walked.get(world);
   if (known) return known;
-  const held = world.plan.sessions.map((session) => ({ session, ...sharesOf(world, session) }));
+  const held = new Map(
+    world.plan.sessions.map((session) => [session.id, { session, ...sharesOf(world, session) }]),
+  );
   const lost = new Map(
     world.plan.injuries.map((each) => [each.injuryId, daysLost(world, each.injuryId, each.onsetDay)]),
   );
-  walked.set(world, { held, lost });
-  return { held, lost };
+  const weeks: Walk["weeks"] = new Map();
+  for (const { session, shares } of held.values()) {
+    const week = weeks.get(weekKey(session.teamId, session.day)) ?? { aes: 0, hours: 0 };
+    weeks.set(weekKey(session.teamId, session.day), {
+      aes: week.aes + amountOf(shares, "aes"),
+      hours: week.hours + amountOf(shares, "hours"),
+    });
+  }
+  const made = { held, lost, weeks };
+  walked.set(world, made);
+  return made;
 }
 
 /** Age by walking from birthday to birthday; 29 February moves to 1 March in common years. */
@@ -175,14 +201,73 @@ const inKinds = (filters: RatesFilters, kind: string) =>
     ? kind === "training" || kind === "match"
     : kind === filters.sessions;
 
-export function daysLost({ plan, today }: World, injuryId: string, onset: string) {
-  const reasons = new Set(
-    plan.changes.filter((change) => change.injuryId === injuryId).map((c) => c.reasonId),
-  );
+export function daysLost({ plan, today, left }: World, injuryId: string, onset: string) {
+  const own = plan.changes.filter((change) => change.injuryId === injuryId);
+  const reasons = new Set(own.map((change) => change.reasonId));
+  const leftOn = left?.get(own[0]?.athleteId ?? "") ?? today;
+  const end = leftOn < today ? leftOn : today;
   let days = 0;
-  for (let day = addDays(onset, 1); day <= today; day = addDays(day, 1))
+  for (let day = addDays(onset, 1); day <= end; day = addDays(day, 1))
     if ([...reasons].some((reason) => stateOn(plan, reason, day) !== "full")) days += 1;
   return days;
+}
+
+/** The team of an injury: its session's, else the athlete's on that day, one with exposure in that week first. */
+function teamOf(world: World, injury: Hurt): string | undefined {
+  const { held, weeks } = walk(world);
+  const own = held.get(injury.sessionId ?? "");
+  if (own) return own.session.teamId;
+  const day = injury.onsetDay;
+  const amount = (teamId: string, per: "aes" | "hours") => (weeks.get(weekKey(teamId, day))?.[per] ?? 0) > 0;
+  const homes = world.plan.roster
+    .filter((r) => r.athleteId === injury.athleteId && r.from <= day && (r.to ?? "9999") >= day)
+    .sort(
+      (a, b) =>
+        Number(amount(b.teamId, "aes")) - Number(amount(a.teamId, "aes")) ||
+        Number(amount(b.teamId, "hours")) - Number(amount(a.teamId, "hours")) ||
+        a.from.localeCompare(b.from) ||
+        a.teamId.localeCompare(b.teamId),
+    );
+  return homes[0]?.teamId;
+}
+
+/** The day on which an injury is counted: its session's, but a gradual one's own. */
+function countingDay(world: World, injury: Hurt) {
+  const own = walk(world).held.get(injury.sessionId ?? "");
+  return injury.onset === "gradual" || !own ? injury.onsetDay : own.session.day;
+}
+
+const inSeason = ({ plan }: World, day: string) => day >= plan.season.from && day <= plan.season.to;
+
+/** Teams that entered an injury of this season, whether it counts or not. */
+function reportingTeams(world: World) {
+  const entered = world.plan.injuries.filter(
+    (injury) => !injury.withdrawn && inSeason(world, countingDay(world, injury)),
+  );
+  return new Set(entered.map((injury) => teamOf(world, injury)));
+}
+
+/** The injuries that count in a view, with the days each has cost. */
+export function countedByHand(world: World, filters: RatesFilters) {
+  const { held, lost, weeks } = walk(world);
+  return world.plan.injuries.flatMap((injury) => {
+    const days = lost.get(injury.injuryId) ?? 0;
+    if (injury.withdrawn || injury.outsideSport || injury.subsequence === "exacerbation") return [];
+    if (filters.injuries === "time-loss" && days < 1) return [];
+    const own = held.get(injury.sessionId ?? "");
+    const day = countingDay(world, injury);
+    if (!inSeason(world, day)) return [];
+    if (own && !inKinds(filters, own.session.kind)) return [];
+    const teamId = teamOf(world, injury);
+    if (injury.onset === "gradual") {
+      if (!own && filters.sessions !== "training-and-matches") return [];
+      if (!teamId || (weeks.get(weekKey(teamId, day))?.[filters.per] ?? 0) <= 0) return [];
+    } else if (!own || amountOf(own.shares, filters.per) <= 0) return [];
+    const kind = own?.session.kind ?? null;
+    const place = { who: injury.athleteId, day: injury.onsetDay, teamId: teamId ?? "", kind, countedOn: day };
+    if (!isWhose(world, filters, place) || !isWhat(filters, injury)) return [];
+    return [{ injury, place, days }];
+  });
 }
 
 export type Brute = Record<
@@ -192,16 +277,17 @@ export type Brute = Record<
 
 /** Injuries and exposure of each group. */
 export function countByHand(world: World, filters: RatesFilters): Brute {
-  const { plan } = world;
   const result: Brute = {};
   const at = (key: string) => {
     result[key] ??= { injuries: 0, recorded: 0, headcount: 0, estimated: 0 };
     return result[key];
   };
-  const { held, lost } = walk(world);
   const whole = { injuries: 0, recorded: 0, headcount: 0, estimated: 0 };
-  for (const { session, grade, shares } of held) {
+  const reporting = reportingTeams(world);
+  const confirmed = new Set(world.confirmed?.map(({ teamId, week }) => weekKey(teamId, week)));
+  for (const { session, grade, shares } of walk(world).held.values()) {
     if (!inKinds(filters, session.kind)) continue;
+    if (!reporting.has(session.teamId) && !confirmed.has(weekKey(session.teamId, session.day))) continue;
     for (const share of shares) {
       const place = { ...session, who: share.athleteId, countedOn: session.day };
       if (!isWhose(world, filters, place)) continue;
@@ -210,48 +296,8 @@ export function countByHand(world: World, filters: RatesFilters): Brute {
         filters.per === "aes" ? share.aes : share.hours;
     }
   }
-  const amount = (shares: readonly Share[], per = filters.per) =>
-    shares.reduce((sum, share) => sum + (per === "aes" ? share.aes : share.hours), 0);
-  const weekAmount = (teamId: string, day: string, per = filters.per) =>
-    held
-      .filter(({ session }) => session.teamId === teamId && weekStart(session.day) === weekStart(day))
-      .reduce((sum, { shares }) => sum + amount(shares, per), 0);
-
-  for (const injury of plan.injuries) {
-    if (injury.withdrawn || injury.outsideSport || injury.subsequence === "exacerbation") continue;
-    if (filters.injuries === "time-loss" && (lost.get(injury.injuryId) ?? 0) < 1) continue;
-    const own = held.find(({ session }) => session.id === injury.sessionId);
-    const gradual = injury.onset === "gradual";
-    const day = gradual || !own ? injury.onsetDay : own.session.day;
-    if (day < plan.season.from || day > plan.season.to) continue;
-    if (own && !inKinds(filters, own.session.kind)) continue;
-    let teamId = own?.session.teamId;
-    if (gradual) {
-      if (!own && filters.sessions !== "training-and-matches") continue;
-      if (!own) {
-        const homes = plan.roster
-          .filter((r) => r.athleteId === injury.athleteId && r.from <= day && (r.to ?? "9999") >= day)
-          .map((r) => ({
-            ...r,
-            aes: weekAmount(r.teamId, day, "aes") > 0,
-            hours: weekAmount(r.teamId, day, "hours") > 0,
-          }))
-          .sort(
-            (a, b) =>
-              Number(b.aes) - Number(a.aes) ||
-              Number(b.hours) - Number(a.hours) ||
-              a.from.localeCompare(b.from) ||
-              a.teamId.localeCompare(b.teamId),
-          );
-        teamId = homes[0]?.teamId;
-      }
-      if (!teamId || weekAmount(teamId, day) <= 0) continue;
-    } else if (!own || amount(own.shares) <= 0) continue;
-    const kind = own?.session.kind ?? null;
-    const place = { who: injury.athleteId, day: injury.onsetDay, teamId: teamId ?? "", kind, countedOn: day };
-    if (!isWhose(world, filters, place) || !isWhat(filters, injury)) continue;
+  for (const { injury, place } of countedByHand(world, filters))
     at(keyOf(world, filters.by, place, injury)).injuries += 1;
-  }
   if (!ofInjuriesAlone.includes(filters.by)) return result;
   const { injuries: _none, ...exposure } = whole;
   return Object.fromEntries(Object.entries(result).map(([key, row]) => [key, { ...row, ...exposure }]));

@@ -1,21 +1,25 @@
 import { NoSeason } from "~/features/rates/components/no-season";
+import { PrevalenceView } from "~/features/rates/components/prevalence-view";
 import { RatesFrame } from "~/features/rates/components/rates-frame";
+import { prevalenceViewOf } from "~/features/rates/prevalence-view.server";
 import { loadRates } from "~/features/rates/view.server";
 import { memberLoader } from "~/middleware/handlers.server";
 import type { Route } from "./+types/prevalence";
 
-export const loader = memberLoader(({ scope, url }) => loadRates(scope, url, async () => ({})));
+export const loader = memberLoader(({ scope, url }) =>
+  loadRates(scope, url, (tx, view) => prevalenceViewOf(tx, view, url)),
+);
 
 export const meta = ({ loaderData }: Route.MetaArgs) => [
   { title: `Prevalence, ${loaderData?.frame?.organisation ?? "rates"} - Haleside` },
 ];
 
 export default function Page({ loaderData }: Route.ComponentProps) {
-  const { frame } = loaderData;
+  const { frame, data } = loaderData;
   if (!frame) return <NoSeason />;
   return (
-    <RatesFrame frame={frame} current="rates/prevalence" heading="Prevalence">
-      <p>Prevalence</p>
+    <RatesFrame frame={frame} current="rates/prevalence" heading="Prevalence" parts={["by"]}>
+      <PrevalenceView frame={frame} view={data} />
     </RatesFrame>
   );
 }

@@ -1,6 +1,6 @@
 import type { ClusterRow, Counted } from "~/statistics";
 import { bandOf, type ExposureCell, type InjuryRow } from "./counting";
-import type { RateUnit } from "./filters";
+import type { RateUnit, SessionChoice } from "./filters";
 import { bandWords, groupKey, placeCell, placeInjury } from "./groups";
 import type { Counts, Selection } from "./selection";
 
@@ -9,21 +9,22 @@ export const dimensions = ["sex", "sport", "age", "team", "kind", "season"] as c
 export type Dimension = (typeof dimensions)[number];
 
 export type SideName = "a" | "b";
-export type Sides = { dimension: Dimension; a: string; b: string };
+export type Held = "age" | "kind";
+export type Sides = { dimension: Dimension; a: string; b: string; held: readonly Held[] };
 
-type Held = "age" | "kind";
-/** What is held equal: age band and session kind, less the one that is compared. */
-export const heldEqual = (dimension: Dimension): Held[] =>
-  (["age", "kind"] as const).filter((held) => held !== dimension);
+/** What is held equal: age band and session kind, less the one that is compared or that does not vary. */
+export const heldEqual = (dimension: Dimension, sessions: SessionChoice): Held[] =>
+  (["age", "kind"] as const).filter(
+    (held) => held !== dimension && (held === "age" || sessions === "training-and-matches"),
+  );
 
 export type StratumState = "both" | "only-a" | "only-b" | "no-kind" | "no-age" | "no-exposure";
 export type ComparedStratum = { key: string; label: string; a: Counted; b: Counted; state: StratumState };
 
 type Placed = { side: SideName; stratum: string; teamId: string | null };
 
-function placer(counts: Counts, { dimension, a, b }: Sides) {
+function placer(counts: Counts, { dimension, a, b, held }: Sides) {
   const keyOf = groupKey(dimension, counts);
-  const held = heldEqual(dimension);
   const place = (at: ReturnType<typeof placeCell>): Placed | null => {
     const key = keyOf(at);
     if (key !== a && key !== b) return null;
@@ -44,6 +45,7 @@ const kindLabels: Record<string, string> = {
 };
 
 function labelOf(key: string, held: readonly Held[]) {
+  if (held.length === 0) return "all of them";
   const words = key.split(" / ").map((part, index) => {
     if (held[index] === "kind") return kindLabels[part] ?? part;
     return part === "unknown" ? "age not known" : bandWords(part);
@@ -69,7 +71,7 @@ export function stratify(
   sides: Sides,
 ): ComparedStratum[] {
   const place = placer(counts, sides);
-  const held = heldEqual(sides.dimension);
+  const { held } = sides;
   const sums = new Map<string, Record<SideName, Counted>>();
   const add = (placed: Placed | null, events: number, exposure: number) => {
     if (!placed) return;

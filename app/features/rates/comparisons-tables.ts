@@ -1,6 +1,6 @@
 import { type Counted, type Estimate, rateRatio } from "~/statistics";
 import type { Pair, Robust, SportPair } from "./comparisons";
-import type { ComparedStratum } from "./comparisons-strata";
+import type { ComparedStratum, Held } from "./comparisons-strata";
 import { groupWords } from "./comparisons-words";
 import { stableFrom } from "./coverage";
 import type { RateUnit } from "./filters";
@@ -30,7 +30,7 @@ const ratioColumn = (id: string, header: string): TableColumn => ({
 const rateCell = ({ rate, reason, unstable }: RateRow): Cell =>
   rate ? figure(rate, unstable) : { reason: reason ?? "no rate" };
 
-export function ratesTable({ first, second, adjusted, strata }: Pair, unit: RateUnit): TableData {
+export function ratesTable({ first, second, adjusted, strata, held }: Pair, unit: RateUnit): TableData {
   const row = (side: RateRow, series: 1 | 2): TableRow => ({
     key: side.key,
     series,
@@ -48,7 +48,7 @@ export function ratesTable({ first, second, adjusted, strata }: Pair, unit: Rate
     const events = shared.reduce((sum, each) => sum + each.events, 0);
     const rate = adjusted.standardised[name];
     const cells = {
-      group: `${side.label}, at the same ages and session kinds`,
+      group: `${side.label}, ${sameWords(held)}`,
       injuries: events,
       exposure: shared.reduce((sum, { exposure }) => sum + exposure, 0),
       rate: figure(rate, events < stableFrom),
@@ -69,6 +69,11 @@ export function ratesTable({ first, second, adjusted, strata }: Pair, unit: Rate
     rows: [row(first, 1), row(second, 2), ...standardised(first, "a", 1), ...standardised(second, "b", 2)],
   };
 }
+
+const heldNames: Record<Held, string> = { age: "ages", kind: "session kinds" };
+/** "at the same ages and session kinds" */
+const sameWords = (held: readonly Held[]) =>
+  held.length === 0 ? "adjusted" : `at the same ${held.map((name) => heldNames[name]).join(" and ")}`;
 
 type Line = {
   key: string;
@@ -101,7 +106,17 @@ const robustLines = (key: string, label: string, { ratio, short }: Robust): Line
 ];
 
 /** Every way in which the two rates are held against each other, the crude one first. */
-export function ratioLines({ ratio, difference, robust, adjusted, notAdjusted, setAside }: Pair): Line[] {
+export function ratioLines({
+  ratio,
+  difference,
+  robust,
+  adjusted,
+  notAdjusted,
+  setAside,
+  held,
+}: Pair): Line[] {
+  const words = sameWords(held);
+  const same = words.charAt(0).toUpperCase() + words.slice(1);
   const isWhole = Object.values(setAside).every(({ events, exposure }) => events === 0 && exposure === 0);
   return [
     { key: "crude", label: "As they are", ratio, difference },
@@ -111,12 +126,12 @@ export function ratioLines({ ratio, difference, robust, adjusted, notAdjusted, s
       : []),
     {
       key: "adjusted",
-      label: "At the same ages and session kinds",
+      label: same,
       ratio: adjusted?.ratio ?? null,
       reason: notAdjusted,
       difference: adjusted?.difference ?? null,
     },
-    ...(adjusted ? robustLines("adjusted", "At the same ages and session kinds", adjusted.robust) : []),
+    ...(adjusted ? robustLines("adjusted", same, adjusted.robust) : []),
   ];
 }
 

@@ -26,16 +26,17 @@ export async function comparisonsViewOf(tx: Tx, view: RatesView, url: URL) {
   const { filters } = view;
   const unit = filters.per;
   const dimension = asked.compare;
-  const counts = await countView(tx, view, { all: dimension === "season" });
+  const all = dimension === "season" || asked.over === "all";
+  const counts = await countView(tx, view, { all });
   const selection = select(counts, filters);
-  const material = { counts, selection, unit };
+  const material = { counts, selection, filters };
   const choice = choosePair(tabulate(dimension, counts, selection, unit), asked);
   const { first, second } = choice;
   const isRated = first?.rate && second?.rate;
   const pair = isRated ? comparePair(material, dimension, first, second) : null;
   const names = sexNames(counts.teams);
   const [girls, boys] = [capital(names.female), capital(names.male)];
-  const bySport = filters.sex === "any" ? compareBySport(material, filters) : null;
+  const bySport = filters.sex === "any" ? compareBySport(material) : null;
   const tables: TableData[] = [
     ...(pair ? [ratesTable(pair, unit), ratiosTable(pair, unit), strataTable(pair, unit)] : []),
     ...(bySport
@@ -44,6 +45,7 @@ export async function comparisonsViewOf(tx: Tx, view: RatesView, url: URL) {
   ];
   return {
     dimension,
+    over: all ? ("all" as const) : ("season" as const),
     choice: { options: choice.options, a: first?.key ?? null, b: second?.key ?? null },
     problem:
       choice.problem ?? (pair ? null : (first?.reason ?? second?.reason ?? "There is no rate to compare.")),

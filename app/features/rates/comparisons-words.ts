@@ -1,5 +1,5 @@
 import type { Pair, Robust, SportPair } from "./comparisons";
-import { type Dimension, heldEqual } from "./comparisons-strata";
+import type { Dimension, Held } from "./comparisons-strata";
 import { decimalsFor, formatCount, formatRate, formatRatio } from "./figures";
 import { countedInWords } from "./filter-words";
 import type { RatesFilters, RateUnit } from "./filters";
@@ -31,8 +31,10 @@ export function groupWords({ key, label }: Pick<RateRow, "key" | "label">, dimen
 
 const exposureWords: Record<RateUnit, string> = { aes: "exposures", hours: "hours" };
 
-function sideParts(row: RateRow, subject: string, filters: RatesFilters, decimals: number): Part[] {
-  const counts = `${countedInWords(row.injuries ?? 0, filters)} in ${formatCount(row.denominator ?? 0)} ${exposureWords[filters.per]}`;
+const several = (amount: number, unit: RateUnit) => `${formatCount(amount)} ${exposureWords[unit]}`;
+
+/** Counts, rate and interval of one side; the second is said without naming the injuries again. */
+function sideParts(row: RateRow, subject: string, counts: string, decimals: number): Part[] {
   if (!row.rate) return [plain(`${subject} had `), strong(counts)];
   const [estimate, lower, upper] = [row.rate.estimate, row.rate.lower, row.rate.upper].map((value) =>
     formatRate(value, decimals),
@@ -62,16 +64,10 @@ function ratioParts({ first, second, ratio, dimension }: Pair): Part[] {
   return [...start, interval(ratioLimits(ratio)), plain(".")];
 }
 
-function heldWords(dimension: Dimension, filters: RatesFilters): string {
-  const held = heldEqual(dimension).filter(
-    (name) => name === "age" || filters.sessions === "training-and-matches",
-  );
-  const words = { age: "the same ages", kind: "the same share of matches" };
-  return held.map((name) => words[name]).join(" and ");
-}
+const heldNames: Record<Held, string> = { age: "the same ages", kind: "the same share of matches" };
 
-function adjustedParts({ adjusted, dimension }: Pair, filters: RatesFilters): Part[] {
-  const held = heldWords(dimension, filters);
+function adjustedParts({ adjusted, held: names }: Pair): Part[] {
+  const held = names.map((name) => heldNames[name]).join(" and ");
   if (!adjusted || !held) return [];
   const { ratio } = adjusted;
   if (ratio.estimate === Infinity) return [plain(` Held against ${held} it has no upper limit either.`)];
@@ -103,29 +99,32 @@ function teamParts({ ratio, robust, adjusted }: Pair): Part[] {
 export function pairSentence(pair: Pair, filters: RatesFilters): Part[] {
   const { first, second, dimension } = pair;
   const decimals = decimalsFor([first, second].flatMap(({ rate }) => rate?.estimate ?? []));
-  const thin = first.unstable || second.unstable;
+  const thin = pair.ratio && (first.unstable || second.unstable);
+  const own = `${countedInWords(first.injuries ?? 0, filters)} in ${several(first.denominator ?? 0, filters.per)}`;
+  const others = `${formatCount(second.injuries ?? 0)} in ${formatCount(second.denominator ?? 0)}`;
   return [
-    ...sideParts(first, capital(groupWords(first, dimension)), filters, decimals),
+    ...sideParts(first, capital(groupWords(first, dimension)), own, decimals),
     plain("; "),
-    ...sideParts(second, groupWords(second, dimension), filters, decimals),
+    ...sideParts(second, groupWords(second, dimension), others, decimals),
     plain("."),
     ...ratioParts(pair),
-    ...adjustedParts(pair, filters),
+    ...adjustedParts(pair),
     ...teamParts(pair),
     ...(thin ? [plain(" "), attention("This is thin evidence: a side has fewer than 5 injuries.")] : []),
   ];
 }
 
 /** Whether the ratio is the same everywhere, as far as that can be told. */
-export function heterogeneityWords({ adjusted }: Pair): string {
+export function heterogeneityWords({ adjusted, held }: Pair): string {
   if (!adjusted) return "";
+  const places = held.map((name) => (name === "age" ? "ages" : "session kinds")).join(" and ");
   const { df, pValue } = adjusted.ratio.heterogeneity;
   if (df === 0)
-    return "Too few ages and session kinds have injuries on both sides to tell whether the ratio is the same in all of them.";
+    return `Too few ${places} have injuries on both sides to tell whether the ratio is the same in all of them.`;
   const p = pValue < 0.001 ? "below 0.001" : `${chanceWords(pValue)}`;
   return pValue < 0.05
-    ? `The ratio differs between ages and session kinds by more than luck would often make (heterogeneity, p ${p}): one figure hides that, so read it by stratum in the table.`
-    : `Nothing shows that the ratio differs between ages and session kinds (heterogeneity, p ${p}), though only large differences would show with these numbers.`;
+    ? `The ratio differs between ${places} by more than luck would often make (heterogeneity, p ${p}): one figure hides that, so read it by stratum in the table.`
+    : `Nothing shows that the ratio differs between ${places} (heterogeneity, p ${p}), though only large differences would show with these numbers.`;
 }
 
 const sumWords = ({ events, exposure }: { events: number; exposure: number }, unit: RateUnit) => {
@@ -141,7 +140,7 @@ export function setAsideWords({ setAside, adjusted }: Pair, unit: RateUnit): str
   if (!adjusted) return "";
   const why = {
     oneSide: "at an age or in a kind of session that only one side has",
-    noKind: "gradual and tied to no session",
+    noKind: "that are gradual and tied to no session",
     noAge: "of athletes whose age is not known",
     noExposure: "where neither side has exposure",
   } as const;
@@ -173,7 +172,7 @@ export function pairNote(pair: Pair, filters: RatesFilters): Part[] {
   const decimals = difference ? decimalsFor([Math.abs(difference.estimate), difference.upper]) : 1;
   const signed = (value: number) => formatRate(value, decimals).replace("-", "−");
   const texts = [
-    difference
+    difference && pair.ratio
       ? `The rates differ by ${signed(difference.estimate)} per ${unitWords[filters.per]} (${signed(difference.lower)} to ${signed(difference.upper)}).`
       : "",
     notAdjusted && pair.ratio ? `The ratio is not adjusted: ${notAdjusted}.` : "",

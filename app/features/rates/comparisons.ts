@@ -15,10 +15,12 @@ import {
   type ComparedStratum,
   clusterRows,
   type Dimension,
+  type Held,
+  heldEqual,
   type Sides,
   stratify,
 } from "./comparisons-strata";
-import type { RatesFilters, RateUnit } from "./filters";
+import type { RatesFilters } from "./filters";
 import { type RateRow, tabulate } from "./rates";
 import type { Counts, Selection } from "./selection";
 
@@ -50,6 +52,8 @@ export type Adjusted = {
 
 export type Pair = {
   dimension: Dimension;
+  /** What the adjusted figures hold equal. */
+  held: Held[];
   first: RateRow;
   second: RateRow;
   /** Null when neither side has an injury. */
@@ -139,9 +143,9 @@ function setAsideOf(strata: readonly ComparedStratum[]): SetAside {
   };
 }
 
-type Material = { counts: Counts; selection: Selection; unit: RateUnit };
+type Material = { counts: Counts; selection: Selection; filters: RatesFilters };
 
-function adjust({ counts, selection, unit }: Material, sides: Sides, strata: readonly ComparedStratum[]) {
+function adjust({ counts, selection, filters }: Material, sides: Sides, strata: readonly ComparedStratum[]) {
   const shared = strata.filter(({ state }) => state === "both");
   const events = shared.reduce((sum, { a, b }) => sum + a.events + b.events, 0);
   if (shared.length === 0) return { reason: "no age band and session kind has exposure on both sides" };
@@ -160,7 +164,7 @@ function adjust({ counts, selection, unit }: Material, sides: Sides, strata: rea
     ratio: mantelHaenszel(shared),
     difference: total("a").events > 0 && total("b").events > 0 ? mantelHaenszelDifference(shared) : null,
     sameCrude: rateRatio(total("a"), total("b")),
-    robust: robustOf(clusterRows(counts, selection, unit, sides, keys), sides.dimension),
+    robust: robustOf(clusterRows(counts, selection, filters.per, sides, keys), sides.dimension),
     standardised: {
       a: directlyStandardisedRate(
         shared.map(({ a }) => a),
@@ -178,13 +182,16 @@ function adjust({ counts, selection, unit }: Material, sides: Sides, strata: rea
 
 /** Everything that is said of two groups; both must have a rate. */
 export function comparePair(material: Material, dimension: Dimension, first: RateRow, second: RateRow): Pair {
-  const { counts, selection, unit } = material;
-  const sides: Sides = { dimension, a: first.key, b: second.key };
+  const { counts, selection, filters } = material;
+  const unit = filters.per;
+  const held = heldEqual(dimension, filters.sessions);
+  const sides: Sides = { dimension, a: first.key, b: second.key, held };
   const [a, b] = [counted(first), counted(second)];
   const strata = stratify(counts, selection, unit, sides);
   const { adjusted = null, reason = null } = adjust(material, sides, strata);
   return {
     dimension,
+    held,
     first,
     second,
     ratio: a.events + b.events === 0 ? null : rateRatio(a, b),
@@ -207,11 +214,9 @@ export type SportPair = {
 };
 
 /** Girls and women against boys and men within each sport that both play. */
-export function compareBySport(
-  material: Material,
-  filters: RatesFilters,
-): { pairs: SportPair[]; oneSided: string[] } {
-  const { counts, selection, unit } = material;
+export function compareBySport(material: Material): { pairs: SportPair[]; oneSided: string[] } {
+  const { counts, selection, filters } = material;
+  const unit = filters.per;
   const pairs: SportPair[] = [];
   const oneSided: string[] = [];
   for (const { key, label } of tabulate("sport", counts, selection, unit)) {
@@ -222,7 +227,7 @@ export function compareBySport(
       cells: selection.cells.filter(isOwn),
       counted: selection.counted.filter(isOwn),
     };
-    const rows = tabulate("sex", counts, part, filters.per);
+    const rows = tabulate("sex", counts, part, unit);
     const [female, male] = ["female", "male"].map((sex) =>
       rows.find((row) => row.key === sex && (row.denominator ?? 0) > 0),
     );
@@ -238,7 +243,10 @@ export function compareBySport(
       female,
       male,
       ratio: isRated && a.events + b.events > 0 ? rateRatio(a, b) : null,
-      robust: robustOf(clusterRows(counts, part, unit, { dimension: "sex", a: "female", b: "male" }), "sex"),
+      robust: robustOf(
+        clusterRows(counts, part, unit, { dimension: "sex", a: "female", b: "male", held: [] }),
+        "sex",
+      ),
     });
   }
   return { pairs, oneSided };

@@ -1,5 +1,4 @@
 import type { Tx } from "~db/client.server";
-import { findCountingRules } from "./rates.queries.server";
 import { select } from "./selection";
 import { teamRates } from "./team-rates";
 import { expectedTable, teamsTable } from "./team-rates-tables";
@@ -15,11 +14,10 @@ export async function teamRatesViewOf(tx: Tx, view: RatesView) {
   const unit = filters.per;
   const counts = await countView(tx, { ...view, teamIds: null });
   const selection = select(counts, filters);
-  const { name } = await findCountingRules(tx);
   const rates = teamRates({ counts, selection, unit }, teamIds);
   return {
     coverage: selection.coverage,
-    sentence: teamsSentence(rates, unit, name),
+    sentence: teamsSentence(rates, unit, view.organisation),
     note: teamsNote(rates),
     points: rates.teams.flatMap(({ row, outside }) =>
       row.rate && row.denominator

@@ -14,7 +14,7 @@ import { SentenceParts } from "./sentence-parts";
 // Charts reach the browser only where one shows.
 const IntervalChart = lazy(() => import("~/ui/charts/interval-chart"));
 
-const own = ["compare", "a", "b"] as const;
+const own = ["compare", "a", "b", "over"] as const;
 
 function RatioPicture({
   groups,
@@ -54,15 +54,19 @@ type Props = { frame: Frame; data: View };
 
 /** Two groups held against each other, in words, as ratios with their intervals, and by stratum. */
 export function ComparisonsView({ frame, data }: Props) {
-  const { slug } = frame;
+  const { slug, season } = frame;
   const { search } = useLocation();
-  const { dimension, choice, problem, coverage, sentence, note, lines, unstable, sports, tables } = data;
+  const { dimension, over, choice, problem, coverage, sentence, note, lines, unstable, sports, tables } =
+    data;
   const records = (by: string) => (key: string) =>
     `/${slug}/rates/records${searchWith(search, { by, group: key })}`;
+  // The records behind a figure are listed season by season, or for a season as a group.
+  const isListed = over === "season" || dimension === "season";
   const pairRecords = (key: string) =>
-    key === choice.a || key === choice.b ? records(dimension)(key) : undefined;
+    isListed && (key === choice.a || key === choice.b) ? records(dimension)(key) : undefined;
   const sportRecords = (key: string) => {
     const [sport, sex] = key.split(" ");
+    if (over === "all") return undefined;
     return `/${slug}/rates/records${searchWith(search, { by: "sex", group: sex, sport })}`;
   };
   const table = (id: string) => tables.find((each) => each.id === id);
@@ -71,7 +75,7 @@ export function ComparisonsView({ frame, data }: Props) {
   const shared = { slug, view: "comparisons", keeps: own };
   return (
     <>
-      <ComparisonPicker dimension={dimension} choice={choice} />
+      <ComparisonPicker {...{ dimension, over, season, choice }} />
       {problem ? (
         <Note kind="attention" title="Nothing is compared">
           <p>{problem.charAt(0).toUpperCase() + problem.slice(1)}</p>
@@ -121,7 +125,13 @@ export function ComparisonsView({ frame, data }: Props) {
           <FigureTable {...shared} table={withRecords(bySport, sportRecords)} />
           {sportRatios && sports.lines.length > 0 ? <FigureTable {...shared} table={sportRatios} /> : null}
           <LinkRow>
-            <TextLink to={searchWith(search, { contact: "without", area: "knee" })}>
+            <TextLink
+              to={searchWith(search, {
+                contact: "without",
+                area: "knee",
+                ...(over === "all" ? { over } : {}),
+              })}
+            >
               Only knee injuries without direct contact
             </TextLink>
           </LinkRow>

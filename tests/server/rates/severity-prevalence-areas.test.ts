@@ -85,7 +85,7 @@ function countedByHand(world: World, filters: RatesFilters): Counted[] {
     );
     const days = daysLost(world, injury.injuryId, injury.onsetDay);
     const isLimited = [...reasons].some((reason) => stateOn(world.plan, reason, world.today) !== "full");
-    return [{ key, days, ongoing: days > 0 && isLimited }];
+    return [{ key, days, ongoing: isLimited }];
   });
 }
 

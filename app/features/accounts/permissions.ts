@@ -34,6 +34,8 @@ export const permissions = {
   "rates.read": ["admin", "lead", "trainer"],
   /** Whole tables with small cells and free filters. Others see fixed tables with small cells hidden. */
   "rates.clinical": ["lead", "trainer"],
+  /** What the programme is judged by, for the whole organisation. */
+  "rates.plan": ["lead"],
   "notices.read": ["lead", "trainer"],
   "notices.send": ["lead", "trainer"],
   "audit.read": ["admin", "lead"],

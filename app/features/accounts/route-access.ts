@@ -58,7 +58,7 @@ export const routeAccess: Record<string, RouteAccess> = {
   "/:organisation/rates/trends": { get: "rates.clinical" },
   "/:organisation/rates/recent-weeks": { get: "rates.clinical" },
   "/:organisation/rates/records": { get: "rates.clinical" },
-  "/:organisation/rates/programme": { get: "rates.clinical", post: "rates.clinical" },
+  "/:organisation/rates/programme": { get: "rates.clinical", post: "rates.plan" },
   "/:organisation/rates/coverage": { get: "rates.clinical" },
   "/:organisation/rates/csv/:view/:table": { get: "rates.clinical" },
   "/:organisation/notices": { get: "notices.read" },

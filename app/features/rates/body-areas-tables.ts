@@ -13,7 +13,7 @@ type RecordsHref = (by: "area" | "area-side", group: string | null) => string;
 
 const text = (id: string, header: string): TableColumn => ({ id, header, kind: "text" });
 const count = (id: string, header: string): TableColumn => ({ id, header, kind: "count" });
-const share = (id: string, header: string): TableColumn => ({ id, header, kind: "percent" });
+const number = (id: string, header: string): TableColumn => ({ id, header, kind: "number", decimals: 0 });
 const rate = (unit: RatesFilters["per"]): TableColumn => ({
   ...{ id: "rate", header: "Rate", kind: "figure", form: "rate", unit: `per ${unitWords[unit]}`, bar: true },
 });
@@ -22,8 +22,8 @@ const columnsOf = (first: string, unit: RatesFilters["per"]): TableColumn[] => [
   text("area", first),
   count("injuries", "Injuries"),
   count("days", "Days lost"),
-  share("days-share", "Of all days"),
-  share("longest", "Longest, of its days"),
+  number("days-share", "% of all days"),
+  number("longest", "Longest, % of its days"),
   rate(unit),
 ];
 
@@ -33,8 +33,8 @@ const cellsOf = (row: Row): Record<string, Cell> => ({
   area: row.label,
   injuries: row.injuries,
   days: row.daysLost,
-  "days-share": row.daysShare,
-  longest: row.daysLost === 0 ? null : row.largestShare,
+  "days-share": row.daysShare === null ? null : row.daysShare * 100,
+  longest: row.daysLost === 0 ? null : row.largestShare * 100,
   rate: row.rate ? figure(row.rate, row.unstable) : { reason: row.reason ?? "no rate" },
 });
 
@@ -56,7 +56,7 @@ function areaTable({ areas, total }: BodyAreas, unit: RatesFilters["per"], href:
     columns: columnsOf("Body area", unit),
     rows: [
       ...areas.map((row) => ({ key: row.key, cells: cellsOf(row), href: href("area", row.key) })),
-      ...(areas.length > 0
+      ...(areas.length > 1
         ? [{ key: "total", cells: totalCells(total), total: true, href: href("area", null) }]
         : []),
     ],

@@ -24,8 +24,11 @@ export async function bodyAreasViewOf(tx: Tx, view: RatesView, url: URL) {
     sides: compared && hasSides ? sidesWords(compared) : null,
     picture: {
       rows,
-      // One decimal more than a table's: most sides are far below the largest.
-      decimals: 1 + decimalsFor(rows.flatMap(({ left, right }) => [left?.value ?? 0, right?.value ?? 0])),
+      // Two at least: most sides are far below the largest.
+      decimals: Math.max(
+        2,
+        decimalsFor(rows.flatMap(({ left, right }) => [left?.value ?? 0, right?.value ?? 0])),
+      ),
     },
     href: href("area", null),
     tables: bodyAreasTables(areas, filters.per, href),

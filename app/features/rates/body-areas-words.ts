@@ -3,10 +3,11 @@ import { bodyAreaWords, sentenceCase } from "../vocabulary";
 import type { AreaWithSides, BodyAreas } from "./body-areas";
 import { stableFrom } from "./coverage";
 import { decimalsFor, formatCount, formatRate, formatRatio } from "./figures";
-import { injuriesInWords } from "./filter-words";
+import { injuriesInWords, peopleInWords } from "./filter-words";
 import type { RatesFilters } from "./filters";
 import { dayWords } from "./periods";
 import { type Part, readRatio, sessionsNote, unitWords } from "./sentence";
+import { unreportedWords } from "./severity-words";
 import { attention, interval, listWords, plain, ratioLimits, strong } from "./wording";
 
 /** The words of body areas. Pure. */
@@ -73,14 +74,17 @@ function rateSentence(first: readonly AreaWithSides[], unit: RatesFilters["per"]
  * @param scope who is looked at, as the sentence begins: "The club", "Girls U15 Soccer"
  */
 export function bodyAreasSentence(
-  { areas, total, allDays, coverage }: BodyAreas,
+  { areas, total, allDays, coverage, unreported }: BodyAreas,
   filters: RatesFilters,
   scope: string,
 ): Part[] {
   const [longest] = areas;
   if (coverage.state === "none" && !longest)
     return [plain(`${scope} has no session in this season that was held, so there is no rate yet.`)];
-  if (!longest) return [plain(`${scope} had no ${injuriesInWords(filters)} in this season so far.`)];
+  const who = peopleInWords(filters);
+  const subject = who ? `${scope}, ${who},` : scope;
+  if (!longest && unreported) return [plain(`${subject} has not reported: ${unreportedWords}.`)];
+  if (!longest) return [plain(`${subject} had no ${injuriesInWords(filters)} in this season so far.`)];
   const first = mostFrequent(areas);
   const isSame = first.length === 1 && first[0] === longest;
   const rest =
@@ -95,11 +99,11 @@ export function bodyAreasSentence(
   const end = [plain("."), ...withheld, ...thin];
   if (total.daysLost === 0)
     return [
-      plain(`${scope} lost no day to ${several(total.injuries, "injury", "injuries")}`),
+      plain(`${subject} lost no day to ${several(total.injuries, "injury", "injuries")}`),
       ...rest,
       ...end,
     ];
-  return [...daysParts(longest, allDays), ...rest, ...end];
+  return [plain(who ? `${sentenceCase(who)}: ` : ""), ...daysParts(longest, allDays), ...rest, ...end];
 }
 
 /** The smaller line: the cut-off day, a single long injury, and how far the first place is chance. */

@@ -39,6 +39,8 @@ export type BodyAreas = {
   /** Of every area and side, also where the view is narrowed to some. */
   allDays: number;
   coverage: Coverage;
+  /** Nobody looked at has reported: that is not the same as no injuries. */
+  unreported: boolean;
 };
 
 const middleSides = ["both", "none", "unknown"] as const satisfies readonly Side[];
@@ -100,5 +102,6 @@ export function bodyAreasOf(counts: Counts, filters: RatesFilters): BodyAreas {
     total: make(asGroup("total", "All together"), counted),
     allDays,
     coverage,
+    unreported: selection.cells.length === 0 && selection.silent.length > 0,
   };
 }

@@ -39,8 +39,7 @@ function lines({ rows, total }: Severity, cellsOf: Cells, href: RecordsHref): Ta
   ];
 }
 
-const share = (id: string, header: string): TableColumn => ({ id, header, kind: "percent" });
-const ofDays = (part: number, all: number) => (all === 0 ? null : part / all);
+const ofDays = (part: number, all: number) => (all === 0 ? null : (part / all) * 100);
 const empty = "No exposure and no injuries yet.";
 
 function burdenTable(severity: Severity, href: RecordsHref): TableData {
@@ -83,7 +82,7 @@ function bandTable({ bands, total }: Severity, href: RecordsHref): TableData {
         ...{ unit: "per cent of injuries", bar: true },
       },
       count("days", "Days together"),
-      share("days-share", "Of all days"),
+      number("days-share", "% of all days"),
     ],
     rows: bands.map(({ band, injuries, ongoing, share, daysLost }) => ({
       key: band,
@@ -112,7 +111,7 @@ function bandGroupTable(severity: Severity, filters: RatesFilters, href: Records
       ...bands.map((band) => count(`band ${band}`, sentenceCase(bandWords[band]))),
       count("ongoing", "Ongoing"),
       number("mean", "Days each", 1),
-      share("longest", "Longest, of its days"),
+      number("longest", "Longest, % of days"),
     ],
     rows: lines(
       severity,
@@ -121,7 +120,7 @@ function bandGroupTable(severity: Severity, filters: RatesFilters, href: Records
         ...Object.fromEntries(bands.map((band) => [`band ${band}`, row.bands[band]])),
         ongoing: row.ongoing,
         mean: row.injuries ? row.daysLost / row.injuries : null,
-        longest: row.daysLost > 0 ? row.largestShare : null,
+        longest: row.daysLost > 0 ? row.largestShare * 100 : null,
       }),
       href,
     ),

@@ -20,7 +20,7 @@ export async function severityViewOf(tx: Tx, view: RatesView, url: URL) {
     coverage,
     injuries: total.injuries ?? 0,
     ongoing: total.ongoing,
-    sentence: severitySentence(severity, scopeName),
+    sentence: severitySentence(severity, filters, scopeName),
     note: severityNote(severity, filters, tx.scope.today),
     points,
     equalBurdens: equalBurdens(points),

@@ -1,6 +1,7 @@
 import type { SeverityBand } from "~/statistics";
 import { stableFrom } from "./coverage";
 import { decimalsFor, formatCount, formatRate } from "./figures";
+import { countedInWords, peopleInWords } from "./filter-words";
 import type { RatesFilters } from "./filters";
 import { dayWords } from "./periods";
 import { type Part, sessionsNote } from "./sentence";
@@ -57,30 +58,42 @@ const isDominated = ({ largestShare, injuries }: SeverityRow) => largestShare > 
 /** Of a few injuries one is often more than half of the days; those groups are marked unstable as it is. */
 const isDominatedGroup = (row: SeverityRow) => isDominated(row) && !row.unstable;
 
+/** What a team that is silent may mean. */
+export const unreportedWords =
+  "no injury is entered and no week confirmed as without one, which is not the same as none";
+
+const whyNoBurden = (isWithheld: boolean) =>
+  isWithheld ? "too little of the exposure is recorded" : "there is no exposure in hours";
+
 const shareWords = (share: number) => `${Math.round(share * 100)} %`;
 
 /**
  * The sentence: what injuries cost, and how soon half of the injured were back.
  * @param scope who is looked at, as the sentence begins: "The club", "Girls U15 Soccer"
  */
-export function severitySentence({ total, coverage }: Severity, scope: string): Part[] {
+export function severitySentence(
+  { total, coverage, unreported }: Severity,
+  filters: RatesFilters,
+  scope: string,
+): Part[] {
   const injuries = total.injuries ?? 0;
+  const who = peopleInWords(filters);
+  const subject = who ? `${scope}, ${who},` : scope;
+  const counted = countedInWords(injuries, filters);
   if (coverage.state === "none")
     return [plain(`${scope} has no session in this season that was held, so there is no burden yet.`)];
+  if (injuries === 0 && unreported) return [plain(`${subject} has not reported: ${unreportedWords}.`)];
+  if (injuries === 0 && (total.denominator ?? 0) <= 0)
+    return [plain(`${subject} had ${counted} and no exposure in hours, so there is no burden yet.`)];
   if (injuries === 0)
     return [
-      plain(`${scope} had `),
-      strong("no injuries"),
+      plain(`${subject} had `),
+      strong(counted),
       plain(` in ${several(Math.round(total.denominator ?? 0), "hour", "hours")}, so no days were lost.`),
     ];
   if (total.daysLost === 0)
-    return [plain(`${scope} had `), strong(injuriesOf(injuries)), plain(", and none of them cost a day.")];
-  const lost = [
-    plain(`${scope} lost `),
-    strong(daysOf(total.daysLost)),
-    plain(" to "),
-    strong(injuriesOf(injuries)),
-  ];
+    return [plain(`${subject} had `), strong(counted), plain(", and none of them cost a day.")];
+  const lost = [plain(`${subject} lost `), strong(daysOf(total.daysLost)), plain(" to "), strong(counted)];
   const half = total.curve && injuries > 1 ? [plain("; "), ...medianParts("those injured", total.curve)] : [];
   return [
     ...lost,
@@ -89,7 +102,7 @@ export function severitySentence({ total, coverage }: Severity, scope: string): 
     plain("."),
     ...(total.burden
       ? []
-      : [plain(" Per 1000 hours nothing can be said: too little of the exposure is recorded.")]),
+      : [plain(` Per 1000 hours nothing can be said: ${whyNoBurden(coverage.state === "withheld")}.`)]),
     ...(isDominated(total)
       ? [plain(" "), attention(`One injury makes up ${shareWords(total.largestShare)} of the days.`)]
       : []),

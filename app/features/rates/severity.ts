@@ -152,6 +152,8 @@ export type Severity = {
   bands: BandRow[];
   comparison: ReturnComparison | null;
   coverage: Coverage;
+  /** Nobody looked at has reported: that is not the same as no injuries. */
+  unreported: boolean;
 };
 
 const asGroup = ({ key, label, sex, band, teamId }: RateRow): Group => ({ key, label, sex, band, teamId });
@@ -175,6 +177,7 @@ export function severityOf(counts: Counts, filters: RatesFilters): Severity {
     bands: bandRows(counted, filters.injuries),
     comparison: compareReturns(rows.map((row) => ({ group: asGroup(row), losses: ownLosses(row) }))),
     coverage,
+    unreported: cells.length === 0 && selection.silent.length > 0,
   };
 }
 

@@ -119,6 +119,7 @@ describe("body areas", () => {
       "The club had no injuries that needed attention in this season so far.",
     );
     expect(say({ sessions: [] })).toContain("no session in this season that was held");
+    expect(say({ silent: [cell()] })).toContain("The club has not reported: no injury is entered");
     expect(say({ cells: [cell({ aes: 1000 })], injuries: hurt("knee", "left", 0, 0) })).toContain(
       "The club lost no day to 2 injuries",
     );

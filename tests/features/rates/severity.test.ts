@@ -87,7 +87,7 @@ describe("severity", () => {
   it("names a single injury above half of the days, and says to which day they go", () => {
     const severity = severityOf(small, attended);
     expect(severity.total.largestShare).toBeCloseTo(21 / 36, 12);
-    expect(textOf(severitySentence(severity, "The club"))).toBe(
+    expect(textOf(severitySentence(severity, attended, "The club"))).toBe(
       "The club lost 36 days to 5 injuries: 20.0 days per 1000 hours (5.6 to 71.0); half of those injured were back within 4 days (0, no upper limit). One injury makes up 58 % of the days.",
     );
     expect(textOf(severityNote(severity, attended, "2026-12-01"))).toContain(
@@ -97,7 +97,7 @@ describe("severity", () => {
 
   it("speaks plainly of nothing, of no days, and of too little exposure", () => {
     const say = (given: Parameters<typeof counts>[0]) =>
-      textOf(severitySentence(severityOf(counts(given), attended), "The club"));
+      textOf(severitySentence(severityOf(counts(given), attended), attended, "The club"));
     expect(say({ cells: [cell({ hours: 1400 })] })).toBe(
       "The club had no injuries in 1,400 hours, so no days were lost.",
     );
@@ -115,6 +115,16 @@ describe("severity", () => {
     expect(withheld).toContain("too little of the exposure is recorded");
     expect(say({ cells: [cell()], injuries: injuriesOf(losses("9+", "12+")) })).toContain(
       "fewer than half of those injured are back so far",
+    );
+  });
+
+  it("does not take a silent team for one without injuries, nor hours that there are not for none", () => {
+    const say = (given: Parameters<typeof counts>[0]) =>
+      textOf(severitySentence(severityOf(counts(given), attended), attended, "Boys U16"));
+    expect(say({ silent: [cell()] })).toContain("Boys U16 has not reported: no injury is entered");
+    expect(say({})).toBe("Boys U16 had no injuries and no exposure in hours, so there is no burden yet.");
+    expect(say({ injuries: injuriesOf(losses(4)) })).toContain(
+      "nothing can be said: there is no exposure in hours",
     );
   });
 

@@ -190,7 +190,7 @@ describe("the page of body areas", () => {
       const days = sum(own.map((each) => each.days));
       const { recorded = 0, headcount = 0 } = byHand[key] ?? {};
       expect(cellsOf(tables.sides, key), key).toMatchObject({ injuries: own.length, days });
-      expect(cellsOf(tables.sides, key)["days-share"]).toBeCloseTo(days / all, 12);
+      expect(cellsOf(tables.sides, key)["days-share"]).toBeCloseTo((days / all) * 100, 9);
       expect(figureOf(tables.sides, key, "rate")?.estimate).toBeCloseTo(
         (own.length / (recorded + headcount)) * 1000,
         9,

@@ -75,6 +75,8 @@ export async function countSeasons(
 
 /** What an address asks for, as the frame of every page of rates needs it. */
 export type RatesView = {
+  /** The organisation's name. */
+  organisation: string;
   viewing: Viewing;
   period: Period;
   filters: RatesFilters;
@@ -104,6 +106,7 @@ export async function openView(tx: Tx, url: URL, query: RatesQuery): Promise<Rat
   const { season: _season, team: _team, ...filters } = query;
   const teams = await listRatedTeams(tx, teamIds);
   return {
+    organisation: name,
     viewing,
     period,
     filters: { ...filters, age: readBand(query.age, labels) },

@@ -161,10 +161,10 @@ export function ratiosTable(pair: Pair, unit: RateUnit): TableData {
   };
 }
 
-const stateWords = (first: RateRow, second: RateRow): Record<ComparedStratum["state"], string> => ({
+const stateWords = ({ first, second, dimension }: Pair): Record<ComparedStratum["state"], string> => ({
   both: "no injury on either side",
-  "only-a": `exposure of ${first.label} only`,
-  "only-b": `exposure of ${second.label} only`,
+  "only-a": `exposure of ${groupWords(first, dimension)} only`,
+  "only-b": `exposure of ${groupWords(second, dimension)} only`,
   "no-kind": "of no one session kind",
   "no-age": "ages not known",
   "no-exposure": "no exposure on either side",
@@ -172,27 +172,28 @@ const stateWords = (first: RateRow, second: RateRow): Record<ComparedStratum["st
 
 const few = (a: Counted, b: Counted) => a.events < stableFrom || b.events < stableFrom;
 
-export function strataTable({ first, second, strata }: Pair, unit: RateUnit): TableData {
-  const words = stateWords(first, second);
+export function strataTable(pair: Pair, unit: RateUnit): TableData {
+  const { first, second, strata } = pair;
+  const words = stateWords(pair);
   return {
     id: "strata",
     caption: "What is held against what: each age band and session kind",
     columns: [
       text("stratum", "Age band and sessions"),
-      count("injuriesA", `Injuries: ${first.label}`),
-      count("exposureA", `${exposureHead[unit]}: ${first.label}`),
-      count("injuriesB", `Injuries: ${second.label}`),
-      count("exposureB", `${exposureHead[unit]}: ${second.label}`),
+      count("injuries-a", `Injuries: ${first.label}`),
+      count("exposure-a", `${exposureHead[unit]}: ${first.label}`),
+      count("injuries-b", `Injuries: ${second.label}`),
+      count("exposure-b", `${exposureHead[unit]}: ${second.label}`),
       ratioColumn("ratio", "Rate ratio"),
     ],
     rows: strata.map(({ key, label, a, b, state }) => ({
       key,
       cells: {
         stratum: label.charAt(0).toUpperCase() + label.slice(1),
-        injuriesA: a.events,
-        exposureA: a.exposure,
-        injuriesB: b.events,
-        exposureB: b.exposure,
+        "injuries-a": a.events,
+        "exposure-a": a.exposure,
+        "injuries-b": b.events,
+        "exposure-b": b.exposure,
         ratio: ratioCell(
           state === "both" && a.events + b.events > 0 ? rateRatio(a, b) : null,
           words[state],

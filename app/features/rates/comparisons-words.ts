@@ -80,18 +80,29 @@ function adjustedParts({ adjusted, held: names }: Pair): Part[] {
   ];
 }
 
+/** "it includes no difference", after the interval was named. */
+const readIt = (limits: { lower: number; upper: number }) =>
+  readRatio(limits).replace("the whole interval lies", "all of it lies").replace("the interval", "it");
+
 /** What allowing for teams does to the interval, and what the interval then says. */
 function teamParts({ ratio, robust, adjusted }: Pair): Part[] {
   if (!ratio) return [];
   const shown = adjusted?.robust.ratio ?? robust.ratio;
   if (!shown) return [plain(` Here ${readRatio(ratio)}.`)];
-  const which = adjusted?.robust.ratio ? "the last interval" : "the interval";
+  const before = adjusted?.robust.ratio ? adjusted.ratio : ratio;
+  // Limits on the log scale can come out narrower than mid-P ones; teams never make anything more certain.
+  if (shown.lower >= before.lower && shown.upper <= before.upper)
+    return [
+      plain(
+        ` Athletes of one team share their risks; allowing for that does not widen the interval here, and ${readIt(before)}.`,
+      ),
+    ];
   return [
-    plain(` Athletes of one team share their risks: allowing for that, ${which} is `),
-    strong(ratioLimits(shown).slice(1, -1)),
     plain(
-      `, and ${readRatio(shown).replace("the interval", "it").replace("the whole interval lies", "all of it lies")}.`,
+      ` Athletes of one team share their risks: allowing for that, ${adjusted?.robust.ratio ? "the last interval" : "the interval"} is `,
     ),
+    strong(ratioLimits(shown).slice(1, -1)),
+    plain(`, and ${readIt(shown)}.`),
   ];
 }
 
@@ -140,7 +151,7 @@ export function setAsideWords({ setAside, adjusted }: Pair, unit: RateUnit): str
   if (!adjusted) return "";
   const why = {
     oneSide: "at an age or in a kind of session that only one side has",
-    noKind: "that are gradual and tied to no session",
+    noKind: "of gradual onset tied to no session",
     noAge: "of athletes whose age is not known",
     noExposure: "where neither side has exposure",
   } as const;

@@ -25,7 +25,7 @@ export function teamSurprisesTable(rows: readonly TeamSurprise[], unit: RateUnit
       count("observed", "Injuries"),
       { id: "expected", header: "Expected", kind: "figure", form: "rate", unit: "injuries" },
       number("probability", "Chance of so many or more", 3),
-      number("probabilityAtUpper", "At the upper limit", 3),
+      number("probability-at-upper", "At the upper limit", 3),
       count("exposure", unit === "aes" ? "Exposures" : "Hours"),
       count("baseline", "Injuries before"),
       text("reported", "Weeks reported on"),
@@ -37,9 +37,9 @@ export function teamSurprisesTable(rows: readonly TeamSurprise[], unit: RateUnit
         observed: observed ?? (reported.all > 0 ? { reason: "not reported" } : null),
         expected: expected
           ? figure(expected, baseline.injuries < stableFrom)
-          : { reason: reason ?? "not known" },
+          : { reason: reason?.split(":")[0] ?? "not known" },
         probability: chance(row.probability),
-        probabilityAtUpper: chance(row.probabilityAtUpper),
+        "probability-at-upper": chance(row.probabilityAtUpper),
         exposure,
         baseline: baseline.injuries,
         reported: `${reported.reported} of ${reported.all}`,
@@ -57,9 +57,8 @@ export function weeksTable({ weeks }: WeekCharts, unit: RateUnit): TableData {
     caption: "Weeks with exposure",
     columns: [
       text("week", "Week from"),
-      text("note", "Note"),
       count("injuries", "Injuries"),
-      number("expected", "Expected", 1),
+      number("expected", "Expected", 2),
       count("exposure", unit === "aes" ? "Exposures" : "Hours"),
       { id: "rate", header: "Rate", kind: "figure", form: "rate", unit: per, bar: true },
       number("lower", "Lower limit", 1),
@@ -75,8 +74,7 @@ export function weeksTable({ weeks }: WeekCharts, unit: RateUnit): TableData {
           crossed ? "sum crossed its threshold" : "",
         ].filter(Boolean);
         const cells: Record<string, Cell> = {
-          week: dayWords(week, true),
-          note: notes.join(", ") || null,
+          week: [dayWords(week, true), ...notes].join(", "),
           injuries: events,
           expected,
           exposure: exposure > 0 ? exposure : null,

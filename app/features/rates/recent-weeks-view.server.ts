@@ -31,6 +31,7 @@ export async function recentWeeksViewOf(tx: Tx, view: RatesView) {
       periods: weeks.map(({ week }) => dayWords(week)),
       centre,
       threshold,
+      isSparse: charts.usual !== null && charts.usual < 1,
       unfinished: weeks.find((week) => week.unfinished)?.week ?? null,
       points: weeks.map(({ rate, limits, events }) =>
         rate && limits ? { value: rate.estimate, ...limits, unstable: (events ?? 0) < stableFrom } : null,

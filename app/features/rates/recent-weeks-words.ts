@@ -2,7 +2,7 @@ import { formatCount } from "./figures";
 import { countedInWords } from "./filter-words";
 import type { RatesFilters } from "./filters";
 import { dayWords } from "./periods";
-import type { RecentSpan, Surprise, TeamSurprise, WeekCharts } from "./recent-weeks";
+import type { RecentSpan, Surprise, TeamSurprise, Week, WeekCharts } from "./recent-weeks";
 import { falseAlarmWeeks, weeksToFind } from "./recent-weeks-cusum";
 import type { Part } from "./sentence";
 import { amountWords, attention, chanceWords, interval, listWords, plain, strong } from "./wording";
@@ -25,7 +25,13 @@ export function recentSentence(
     return [start, plain(reason === "not reported" ? "has not been reported on." : "had no exposure.")];
   const counted = countedInWords(observed, filters);
   if (!expected || probability === null)
-    return [start, plain("had "), strong(counted), plain(`. How many to expect cannot be said: ${reason}.`)];
+    return [
+      start,
+      plain("had "),
+      strong(counted),
+      plain(`. How many to expect cannot be said (${reason}). `),
+      ...standOut(charts),
+    ];
   const limits = `(${amountWords(expected.lower)} to ${amountWords(expected.upper)})`;
   return [
     start,
@@ -49,6 +55,7 @@ function chanceParts(observed: number, probability: number): Part[] {
 /** Weeks outside of their limits, and whether the running sum crossed its threshold. */
 function standOut({ weeks, centre }: WeekCharts): Part[] {
   if (centre === null) return [plain("There are too few weeks or injuries for limits week by week.")];
+  const hasSum = weeks.some(({ cusum }) => cusum !== null);
   const above = weeks.filter(({ limits, rate }) => limits?.signal && (rate?.estimate ?? 0) > limits.upper);
   const crossed = weeks.filter((week) => week.crossed);
   const days = (list: typeof weeks) => listWords(list.slice(-3).map(({ week }) => dayWords(week)));
@@ -61,7 +68,7 @@ function standOut({ weeks, centre }: WeekCharts): Part[] {
         ),
     last
       ? attention(` and the running sum crossed its threshold in the week from ${dayWords(last.week)}.`)
-      : plain(" and the running sum has not crossed its threshold."),
+      : plain(hasSum ? " and the running sum has not crossed its threshold." : "."),
   ];
 }
 
@@ -102,10 +109,19 @@ export function recentNote(
 }
 
 /** What the threshold of the running sum means. */
-export function thresholdWords({ threshold, usual }: WeekCharts): string {
+export function thresholdWords({
+  threshold,
+  usual,
+  weeks,
+}: Pick<WeekCharts, "threshold" | "usual"> & { weeks: readonly Pick<Week, "cusum">[] }): string {
+  if (!weeks.some(({ cusum }) => cusum !== null))
+    return "A running sum needs to know the usual rate, and there is too little baseline for that yet.";
+  const weeksNeeded = usual && usual > 0 ? Math.max(1, Math.ceil(weeksToFind(usual, threshold))) : null;
   const find =
-    usual && usual > 0
-      ? ` A true doubling would be found after about ${Math.max(1, Math.ceil(weeksToFind(usual, threshold)))} weeks at the usual exposure.`
-      : "";
+    weeksNeeded === null
+      ? ""
+      : weeksNeeded <= 52
+        ? ` A true doubling would be found after about ${weeksNeeded} weeks at the usual exposure.`
+        : " With so little exposure a true doubling would take more than a year to show here; the sum finds larger rises only.";
   return `The sum adds what each week had more than a level between the usual rate and twice that rate, for the week's own exposure, and never falls below 0. Its threshold is ${threshold.toFixed(1)} injuries: with no change at all it is crossed by luck at most once in ${falseAlarmWeeks} weeks on average.${find} After a crossing and after a break between seasons it begins again at 0.`;
 }

@@ -75,7 +75,9 @@ function noBaseline(injuries: number, weeks: number, coverage: Coverage): string
   if (coverage.state === "withheld") return `the earlier weeks are ${withheldWords(coverage)}`;
   if (injuries < stableFrom)
     return `too little baseline: ${injuries === 0 ? "no injury" : injuries === 1 ? "one injury" : `${injuries} injuries`} before these weeks`;
-  return weeks < fewestWeeks ? `too little baseline: ${weeks} weeks before these` : null;
+  return weeks < fewestWeeks
+    ? `too little baseline: ${weeks === 1 ? "one week" : `${weeks} weeks`} before these`
+    : null;
 }
 
 /** The last four weeks of all that is looked at, against everything before them. */
@@ -221,7 +223,7 @@ export function weekCharts(material: Material, span: RecentSpan): WeekCharts {
     .map((sum, index) => ({ ...sum, index }))
     .filter(({ gap }) => gap === null || gap === "not reported");
   const events = counted.reduce((sum, week) => sum + week.events, 0);
-  const chart = counted.length >= fewestWeeks && events > 0 ? uChart(counted) : null;
+  const chart = counted.length >= fewestWeeks && events >= stableFrom ? uChart(counted) : null;
   const points = new Map(counted.map(({ index }, place) => [index, chart?.points[place]]));
   const threshold = cusumThreshold();
   const { sums: path, crossings } = restartingCusum(

@@ -66,7 +66,8 @@ export function monthRows({ counts, selection, unit }: Material): MonthRow[] {
     month,
     label: monthWords(month),
     row: rows.get(month) ?? null,
-    unfinished: runsOn && counts.to < endOfMonth(month),
+    // The last day counted is today, which is not over either.
+    unfinished: runsOn && counts.to <= endOfMonth(month),
   }));
 }
 
@@ -100,7 +101,7 @@ export function trendOf(months: readonly MonthRow[]): Trend | NoTrend {
     };
   if (!rows.some(({ events }) => events > 0)) return { reason: "no injury falls in these months" };
   const perMonth = attempt(() => rateTrend(rows));
-  if (!perMonth) return { reason: "these months do not determine one" };
+  if (!perMonth) return { reason: "too few injuries fall in these months to determine one" };
   return { perMonth, perYear: overYear(perMonth), months: rows.length, first: first.label, last: last.label };
 }
 

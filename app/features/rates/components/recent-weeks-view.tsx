@@ -22,6 +22,9 @@ function WeekPicture({ chart, unit }: { chart: Chart; unit: string }) {
   if (centre === null) return null;
   const notes = [
     "The limits are three standard errors around the mean of these weeks, wider where there was less exposure. Hollow spots rest on fewer than 5 injuries.",
+    chart.isSparse
+      ? "Fewer than one injury is expected a week: one or two injuries then lie outside such limits too easily, so judge the four weeks together."
+      : "",
     unfinished ? `The week from ${dayWords(unfinished)} is not finished: it counts up to yesterday.` : "",
   ];
   return (
@@ -102,9 +105,11 @@ export function RecentWeeksView({ frame: { slug, filters }, data }: Props) {
           <p className="mb-4 max-w-prose text-soft">
             In {formatCount(reported.reported)} of the {formatCount(reported.all)}{" "}
             {several ? "team-weeks" : "weeks"} with exposure an injury was entered or none confirmed.{" "}
-            {several
-              ? "The others count as their teams' rates do: all exposure of a team that reports."
-              : "The others are gaps in the pictures; mean, limits and sum count all exposure, as the team's rate does."}
+            {reported.reported === reported.all
+              ? ""
+              : several
+                ? "The others count as their teams' rates do: all exposure of a team that reports."
+                : "The others are gaps in the pictures; mean, limits and sum count all exposure, as the team's rate does."}
           </p>
           <FigureTable table={weeks} slug={slug} view="recent-weeks" captionHidden />
         </Region>

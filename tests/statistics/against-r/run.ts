@@ -47,10 +47,14 @@ const cases = comparisons.flatMap((comparison, index) => {
   const draw = makeDraw(1_000 + index);
   return Array.from({ length: perFunction }, () => ({ name: comparison.name, ...comparison.next(draw) }));
 });
-const { version, answers } = askR(cases.map(({ name, input }) => ({ name, input })));
+// What ours refuses R is not asked: geepack never returns from some data on which the iteration does not settle.
+const asked = cases.filter(({ ours }) => ours !== null);
+const { version, answers: given } = askR(asked.map(({ name, input }) => ({ name, input })));
+const answerOf = new Map(asked.map((one, index) => [one, given[index]]));
+const answers = cases.map((one) => answerOf.get(one));
 
 console.log(`${version}; ${cases.length} cases\n`);
-// Left out: what ours refuses (no event at all, one group only, no more spread than chance) and what R cannot answer.
+// Left out: what ours refuses (no event at all, one group only, no more spread than chance, no fit) and what R cannot.
 console.log(
   `${"function".padEnd(34)}${"compared".padStart(9)}${"refused".padStart(9)}${"R cannot".padStart(9)}  largest relative difference`,
 );

@@ -21,6 +21,9 @@ export const heldEqual = (dimension: Dimension, sessions: SessionChoice): Held[]
 export type StratumState = "both" | "only-a" | "only-b" | "no-kind" | "no-age" | "no-exposure";
 export type ComparedStratum = { key: string; label: string; a: Counted; b: Counted; state: StratumState };
 
+/** Between the parts of a stratum's key: no label of a band holds it. */
+const between = "\u001f";
+
 type Placed = { side: SideName; stratum: string; teamId: string | null };
 
 function placer(counts: Counts, { dimension, a, b, held }: Sides) {
@@ -29,7 +32,7 @@ function placer(counts: Counts, { dimension, a, b, held }: Sides) {
     const key = keyOf(at);
     if (key !== a && key !== b) return null;
     const parts = { age: bandOf(at.age, counts.bands) ?? "unknown", kind: at.kind ?? "none" };
-    const stratum = held.map((name) => parts[name]).join(" / ");
+    const stratum = held.map((name) => parts[name]).join(between);
     return { side: key === a ? "a" : "b", stratum, teamId: at.teamId };
   };
   return {
@@ -46,7 +49,7 @@ const kindLabels: Record<string, string> = {
 
 function labelOf(key: string, held: readonly Held[]) {
   if (held.length === 0) return "all of them";
-  const words = key.split(" / ").map((part, index) => {
+  const words = key.split(between).map((part, index) => {
     if (held[index] === "kind") return kindLabels[part] ?? part;
     return part === "unknown" ? "age not known" : bandWords(part);
   });
@@ -55,7 +58,7 @@ function labelOf(key: string, held: readonly Held[]) {
 
 /** Whether both sides can be held against each other in a stratum, or why not. */
 function stateOf(key: string, held: readonly Held[], a: Counted, b: Counted): StratumState {
-  const parts = key.split(" / ");
+  const parts = key.split(between);
   if (parts[held.indexOf("kind")] === "none") return "no-kind";
   if (parts[held.indexOf("age")] === "unknown") return "no-age";
   if (a.exposure > 0 && b.exposure > 0) return "both";
@@ -85,13 +88,21 @@ export function stratify(
   };
   for (const cell of cells) add(place.cell(cell), 0, cell[unit]);
   for (const injury of counted) add(place.injury(injury), 1, 0);
-  const order = [...counts.bands.map(({ label }) => label), "unknown"];
-  const rank = (key: string) =>
-    held.includes("age") ? order.indexOf(key.split(" / ")[0] ?? "") : Number(key === "none");
+  const orders = {
+    age: [...counts.bands.map(({ label }) => label), "unknown"],
+    kind: ["training", "match", "none"],
+  };
+  const ranks = (key: string) =>
+    key.split(between).map((part, at) => orders[held[at] ?? "age"].indexOf(part));
+  const byOrder = (x: string, y: string) => {
+    const [first, second] = [ranks(x), ranks(y)];
+    const at = first.findIndex((rank, index) => rank !== second[index]);
+    return at < 0 ? 0 : (first[at] ?? 0) - (second[at] ?? 0);
+  };
   return [...sums]
     .map(([key, { a, b }]) => ({ key, label: labelOf(key, held), a, b, state: stateOf(key, held, a, b) }))
     .filter(({ a, b }) => a.events + b.events + a.exposure + b.exposure > 0)
-    .sort((x, y) => rank(x.key) - rank(y.key) || (x.key < y.key ? 1 : -1));
+    .sort((x, y) => byOrder(x.key, y.key));
 }
 
 /**

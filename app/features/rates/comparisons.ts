@@ -226,6 +226,7 @@ export function compareBySport(material: Material): { pairs: SportPair[]; oneSid
       ...selection,
       cells: selection.cells.filter(isOwn),
       counted: selection.counted.filter(isOwn),
+      sessions: selection.sessions.filter(isOwn),
     };
     const rows = tabulate("sex", counts, part, unit);
     const [female, male] = ["female", "male"].map((sex) =>

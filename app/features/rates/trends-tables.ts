@@ -32,12 +32,11 @@ export function monthsTable(months: readonly MonthRow[], unit: RateUnit): TableD
   return {
     id: "months",
     caption: "Rate by month, all seasons",
-    columns: [text("month", "Month"), text("note", "Note"), ...counted(unit)],
+    columns: [text("month", "Month"), ...counted(unit)],
     rows: months.map(({ month, label, row, unfinished }) => ({
       key: month,
       cells: {
-        month: label,
-        note: unfinished ? "not finished" : null,
+        month: unfinished ? `${label}, not finished` : label,
         ...(row ? countedCells(row) : { injuries: null, exposure: null, rate: { reason: "no exposure" } }),
       },
     })),

@@ -180,6 +180,14 @@ describe("what stands on one side only", () => {
 
   it("says in the table which side", () => {
     const { rows } = strataTable(pair, "aes");
+    expect(rows.map(({ cells }) => cells.stratum)).toEqual([
+      "13 to 14, training",
+      "15 to 16, training",
+      "15 to 16, matches",
+      "15 to 16, gradual, no session",
+      "Over 16, training",
+      "Age not known, training",
+    ]);
     const states = rows.map(({ cells }) => cells.ratio);
     expect(states).toContainEqual({ reason: "exposure of girls only" });
     expect(states).toContainEqual({ reason: "of no one session kind" });

@@ -99,7 +99,7 @@ describe("a trend over months", () => {
     expect(mustTrend(trend).months).toBe(6);
     expect(months.at(-1)).toMatchObject({ month: "2026-02", unfinished: true });
     expect(monthsTable(months, "aes").rows.at(-1)?.cells).toMatchObject({
-      note: "not finished",
+      month: "Feb 2026, not finished",
       injuries: 17,
     });
     // A season that ended in the middle of a month has no month to finish.

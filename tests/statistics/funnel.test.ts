@@ -4,29 +4,34 @@ import { exceedance, funnelLimits, meanShare, poissonInterval, proportion } from
 import { drawPoisson, expectValue, makeRandom } from "./agreement";
 
 describe("funnelLimits", () => {
-  it("interpolates exact Poisson quantiles, by hand for 2 expected", () => {
-    // e^-2 = 0.1353353: P(0) = 0.1353353 already exceeds 0.025; P(X <= 4) = 0.9473470, P(X <= 5) = 0.9834364.
+  it("lies where the mid-P tail of a count passes the level, by hand for 2 expected", () => {
+    // Of a mean of 2: P(X >= 5) = 1 - 7 e^-2, P(X >= 6) = that less (32 / 120) e^-2, P(X >= 7) less (64 / 720) e^-2.
+    const five = 1 - 7 * Math.exp(-2);
+    const six = five - (32 / 120) * Math.exp(-2);
+    const seven = six - (64 / 720) * Math.exp(-2);
+    const [ofFive, ofSix] = [(five + six) / 2, (six + seven) / 2];
+    // At a level that leaves just the tail of 5 the limit is 5, and the same for 6.
+    expect(funnelLimits({ rate: 2, exposure: 1000, level: 1 - 2 * ofFive }).upper).toBeCloseTo(5, 9);
+    expect(funnelLimits({ rate: 2, exposure: 1000, level: 1 - 2 * ofSix }).upper).toBeCloseTo(6, 9);
     const { lower, upper } = funnelLimits({ rate: 2, exposure: 1000 });
     expect(lower).toBe(0);
-    const [atFour, atFive] = [7 * Math.exp(-2), 7 * Math.exp(-2) + (32 / 120) * Math.exp(-2)];
-    expect(upper).toBeCloseTo(5 - (atFive - 0.975) / (atFive - atFour), 10);
+    expect(upper).toBeGreaterThan(5);
+    expect(upper).toBeLessThan(6);
   });
 
-  it("holds as many counts as the level asks, at both ends", () => {
-    for (const [rate, exposure] of [
-      [3, 4000],
-      [4.7, 21_000],
-      [8, 400_000],
-    ] as const) {
-      const { lower, upper } = funnelLimits({ rate, exposure });
-      const expected = (rate / 1000) * exposure;
-      const [low, high] = [(lower * exposure) / 1000, (upper * exposure) / 1000];
-      // One count further out the chance is below 0.025, one further in it is above.
-      expect(exceedance(Math.ceil(high) + 1, expected)).toBeLessThan(0.025);
-      expect(exceedance(Math.floor(high), expected)).toBeGreaterThan(0.025);
-      expect(1 - exceedance(Math.floor(low), expected)).toBeLessThan(0.025);
-      expect(1 - exceedance(Math.ceil(low) + 1, expected)).toBeGreaterThan(0.025);
-    }
+  it("puts a count outside exactly when its mid-P tail is below half of what the level leaves", () => {
+    const mean = fc.double({ min: 0.01, max: 300, noNaN: true });
+    const level = fc.constantFrom(0.8, 0.95, 0.998);
+    fc.assert(
+      fc.property(mean, fc.integer({ min: 0, max: 400 }), level, (expected, count, given) => {
+        const { lower, upper } = funnelLimits({ rate: expected, exposure: 1000, level: given });
+        const above = (exceedance(count, expected) + exceedance(count + 1, expected)) / 2;
+        const tail = (1 - given) / 2;
+        fc.pre(Math.abs(above - tail) > 1e-9 && Math.abs(1 - above - tail) > 1e-9);
+        expect(count > upper).toBe(above < tail);
+        expect(count < lower).toBe(1 - above < tail);
+      }),
+    );
   });
 
   it("comes near the normal limits for much exposure, and narrows towards the rate", () => {
@@ -35,19 +40,21 @@ describe("funnelLimits", () => {
     expect(limits.lower).toBeCloseTo(5 - 1.959964 * Math.sqrt(5 / 1e6), 4);
   });
 
-  it("has no steps, widens with the level and has the unit of the rate", () => {
+  it("has no steps, narrows with the exposure, widens with the level and has the unit of the rate", () => {
     const rate = fc.double({ min: 0.1, max: 40, noNaN: true });
     const exposure = fc.double({ min: 10, max: 1e6, noNaN: true });
     fc.assert(
       fc.property(rate, exposure, fc.double({ min: 0.5, max: 0.9999, noNaN: true }), (at, over, level) => {
         const limits = funnelLimits({ rate: at, exposure: over, level });
         expect(limits.lower).toBeGreaterThanOrEqual(0);
-        // The interpolated quantile is below the whole count: for little exposure the band may end below the rate.
         expect(limits.upper).toBeGreaterThanOrEqual(limits.lower);
         const count = ({ upper, lower }: { upper: number; lower: number }) => [upper * over, lower * over];
         const next = funnelLimits({ rate: at * (1 + 1e-9), exposure: over, level });
         for (const [index, value] of count(limits).entries())
           expect(Math.abs((count(next)[index] ?? 0) - value) / 1000).toBeLessThan(1e-3);
+        const more = funnelLimits({ rate: at, exposure: over * 1.1, level });
+        expect(more.upper).toBeLessThan(limits.upper * (1 + 1e-9));
+        expect(more.lower).toBeGreaterThan(limits.lower * (1 - 1e-9) - 1e-9);
         const wide = funnelLimits({ rate: at, exposure: over, level: 1 - (1 - level) / 10 });
         expect(wide.upper).toBeGreaterThanOrEqual(limits.upper);
         expect(wide.lower).toBeLessThanOrEqual(limits.lower);

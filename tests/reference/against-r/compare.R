@@ -125,8 +125,9 @@ r$meanShare <- function(i) {
 }
 r$funnelLimits <- function(i) {
   m <- i$rate / 1000 * i$exposure
-  at <- function(p) { k <- qpois(p, m); max(0, k - (ppois(k, m) - p) / dpois(k, m)) }
-  c(lower = at(tail(i$level)), upper = at(1 - tail(i$level))) * 1000 / i$exposure
+  mid <- function(k) ((if (k == 0) 1 else pgamma(m, k)) + pgamma(m, k + 1)) / 2
+  at <- function(p) if (mid(0) <= p) 0 else root(function(k) mid(k) - p, 0, m + 40 * sqrt(m) + 40)
+  c(lower = at(1 - tail(i$level)), upper = at(tail(i$level))) * 1000 / i$exposure
 }
 r$smallestDetectableRatio <- function(i) {
   a <- i$rate / 1000 * i$exposureA; b <- i$rate / 1000 * i$exposureB

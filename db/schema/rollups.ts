@@ -5,6 +5,7 @@ import {
   doublePrecision,
   foreignKey,
   integer,
+  json,
   pgTable,
   primaryKey,
   smallint,
@@ -34,7 +35,13 @@ export const rollupCauses = [
   "organisation",
 ] as const;
 
-/** Exposure per team, day, kind, grade, sex and age in years: the cells of `sumExposureCells`. */
+/** Sex, age in completed years (null where it is not known), AEs and hours. */
+export type RolledGroup = [sex: string, age: number | null, aes: number, hours: number];
+
+/**
+ * Exposure per team, day, kind and grade: the cells of `sumExposureCells`. What sex and age take of it stands in one
+ * value: it is always read whole, and as rows of their own they cost more to hand over than to count.
+ */
 export const exposureRollup = pgTable(
   "exposure_rollup",
   {
@@ -43,17 +50,15 @@ export const exposureRollup = pgTable(
     teamId: uuid("team_id").notNull(),
     kind: text("kind").notNull(),
     grade: text("grade").notNull(),
-    sex: text("sex").notNull(),
-    /** Completed years on the day; -1 where it is not known. */
-    age: smallint("age").notNull(),
     aes: doublePrecision("aes").notNull(),
     hours: doublePrecision("hours").notNull(),
+    groups: json("groups").$type<RolledGroup[]>().notNull(),
   },
   (t) => [
     // The day before the team: a season is one stretch of the index, and so is a week.
     primaryKey({
       name: "exposure_rollup_pk",
-      columns: [t.organisationId, t.day, t.teamId, t.kind, t.grade, t.sex, t.age],
+      columns: [t.organisationId, t.day, t.teamId, t.kind, t.grade],
     }),
     foreignKey({ columns: [t.organisationId], foreignColumns: [organisations.organisationId] }),
   ],

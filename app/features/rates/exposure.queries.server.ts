@@ -1,5 +1,6 @@
 import { type SQL, sql } from "drizzle-orm";
 import type { Tx } from "~db/client.server";
+import type { RolledGroup } from "~db/schema/rollups";
 import type { ExposureCell } from "./counting";
 import { markedSlices, nothingMarked, readsRollups } from "./rollups-marks.queries.server";
 
@@ -154,19 +155,36 @@ export const exposureCells = (tx: Tx, range: Range, only?: SQL) => sql`
   left join athletes a on a.organisation_id = ${tx.scope.organisationId}::uuid and a.id = p.athlete_id
   group by 1, 2, 3, 4, 5, 6`;
 
-const cellRow = sql`c.team_id as "teamId", c.day::text as day, c.kind, c.grade, c.sex, c.age, c.aes, c.hours`;
-
 /** The cells counted from the records themselves: what the roll-up must equal. */
 export async function sumExposureCellsLive(tx: Tx, range: Range): Promise<ExposureCell[]> {
-  const rows = await tx.execute<ExposureCell>(sql`select ${cellRow} from (${exposureCells(tx, range)}) c`);
+  const rows = await tx.execute<ExposureCell>(sql`
+    select c.team_id as "teamId", c.day::text as day, c.kind, c.grade, c.sex, c.age, c.aes, c.hours
+    from (${exposureCells(tx, range)}) c`);
   return [...rows];
 }
 
-const rolledCells = (tx: Tx, { from, to, teamIds }: Range, only: SQL) => sql`
-  select r.team_id, r.day, r.kind, r.grade, r.sex, nullif(r.age, -1)::int as age, r.aes, r.hours
-  from exposure_rollup r
+/** The cells of a range as rows of `exposure_rollup`. */
+export const exposureGroups = (tx: Tx, range: Range, only: SQL) => sql`
+  select c.team_id, c.day, c.kind, c.grade, sum(c.aes) as aes, sum(c.hours) as hours,
+    json_agg(json_build_array(c.sex, c.age, c.aes, c.hours)) as groups
+  from (${exposureCells(tx, range, only)}) c group by 1, 2, 3, 4`;
+
+type Rolled = Pick<ExposureCell, "teamId" | "day" | "kind" | "grade"> & { groups: RolledGroup[] };
+
+const rolledRow = sql`r.team_id as "teamId", r.day::text as day, r.kind, r.grade, r.groups`;
+
+const rolledUp = (tx: Tx, { from, to, teamIds }: Range, only: SQL) => sql`
+  select ${rolledRow} from exposure_rollup r
   where r.organisation_id = ${tx.scope.organisationId}::uuid and r.day between ${from}::date and ${to}::date
     and ${inTeams(sql`r.team_id`, teamIds)} and ${only}`;
+
+function unrolled(rows: Iterable<Rolled>): ExposureCell[] {
+  const cells: ExposureCell[] = [];
+  for (const { groups, teamId, day, kind, grade } of rows)
+    for (const [sex, age, aes, hours] of groups)
+      cells.push({ teamId, day, kind, grade, sex: sex as ExposureCell["sex"], age, aes, hours });
+  return cells;
+}
 
 /**
  * Exposure by team, day, kind, grade, sex and age. Clean days of a team come from the roll-up, others from the same
@@ -175,18 +193,15 @@ const rolledCells = (tx: Tx, { from, to, teamIds }: Range, only: SQL) => sql`
  */
 export async function sumExposureCells(tx: Tx, range: Range): Promise<ExposureCell[]> {
   if (!readsRollups(tx)) return sumExposureCellsLive(tx, range);
-  const clean = await tx.execute<ExposureCell>(
-    sql`select ${cellRow} from (${rolledCells(tx, range, nothingMarked(tx))}) c`,
-  );
-  if (clean.length > 0) return [...clean];
-  const rows = await tx.execute<ExposureCell>(sql`
+  const clean = await tx.execute<Rolled>(rolledUp(tx, range, nothingMarked(tx)));
+  if (clean.length > 0) return unrolled(clean);
+  const rows = await tx.execute<Rolled>(sql`
     with ${markedSlices(tx)}
-    select ${cellRow} from (
-      ${rolledCells(tx, range, sql`not exists (select 1 from marked_slices m where m.team_id = r.team_id and m.day = r.day)`)}
-      union all
-      (${exposureCells(tx, range, sql`(s.team_id, s.day) in (select team_id, day from marked_slices)`)})
-    ) c`);
-  return [...rows];
+    ${rolledUp(tx, range, sql`not exists (select 1 from marked_slices m where m.team_id = r.team_id and m.day = r.day)`)}
+    union all
+    select ${rolledRow}
+    from (${exposureGroups(tx, range, sql`(s.team_id, s.day) in (select team_id, day from marked_slices)`)}) r`);
+  return unrolled(rows);
 }
 
 /** Who was exposed, by what the fixed tables group by: to count athletes where small numbers are hidden. */

@@ -1,7 +1,7 @@
 import { sql } from "drizzle-orm";
 import { addDays } from "~/platform/clock";
 import type { Tx } from "~db/client.server";
-import { exposureCells } from "./exposure.queries.server";
+import { exposureGroups } from "./exposure.queries.server";
 import { injuryCounts } from "./rollups-injuries.queries.server";
 import { markedSlices, markedWeeks, mondayOf } from "./rollups-marks.queries.server";
 
@@ -53,9 +53,8 @@ export async function replaceExposure(tx: Tx, slices: Slices["days"]) {
   await tx.execute(sql`
     delete from exposure_rollup e where e.organisation_id = ${org(tx)} and (e.team_id, e.day) in ${listed}`);
   await tx.execute(sql`
-    insert into exposure_rollup (organisation_id, team_id, day, kind, grade, sex, age, aes, hours)
-    select ${org(tx)}, c.team_id, c.day, c.kind, c.grade, c.sex, coalesce(c.age, -1), c.aes, c.hours
-    from (${exposureCells(tx, span(days), sql`(s.team_id, s.day) in ${listed}`)}) c`);
+    insert into exposure_rollup (organisation_id, team_id, day, kind, grade, aes, hours, groups)
+    select ${org(tx)}, r.* from (${exposureGroups(tx, span(days), sql`(s.team_id, s.day) in ${listed}`)}) r`);
 }
 
 /** Counts the injuries of whole weeks anew. @param weeks their Mondays */

@@ -73,7 +73,7 @@ function inventValue(column: PgColumn): unknown {
   if (type === "integer" || type === "bigint") return randomInt(2, 1_000_000);
   if (type === "smallint") return randomInt(2, 30_000);
   if (type.startsWith("numeric") || type === "double precision") return 1;
-  if (type === "jsonb") return {};
+  if (type === "json" || type === "jsonb") return {};
   if (type === "bytea") return randomBytes(8);
   if (type === "date") return new Date(Date.UTC(2020, 0, randomInt(1, 3000))).toISOString().slice(0, 10);
   if (type.startsWith("timestamp")) return new Date();

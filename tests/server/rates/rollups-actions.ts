@@ -12,6 +12,7 @@ import { joinTeam, leaveTeam } from "~/features/roster/team-memberships.server";
 import { recordAttendance, recordHeadcount } from "~/features/sessions/attendance.server";
 import { addSession, editBaseOf, editSession, getSession, settle } from "~/features/sessions/sessions.server";
 import { addDays } from "~/platform/clock";
+import type { FieldChange } from "~/platform/merge-fields";
 import { read, write } from "~db/client.server";
 import { athletes, participations, rosterEntries, sessions, sportRules, teams } from "~db/schema";
 import { csvFile, importFile } from "../imports/helpers";
@@ -69,10 +70,12 @@ async function tick(world: World, clear: boolean) {
     tx.select().from(participations).where(eq(participations.sessionId, id)),
   );
   const value = { presence: "took_part", minutes: random.pick([30, 62.5, 90]) };
-  const changes = (clear ? stored : stored.slice(0, 3)).map(({ athleteId, presence, minutes }) => [
-    `athlete:${athleteId}`,
-    { base: { presence, minutes }, value: clear ? null : value },
-  ]);
+  const changes: [string, FieldChange][] = (clear ? stored : stored.slice(0, 3)).map(
+    ({ athleteId, presence, minutes }) => [
+      `athlete:${athleteId}`,
+      { base: { presence, minutes }, value: clear ? null : value },
+    ],
+  );
   const other = await pick(world, "athletes");
   if (!clear && !stored.some(({ athleteId }) => athleteId === other))
     changes.push([`athlete:${other}`, { base: null, value }]);

@@ -169,7 +169,7 @@ describe("a coach", () => {
   it("cannot write a roll-up or take a mark away", async () => {
     const { scopes, organisation } = await open();
     const attempts = [
-      sql`insert into exposure_rollup values (${organisation.id}, current_date, gen_random_uuid(), 'match', 'recorded', 'female', 15, 1, 1)`,
+      sql`insert into exposure_rollup values (${organisation.id}, current_date, gen_random_uuid(), 'match', 'recorded', 1, 1, '[]')`,
       sql`update rollup_marks set cause = 'team'`,
       sql`update exposure_rollup set aes = 0`,
     ];

@@ -13,11 +13,17 @@ import { planClub, plantClub, randomOf } from "./generated-club";
 import { actions, type World } from "./rollups-actions";
 import { countMarks, expectAgreement, type Range } from "./rollups-agreement";
 
-describe.each([11, 12])("roll-ups of a club that people go on writing in (seed %i)", (seed) => {
+/** Cleaned after every step, what each one marks is seen alone; cleaned now and then, marks lie over each other. */
+const clubs = [
+  { seed: 11, cleaned: 1 },
+  { seed: 12, cleaned: 0.4 },
+];
+
+describe.each(clubs)("roll-ups of a club that people go on writing in ($seed)", ({ seed, cleaned }) => {
   let world: World;
   let job: Scope;
   let ranges: Range[];
-  const done = new Map<string, number>();
+  const done = new Set<string>();
 
   beforeAll(async () => {
     const organisation = await makeOrganisation();
@@ -40,20 +46,24 @@ describe.each([11, 12])("roll-ups of a club that people go on writing in (seed %
     ];
   });
 
+  /** What a rule of the trade refuses writes nothing. */
+  async function attempt(name: string) {
+    await actions[name]?.(world).then(
+      () => done.add(name),
+      (error: unknown) => {
+        if (!(error instanceof DomainError)) throw error;
+      },
+    );
+  }
+
   it("equal the records after every step, clean or not", async () => {
-    await expectAgreement(world.scope, ranges, "before any");
+    await expectAgreement(world.scope, ranges, "all marked");
+    await rollUp(job);
     const names = Object.keys(actions);
-    for (let step = 0; step < 2 * names.length; step++) {
-      const name = names[step % names.length] ?? "";
-      // What a rule of the trade refuses writes nothing.
-      await actions[name]?.(world).then(
-        () => done.set(name, (done.get(name) ?? 0) + 1),
-        (error: unknown) => {
-          if (!(error instanceof DomainError)) throw error;
-        },
-      );
+    for (const [step, name] of names.entries()) {
+      for (let tries = 0; tries < 8 && !done.has(name); tries++) await attempt(name);
       await expectAgreement(world.scope, ranges, `${step} ${name}`);
-      if (!world.random.chance(0.4)) continue;
+      if (!world.random.chance(cleaned)) continue;
       expect(await rollUp(job)).toBe(true);
       expect(await countMarks(job.organisationId)).toBe(0);
       await expectAgreement(world.scope, ranges, `${step} clean`);

@@ -15,6 +15,7 @@ import { tabulate } from "./rates";
 import { select } from "./selection";
 import type { TableData } from "./tables";
 import { countView, type RatesView } from "./view.server";
+import { plain } from "./wording";
 
 const capital = (words: string) => words.charAt(0).toUpperCase() + words.slice(1);
 const shown = <T extends { estimate: number; lower: number; upper: number }>(ratio: T | null) =>
@@ -51,7 +52,12 @@ export async function comparisonsViewOf(tx: Tx, view: RatesView, url: URL) {
       choice.problem ?? (pair ? null : (first?.reason ?? second?.reason ?? "There is no rate to compare.")),
     coverage: selection.coverage,
     sentence: pair ? pairSentence(pair, filters) : [],
-    note: pair ? pairNote(pair, filters) : [],
+    note: pair
+      ? [
+          ...(all && dimension !== "season" ? [plain("All seasons together. ")] : []),
+          ...pairNote(pair, filters),
+        ]
+      : [],
     /** The ratios as the picture draws them. */
     lines: pair
       ? ratioLines(pair).flatMap(({ label, ratio }) => (ratio ? [{ label, ratio: shown(ratio) }] : []))

@@ -49,8 +49,8 @@ export function TeamRatesView({ frame: { slug, filters }, data }: Props) {
       ) : null}
       <p className="mb-6 max-w-prose text-soft">
         Hollow spots rest on fewer than 5 injuries. The less exposure a team has, the further its rate may lie
-        from the whole's by luck. Limits: exact Poisson around the whole's rate, the team itself included. The
-        shrunken rate is the better guess of what a team's rate will be next.
+        from the whole's by luck. Limits: Poisson (mid-P) around the whole's rate, the team itself included.
+        The shrunken rate is the better guess of what a team's rate will be next.
       </p>
       {teams ? <FigureTable table={linked(teams)} slug={slug} view="teams" /> : null}
       {expected && limits.length > 0 ? (

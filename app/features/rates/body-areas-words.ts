@@ -43,9 +43,10 @@ function rateParts({ rate }: AreaWithSides, unit: RatesFilters["per"]): Part[] {
   ];
 }
 
-function daysParts({ area, daysLost, daysShare, injuries }: AreaWithSides, all: number): Part[] {
+function daysParts({ area, daysLost, daysShare, injuries }: AreaWithSides, all: number, who: string): Part[] {
+  const what = areaInjuries(area);
   return [
-    plain(`${sentenceCase(areaInjuries(area))} cost `),
+    plain(`${who ? `${sentenceCase(who)}: ${what}` : sentenceCase(what)} cost `),
     strong(`${formatCount(daysLost)} of ${several(all, "day", "days")} lost, ${percentOf(daysShare ?? 0)}`),
     plain(`, in ${several(injuries, "injury", "injuries")}`),
   ];
@@ -103,7 +104,7 @@ export function bodyAreasSentence(
       ...rest,
       ...end,
     ];
-  return [plain(who ? `${sentenceCase(who)}: ` : ""), ...daysParts(longest, allDays), ...rest, ...end];
+  return [...daysParts(longest, allDays, who), ...rest, ...end];
 }
 
 /** The smaller line: the cut-off day, a single long injury, and how far the first place is chance. */

@@ -17,8 +17,8 @@ const number = (id: string, header: string, decimals = 0): TableColumn => ({
   kind: "number",
   decimals,
 });
-const rate = (id: string, header: string, unit: string, bar = false): TableColumn => ({
-  ...{ id, header, kind: "figure", form: "rate", unit, bar },
+const rate = (id: string, header: string, unit: string): TableColumn => ({
+  ...{ id, header, kind: "figure", form: "rate", unit, bar: true },
 });
 
 type Cells = (row: SeverityRow) => Record<string, Cell>;
@@ -42,17 +42,16 @@ function lines({ rows, total }: Severity, cellsOf: Cells, href: RecordsHref): Ta
 const ofDays = (part: number, all: number) => (all === 0 ? null : (part / all) * 100);
 const empty = "No exposure and no injuries yet.";
 
-function burdenTable(severity: Severity, href: RecordsHref): TableData {
+function frequencyTable(severity: Severity, href: RecordsHref): TableData {
   return {
-    id: "burden",
-    caption: "Injuries and days lost per 1000 hours (burden), by group",
+    id: "frequency",
+    caption: "How often and how long, by group",
     columns: [
       text("group", "Group"),
       count("injuries", "Injuries"),
       count("hours", "Hours"),
-      rate("incidence", "Rate", "injuries per 1000 hours"),
-      count("days", "Days lost"),
-      rate("burden", "Burden", "days per 1000 hours", true),
+      rate("incidence", "Rate", "per 1000 hours"),
+      number("mean", "Days lost per injury", 1),
     ],
     rows: lines(
       severity,
@@ -60,8 +59,32 @@ function burdenTable(severity: Severity, href: RecordsHref): TableData {
         injuries: row.injuries,
         hours: hoursOf(row),
         incidence: row.rate ? figure(row.rate, row.unstable) : { reason: row.reason ?? "no rate" },
+        mean: row.injuries ? row.daysLost / row.injuries : null,
+      }),
+      href,
+    ),
+    empty,
+  };
+}
+
+function burdenTable(severity: Severity, href: RecordsHref): TableData {
+  return {
+    id: "burden",
+    caption: "Days lost, and per 1000 hours (burden), by group",
+    columns: [
+      text("group", "Group"),
+      count("injuries", "Injuries"),
+      count("hours", "Hours"),
+      count("days", "Days lost"),
+      rate("burden", "Burden", "days per 1000 hours"),
+    ],
+    rows: lines(
+      severity,
+      (row) => ({
+        injuries: row.injuries,
+        hours: hoursOf(row),
         days: row.daysLost,
-        burden: row.burden ? figure(row.burden, row.unstable) : null,
+        burden: row.burden ? figure(row.burden, row.unstable) : { reason: row.reason ?? "no burden" },
       }),
       href,
     ),
@@ -74,15 +97,15 @@ function bandTable({ bands, total }: Severity, href: RecordsHref): TableData {
     id: "bands",
     caption: "Injuries by the days they cost",
     columns: [
-      text("band", "Days lost"),
+      text("band", "Severity"),
       count("injuries", "Injuries"),
       count("ongoing", "Ongoing"),
       {
-        ...{ id: "share", header: "Share of injuries", kind: "figure", form: "share" },
+        ...{ id: "share", header: "Share", kind: "figure", form: "share" },
         ...{ unit: "per cent of injuries", bar: true },
       },
-      count("days", "Days together"),
-      number("days-share", "% of all days"),
+      count("days", "Days lost"),
+      number("days-share", "% of days"),
     ],
     rows: bands.map(({ band, injuries, ongoing, share, daysLost }) => ({
       key: band,
@@ -110,7 +133,6 @@ function bandGroupTable(severity: Severity, filters: RatesFilters, href: Records
       count("injuries", "Injuries"),
       ...bands.map((band) => count(`band ${band}`, sentenceCase(bandWords[band]))),
       count("ongoing", "Ongoing"),
-      number("mean", "Days each", 1),
       number("longest", "Longest, % of days"),
     ],
     rows: lines(
@@ -119,7 +141,6 @@ function bandGroupTable(severity: Severity, filters: RatesFilters, href: Records
         injuries: row.injuries,
         ...Object.fromEntries(bands.map((band) => [`band ${band}`, row.bands[band]])),
         ongoing: row.ongoing,
-        mean: row.injuries ? row.daysLost / row.injuries : null,
         longest: row.daysLost > 0 ? row.largestShare * 100 : null,
       }),
       href,
@@ -214,6 +235,7 @@ function curveTable({ total, comparison }: Severity): TableData {
 /** Every table of the view, in the order of the page. */
 export function severityTables(severity: Severity, filters: RatesFilters, href: RecordsHref): SeverityTables {
   return {
+    frequency: frequencyTable(severity, href),
     burden: burdenTable(severity, href),
     bands: bandTable(severity, href),
     groups: bandGroupTable(severity, filters, href),
@@ -222,4 +244,7 @@ export function severityTables(severity: Severity, filters: RatesFilters, href: 
   };
 }
 
-export type SeverityTables = Record<"burden" | "bands" | "groups" | "returns" | "curve", TableData>;
+export type SeverityTables = Record<
+  "frequency" | "burden" | "bands" | "groups" | "returns" | "curve",
+  TableData
+>;

@@ -93,7 +93,13 @@ export function severitySentence(
     ];
   if (total.daysLost === 0)
     return [plain(`${subject} had `), strong(counted), plain(", and none of them cost a day.")];
-  const lost = [plain(`${subject} lost `), strong(daysOf(total.daysLost)), plain(" to "), strong(counted)];
+  const lost = [
+    plain(`${subject} lost `),
+    strong(daysOf(total.daysLost)),
+    plain(" to "),
+    strong(counted),
+    plain(filters.by === "season" ? " over all seasons" : ""),
+  ];
   const half = total.curve && injuries > 1 ? [plain("; "), ...medianParts("those injured", total.curve)] : [];
   return [
     ...lost,

@@ -152,7 +152,7 @@ describe("severity", () => {
       ...attended,
       by: "team",
     });
-    const row = severityTables(severity, attended, () => "/x").burden.rows.find(({ key }) => key === "u");
+    const row = severityTables(severity, attended, () => "/x").frequency.rows.find(({ key }) => key === "u");
     expect(Object.keys(row?.cells ?? {})).toEqual(["group", "injuries"]);
     expect(written(row)).toContain("not reported");
     expect(row?.href).toBeUndefined();

@@ -88,6 +88,7 @@ export function SeverityView({ frame, view }: { frame: Frame; view: View }) {
       </Lede>
       <CoverageNote coverage={view.coverage} />
       <BurdenPicture {...view} />
+      {table(tables.frequency)}
       {table(tables.burden)}
       {injuries > 0 ? (
         <LinkRow>

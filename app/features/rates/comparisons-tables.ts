@@ -1,5 +1,5 @@
 import { type Counted, type Estimate, rateRatio } from "~/statistics";
-import type { Pair, Robust, SportPair } from "./comparisons";
+import type { Pair, Robust } from "./comparisons";
 import type { ComparedStratum, Held } from "./comparisons-strata";
 import { groupWords } from "./comparisons-words";
 import { stableFrom } from "./coverage";
@@ -10,24 +10,24 @@ import { type Cell, figure, type TableColumn, type TableData, type TableRow } fr
 
 /** The tables of a comparison: its rates, its ratios, its strata, and girls and boys by sport. */
 
-const exposureHead: Record<RateUnit, string> = { aes: "Exposures", hours: "Hours" };
+export const exposureHead: Record<RateUnit, string> = { aes: "Exposures", hours: "Hours" };
 const perWords = (unit: RateUnit) => `per ${unitWords[unit]}`;
 
-const text = (id: string, header: string): TableColumn => ({ id, header, kind: "text" });
-const count = (id: string, header: string): TableColumn => ({ id, header, kind: "count" });
-const rateColumn = (id: string, header: string, unit: RateUnit): TableColumn => ({
+export const text = (id: string, header: string): TableColumn => ({ id, header, kind: "text" });
+export const count = (id: string, header: string): TableColumn => ({ id, header, kind: "count" });
+export const rateColumn = (id: string, header: string, unit: RateUnit): TableColumn => ({
   ...{ id, header, unit: perWords(unit) },
   kind: "figure",
   form: "rate",
   bar: true,
 });
-const ratioColumn = (id: string, header: string): TableColumn => ({
+export const ratioColumn = (id: string, header: string): TableColumn => ({
   ...{ id, header, unit: "times" },
   kind: "figure",
   form: "ratio",
 });
 
-const rateCell = ({ rate, reason, unstable }: RateRow): Cell =>
+export const rateCell = ({ rate, reason, unstable }: RateRow): Cell =>
   rate ? figure(rate, unstable) : { reason: reason ?? "no rate" };
 
 export function ratesTable({ first, second, adjusted, strata, held }: Pair, unit: RateUnit): TableData {
@@ -84,7 +84,11 @@ type Line = {
 };
 
 /** Infinity is not a number to show: the table says why there is none, and its lower limit. */
-function ratioCell(ratio: Estimate | null, reason: string | null | undefined, unstable: boolean): Cell {
+export function ratioCell(
+  ratio: Estimate | null,
+  reason: string | null | undefined,
+  unstable: boolean,
+): Cell {
   if (!ratio) return { reason: reason ?? "no injury on either side" };
   if (ratio.estimate === Infinity)
     return { reason: `no upper limit, at least ${ratio.lower.toPrecision(2)}: the second has no injury` };
@@ -201,65 +205,5 @@ export function strataTable(pair: Pair, unit: RateUnit): TableData {
         ),
       },
     })),
-  };
-}
-
-/** Rates of each sport's girls and women, and of its boys and men. */
-export function sportsTable(
-  pairs: readonly SportPair[],
-  unit: RateUnit,
-  [girls, boys]: readonly [string, string],
-): TableData {
-  const side = (row: RateRow, { key, label }: SportPair, series: 1 | 2): TableRow => ({
-    key: `${key} ${row.key}`,
-    series,
-    cells: {
-      group: `${label}, ${row.label.toLowerCase()}`,
-      injuries: row.injuries,
-      exposure: row.denominator,
-      rate: rateCell(row),
-    },
-  });
-  return {
-    id: "sports",
-    caption: `Rates of ${girls.toLowerCase()} and of ${boys.toLowerCase()}, by sport`,
-    columns: [
-      text("group", "Sport and sex"),
-      count("injuries", "Injuries"),
-      count("exposure", exposureHead[unit]),
-      rateColumn("rate", "Rate", unit),
-    ],
-    rows: pairs.flatMap((pair) => [side(pair.female, pair, 1), side(pair.male, pair, 2)]),
-    empty: "No sport here is played by girls or women as well as by boys or men.",
-  };
-}
-
-export function sportRatiosTable(
-  pairs: readonly SportPair[],
-  [girls, boys]: readonly [string, string],
-): TableData {
-  return {
-    id: "sport-ratios",
-    caption: `${girls} over ${boys.toLowerCase()}, by sport`,
-    columns: [
-      text("sport", "Sport"),
-      text("injuries", "Injuries of both"),
-      ratioColumn("ratio", "Rate ratio, mid-P"),
-      ratioColumn("robust", "With teams as clusters"),
-    ],
-    rows: pairs.map(({ key, label, female, male, ratio, robust }) => {
-      const unstable = female.unstable || male.unstable;
-      const reason = female.rate && male.rate ? null : "withheld";
-      return {
-        key,
-        cells: {
-          sport: label,
-          injuries: `${female.injuries} and ${male.injuries}`,
-          ratio: ratioCell(ratio, reason, unstable),
-          robust: ratioCell(robust.ratio, robust.short, unstable),
-        },
-      };
-    }),
-    empty: "Nothing to compare.",
   };
 }

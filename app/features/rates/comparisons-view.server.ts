@@ -1,15 +1,9 @@
 import type { Tx } from "~db/client.server";
-import { choosePair, compareBySport, comparePair } from "./comparisons";
+import { choosePair, comparePair } from "./comparisons";
 import { parseComparison } from "./comparisons.schema";
-import {
-  ratesTable,
-  ratioLines,
-  ratiosTable,
-  sportRatiosTable,
-  sportsTable,
-  strataTable,
-} from "./comparisons-tables";
-import { pairNote, pairSentence, sportsSentence } from "./comparisons-words";
+import { compareBySport, sportRatiosTable, sportsSentence, sportsTable } from "./comparisons-sports";
+import { ratesTable, ratioLines, ratiosTable, strataTable } from "./comparisons-tables";
+import { pairNote, pairSentence } from "./comparisons-words";
 import { sexNames } from "./groups";
 import { tabulate } from "./rates";
 import { select } from "./selection";

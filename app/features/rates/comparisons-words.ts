@@ -1,4 +1,4 @@
-import type { Pair, Robust, SportPair } from "./comparisons";
+import type { Pair, Robust } from "./comparisons";
 import type { Dimension, Held } from "./comparisons-strata";
 import { decimalsFor, formatCount, formatRate, formatRatio } from "./figures";
 import { countedInWords } from "./filter-words";
@@ -192,31 +192,4 @@ export function pairNote(pair: Pair, filters: RatesFilters): Part[] {
     pair.ratio ? teamsWords(adjusted?.robust.ratio ? adjusted.robust : robust) : "",
   ];
   return texts.filter(Boolean).map((text, index) => plain(index === 0 ? text : ` ${text}`));
-}
-
-/** Girls and boys by sport, in words. */
-export function sportsSentence(
-  pairs: readonly SportPair[],
-  oneSided: readonly string[],
-  girls: string,
-): Part[] {
-  const rated = pairs.filter(({ ratio }) => ratio !== null);
-  const clear = rated.filter(({ ratio, robust }) => {
-    const shown = robust.ratio ?? ratio;
-    return shown && (shown.lower > 1 || shown.upper < 1);
-  });
-  const only = oneSided.length > 0 ? ` ${listWords(oneSided)}: one sex only.` : "";
-  if (rated.length === 0) return [plain(`No sport has injuries and exposure of both.${only}`)];
-  const words = clear.map(({ label, ratio }) =>
-    ratio && ratio.estimate > 1 ? `${label.toLowerCase()} (higher)` : `${label.toLowerCase()} (lower)`,
-  );
-  const answer =
-    clear.length === 0
-      ? `In none of ${rated.length} sports does the interval of the ratio lie wholly above or below no difference.`
-      : `The rate of ${girls.toLowerCase()} differs beyond its interval in ${listWords(words)}, of ${rated.length} sports.`;
-  const many =
-    rated.length > 1
-      ? ` With ${rated.length} looks at once, about ${(rated.length * 0.05).toFixed(1)} would by luck alone.`
-      : "";
-  return [plain(answer + many + only)];
 }

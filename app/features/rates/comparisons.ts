@@ -21,7 +21,7 @@ import {
   stratify,
 } from "./comparisons-strata";
 import type { RatesFilters } from "./filters";
-import { type RateRow, tabulate } from "./rates";
+import type { RateRow } from "./rates";
 import type { Counts, Selection } from "./selection";
 
 /** Two groups held against each other: crude, allowing for teams, and within the same ages and session kinds. Pure. */
@@ -104,7 +104,7 @@ export function choosePair(rows: readonly RateRow[], asked: { a?: string; b?: st
   return { options, first, second, problem: null };
 }
 
-const counted = ({ injuries, denominator }: RateRow) => ({
+export const sideOf = ({ injuries, denominator }: RateRow) => ({
   events: injuries ?? 0,
   exposure: denominator ?? 0,
 });
@@ -113,7 +113,7 @@ const singleTeams =
   "each side is a single team, and one team cannot show how much teams differ. Read the interval as too narrow";
 const tooFewTeams = "a side has no injury or only one team, so that teams cannot be told from the groups";
 
-function robustOf({ rows, dropped }: ReturnType<typeof clusterRows>, dimension: Dimension): Robust {
+export function robustOf({ rows, dropped }: ReturnType<typeof clusterRows>, dimension: Dimension): Robust {
   const none = (reason: string, short: string): Robust => ({ ratio: null, reason, short, dropped });
   if (dimension === "team") return none(singleTeams, "single teams");
   const sides = new Set(rows.map(({ group }) => group)).size;
@@ -143,7 +143,7 @@ function setAsideOf(strata: readonly ComparedStratum[]): SetAside {
   };
 }
 
-type Material = { counts: Counts; selection: Selection; filters: RatesFilters };
+export type Material = { counts: Counts; selection: Selection; filters: RatesFilters };
 
 function adjust({ counts, selection, filters }: Material, sides: Sides, strata: readonly ComparedStratum[]) {
   const shared = strata.filter(({ state }) => state === "both");
@@ -186,7 +186,7 @@ export function comparePair(material: Material, dimension: Dimension, first: Rat
   const unit = filters.per;
   const held = heldEqual(dimension, filters.sessions);
   const sides: Sides = { dimension, a: first.key, b: second.key, held };
-  const [a, b] = [counted(first), counted(second)];
+  const [a, b] = [sideOf(first), sideOf(second)];
   const strata = stratify(counts, selection, unit, sides);
   const { adjusted = null, reason = null } = adjust(material, sides, strata);
   return {
@@ -202,53 +202,4 @@ export function comparePair(material: Material, dimension: Dimension, first: Rat
     adjusted,
     notAdjusted: reason,
   };
-}
-
-export type SportPair = {
-  key: string;
-  label: string;
-  female: RateRow;
-  male: RateRow;
-  ratio: RateRatio | null;
-  robust: Robust;
-};
-
-/** Girls and women against boys and men within each sport that both play. */
-export function compareBySport(material: Material): { pairs: SportPair[]; oneSided: string[] } {
-  const { counts, selection, filters } = material;
-  const unit = filters.per;
-  const pairs: SportPair[] = [];
-  const oneSided: string[] = [];
-  for (const { key, label } of tabulate("sport", counts, selection, unit)) {
-    const own = new Set(counts.teams.filter(({ sport }) => sport === key).map(({ id }) => id));
-    const isOwn = ({ teamId }: { teamId: string | null }) => teamId !== null && own.has(teamId);
-    const part: Selection = {
-      ...selection,
-      cells: selection.cells.filter(isOwn),
-      counted: selection.counted.filter(isOwn),
-      sessions: selection.sessions.filter(isOwn),
-    };
-    const rows = tabulate("sex", counts, part, unit);
-    const [female, male] = ["female", "male"].map((sex) =>
-      rows.find((row) => row.key === sex && (row.denominator ?? 0) > 0),
-    );
-    if (!female || !male) {
-      oneSided.push(label);
-      continue;
-    }
-    const [a, b] = [counted(female), counted(male)];
-    const isRated = female.rate !== null && male.rate !== null;
-    pairs.push({
-      key,
-      label,
-      female,
-      male,
-      ratio: isRated && a.events + b.events > 0 ? rateRatio(a, b) : null,
-      robust: robustOf(
-        clusterRows(counts, part, unit, { dimension: "sex", a: "female", b: "male", held: [] }),
-        "sex",
-      ),
-    });
-  }
-  return { pairs, oneSided };
 }

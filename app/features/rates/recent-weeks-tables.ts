@@ -1,7 +1,8 @@
 import { stableFrom } from "./coverage";
 import type { RateUnit } from "./filters";
 import { dayWords } from "./periods";
-import type { TeamSurprise, WeekCharts } from "./recent-weeks";
+import type { TeamSurprise } from "./recent-weeks";
+import type { WeekCharts } from "./recent-weeks-charts";
 import { unitWords } from "./sentence";
 import { type Cell, figure, type TableColumn, type TableData } from "./tables";
 

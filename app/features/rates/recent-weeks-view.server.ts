@@ -1,7 +1,8 @@
 import type { Tx } from "~db/client.server";
 import { coverageOf, stableFrom } from "./coverage";
 import { dayWords } from "./periods";
-import { recentSpan, surpriseOf, surprisesByTeam, weekCharts } from "./recent-weeks";
+import { recentSpan, surpriseOf, surprisesByTeam } from "./recent-weeks";
+import { weekCharts } from "./recent-weeks-charts";
 import { teamSurprisesTable, weeksTable } from "./recent-weeks-tables";
 import { lookingOften, recentNote, recentSentence, spanWords, thresholdWords } from "./recent-weeks-words";
 import { select } from "./selection";

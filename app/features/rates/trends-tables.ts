@@ -4,7 +4,8 @@ import { dayWords } from "./periods";
 import type { RateRow } from "./rates";
 import { unitWords } from "./sentence";
 import { type Cell, figure, type TableColumn, type TableData } from "./tables";
-import type { KindTrend, MonthRow, NoTrend, SeasonRow, SoFarRow, Trend } from "./trends";
+import type { KindTrend, MonthRow, NoTrend, Trend } from "./trends";
+import type { SeasonRow, SoFarRow } from "./trends-seasons";
 
 /** The tables of the trends: months, the trend itself, seasons, and the season so far. */
 

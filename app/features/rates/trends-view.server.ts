@@ -1,6 +1,7 @@
 import type { Tx } from "~db/client.server";
 import { select } from "./selection";
-import { monthRows, seasonRows, seasonsSoFar, trendOf, trendWithinKinds } from "./trends";
+import { monthRows, trendOf, trendWithinKinds } from "./trends";
+import { seasonRows, seasonsSoFar } from "./trends-seasons";
 import { monthsTable, seasonsTable, soFarTable, trendTable } from "./trends-tables";
 import { soFarSentence, trendNote, trendSentence } from "./trends-words";
 import { countView, type RatesView } from "./view.server";

@@ -3,7 +3,8 @@ import { decimalsFor, formatCount, formatRate, formatRatio } from "./figures";
 import { countedInWords } from "./filter-words";
 import type { RatesFilters } from "./filters";
 import type { Part } from "./sentence";
-import type { KindTrend, MonthRow, NoTrend, SeasonRow, SoFarRow, Trend } from "./trends";
+import type { KindTrend, MonthRow, NoTrend, Trend } from "./trends";
+import type { SeasonRow, SoFarRow } from "./trends-seasons";
 import { attention, chanceWords, interval, plain, ratioLimits, strong } from "./wording";
 
 /** What the trends say in words. */

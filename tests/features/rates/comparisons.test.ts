@@ -1,6 +1,12 @@
 import { describe, expect, it } from "vitest";
 import { choosePair, comparePair } from "~/features/rates/comparisons";
 import { parseComparison } from "~/features/rates/comparisons.schema";
+import {
+  compareBySport,
+  sportRatiosTable,
+  sportsSentence,
+  sportsTable,
+} from "~/features/rates/comparisons-sports";
 import type { Dimension } from "~/features/rates/comparisons-strata";
 import { ratesTable, ratiosTable, strataTable } from "~/features/rates/comparisons-tables";
 import { pairNote, pairSentence } from "~/features/rates/comparisons-words";
@@ -9,7 +15,7 @@ import { type Counts, computeRates, tabulate } from "~/features/rates/rates";
 import { select } from "~/features/rates/selection";
 import { textOf } from "~/features/rates/sentence";
 import { rateRatio } from "~/statistics";
-import { cell, counts, injury, several } from "./view";
+import { cell, counts, injury, several, tally } from "./view";
 
 const bands = [
   { label: "under 45", from: 0, to: 44 },
@@ -280,5 +286,57 @@ describe("the groups of an address", () => {
     expect(parseComparison(address(""))).toEqual({ compare: "sex", over: "season" });
     expect(() => parseComparison(address("?compare=height"))).toThrow(/compare: Use one of: sex/);
     expect(() => parseComparison(address("?over=ever"))).toThrow(/over: Use one of: season, all/);
+  });
+});
+
+describe("girls and boys by sport", () => {
+  const teams = ["soccer", "soccer", "soccer", "soccer", "handball"].map((sport, index) => ({
+    ...{ id: `t${index}`, name: `Team ${index}`, sport },
+    sex: index % 2 === 0 ? "girls" : "boys",
+  }));
+  const sexOf = (index: number) => (index % 2 === 0 ? ("female" as const) : ("male" as const));
+  const made = counts({
+    teams,
+    cells: teams.map(({ id }, index) => cell({ teamId: id, sex: sexOf(index), aes: 1000 })),
+    injuries: [16, 4, 14, 5, 9].flatMap((count, index) =>
+      several(count, { teamId: `t${index}`, sex: sexOf(index) }),
+    ),
+    sessions: [],
+  });
+  const selection = select(made, defaultFilters);
+  const { pairs, oneSided } = compareBySport({ counts: made, selection, filters: defaultFilters });
+
+  it("are compared within each sport that both play", () => {
+    expect(pairs.map(({ key, female, male }) => [key, female.injuries, male.injuries])).toEqual([
+      ["soccer", 30, 9],
+    ]);
+    expect(pairs[0]?.ratio).toEqual(rateRatio({ events: 30, exposure: 2000 }, { events: 9, exposure: 2000 }));
+    expect(pairs[0]?.robust.ratio?.clusters).toBe(4);
+    const names = ["Girls", "Boys"] as const;
+    expect(sportsTable(pairs, "aes", names).rows).toHaveLength(2);
+    expect(sportRatiosTable(pairs, names).rows[0]?.cells).toMatchObject({ injuries: "30 and 9" });
+  });
+
+  it("are said with the sports of one sex alone", () => {
+    expect(textOf(sportsSentence(pairs, oneSided, "Girls"))).toBe(
+      "The rate of girls differs beyond its interval in soccer (higher), of one sport. Handball: one sex only.",
+    );
+    expect(textOf(sportsSentence([], oneSided, "Girls"))).toContain(
+      "No sport has injuries and exposure of both.",
+    );
+  });
+
+  it("are withheld where too little of a sport's own sessions is recorded", () => {
+    const low = {
+      ...made,
+      sessions: [tally({ teamId: "t0", recorded: 2 }), tally({ teamId: "t4", held: 90, recorded: 90 })],
+    };
+    const [soccer] = compareBySport({
+      counts: low,
+      selection: select(low, defaultFilters),
+      filters: defaultFilters,
+    }).pairs;
+    expect(soccer).toMatchObject({ ratio: null, female: { rate: null }, male: { rate: null } });
+    expect(soccer?.robust.ratio).toBeNull();
   });
 });

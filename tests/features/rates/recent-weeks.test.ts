@@ -1,7 +1,8 @@
 import { describe, expect, it } from "vitest";
 import { defaultFilters } from "~/features/rates/filters";
 import type { Counts } from "~/features/rates/rates";
-import { recentSpan, surpriseOf, surprisesByTeam, weekCharts } from "~/features/rates/recent-weeks";
+import { recentSpan, surpriseOf, surprisesByTeam } from "~/features/rates/recent-weeks";
+import { weekCharts } from "~/features/rates/recent-weeks-charts";
 import { cusumThreshold, restartingCusum, weeksToFind } from "~/features/rates/recent-weeks-cusum";
 import { teamSurprisesTable, weeksTable } from "~/features/rates/recent-weeks-tables";
 import {

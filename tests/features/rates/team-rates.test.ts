@@ -41,7 +41,7 @@ describe("teams against the whole", () => {
   });
 
   it("lie outside exactly where their own limits say", () => {
-    // Team 8: 15 where 8.1 are expected, 1.9 % by luck; team 3: none where 3.2 are, 4.0 % by luck on its side.
+    // By hand, mid-P: none where 3.2 are expected, exp(-3.228) / 2 = 0.020; 15 where 8.1 are, 0.014.
     const whole = rates.whole?.estimate ?? 0;
     for (const { row, outside } of rates.teams) {
       const exposure = row.denominator ?? 0;
@@ -49,7 +49,10 @@ describe("teams against the whole", () => {
       const own = ((row.injuries ?? 0) / exposure) * 1000;
       expect(outside[0]).toBe(own > upper ? "above" : own < lower ? "below" : null);
     }
-    expect(rates.teams.filter(({ outside }) => outside[0]).map(({ row }) => row.label)).toEqual(["Team 8"]);
+    expect(rates.teams.filter(({ outside }) => outside[0]).map(({ row }) => row.label)).toEqual([
+      "Team 3",
+      "Team 8",
+    ]);
   });
 
   it("name those outside, and how many luck alone would bring", () => {
@@ -57,7 +60,7 @@ describe("teams against the whole", () => {
     expect(luck).toBeGreaterThan(0);
     const sentence = textOf(teamsSentence(rates, "aes", "The club"));
     expect(sentence).toMatch(
-      /^The club had 58 injuries, 5\.0 per 1000 athlete-exposures \(3\.8 to 6\.5\)\. Of 10 teams one lies outside the 95 % limits for its exposure: Team 8 \(9\.3, above\)\./,
+      /^The club had 58 injuries, 5\.0 per 1000 athlete-exposures \(3\.8 to 6\.5\)\. Of 10 teams 2 lie outside the 95 % limits for their exposure: Team 3 \(0\.0, below; unstable\) and Team 8 \(9\.3, above\)\./,
     );
     expect(sentence).toContain(`By luck alone about ${luck.toFixed(1)} of 10 would`);
     expect(textOf(teamsNote(rates))).toContain("Team 8 1.8 (1.0");

@@ -1,7 +1,6 @@
 import { PassThrough } from "node:stream";
 import { createReadableStreamFromReadable } from "@react-router/node";
-import { isbot } from "isbot";
-import { type RenderToPipeableStreamOptions, renderToPipeableStream } from "react-dom/server";
+import { renderToPipeableStream } from "react-dom/server";
 import type { EntryContext, RouterContextProvider } from "react-router";
 import { ServerRouter } from "react-router";
 import { logFault } from "~/middleware/error-response.server";
@@ -21,17 +20,18 @@ export default function handleRequest(
   if (request.method === "HEAD") return new Response(null, { status, headers });
   const nonce = process.env.NODE_ENV === "production" ? context.get(requestContext).nonce : undefined;
   return new Promise((resolve, reject) => {
-    let shellRendered = false;
-    const ready: keyof RenderToPipeableStreamOptions =
-      isbot(request.headers.get("user-agent") ?? "") || entry.isSpaMode ? "onAllReady" : "onShellReady";
+    let hasShell = false;
     const { pipe, abort } = renderToPipeableStream(
       <NonceContext value={nonce}>
         <ServerRouter context={entry} url={request.url} nonce={nonce} />
       </NonceContext>,
       {
         nonce,
-        [ready]() {
-          shellRendered = true;
+        onShellReady() {
+          hasShell = true;
+        },
+        // Loaders are done by now and only charts come later, from our own files: whole pages show them without script.
+        onAllReady() {
           const body = new PassThrough();
           headers.set("Content-Type", "text/html; charset=utf-8");
           headers.set("Cache-Control", "no-store");
@@ -41,7 +41,7 @@ export default function handleRequest(
         onShellError: reject,
         onError(error: unknown) {
           status = 500;
-          if (shellRendered) logFault(error);
+          if (hasShell) logFault(error);
         },
       },
     );

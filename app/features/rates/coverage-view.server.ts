@@ -65,7 +65,7 @@ export function coverageRows(counts: Counts, sessions: readonly SessionTally[]):
   });
 }
 
-const shareColumn: TableColumn = { id: "share", header: "Recorded share", kind: "percent" };
+const shareColumn: TableColumn = { id: "share", header: "Recorded share", kind: "percent", down: true };
 
 const shareCell = ({ share }: Coverage): Cell => share ?? { reason: "no session held" };
 

@@ -33,6 +33,8 @@ const weekName = ({ week, finished }: PrevalenceWeek) =>
   finished ? dayWords(week, true) : `${dayWords(week, true)}, not finished`;
 
 const empty = "Nobody on a roster in this season yet.";
+/** The case definition of injuries is not that of prevalence: its files say so. */
+const counts = "athletes not fully available on a day, of every cause";
 
 const partWords = {
   unavailable: "Unavailable",
@@ -49,7 +51,7 @@ type Line = { key: string; name: string; row: Prevalence; href?: string; total?:
 
 /** The lines of one table of athletes not fully available. */
 const limitedTable = (id: string, caption: string, first: string, lines: readonly Line[]): TableData => ({
-  ...{ id, caption, empty },
+  ...{ id, caption, empty, counts },
   columns: [text("name", first), ...limitedColumns],
   rows: lines.map(({ name, row, ...rest }) => ({ ...rest, cells: { name, ...limitedCells(row) } })),
 });
@@ -62,7 +64,7 @@ const splitTable = (
   parts: readonly SplitPart[],
   lines: readonly Line[],
 ): TableData => ({
-  ...{ id, caption, empty },
+  ...{ id, caption, empty, counts },
   columns: [text("name", first), roster, ...parts.map((part) => percent(part, partWords[part]))],
   rows: lines.map(({ name, row, ...rest }) => ({
     ...rest,
@@ -97,6 +99,7 @@ const splitOfSeason = (whole: Prevalence | null): TableData => ({
       ]
     : [],
   empty,
+  counts,
 });
 
 const tableNames = ["weeks", "groups", "groupStates", "split", "weekStates", "weekCauses"] as const;

@@ -23,8 +23,18 @@ const rate = (id: string, header: string, unit: string): TableColumn => ({
 
 type Cells = (row: SeverityRow) => Record<string, Cell>;
 
+/** Groups with an injury: of the others nothing can be said on how long injuries last. */
+const injured = ({ rows, total }: Severity): Pick<Severity, "rows" | "total"> => ({
+  rows: rows.filter(({ injuries }) => injuries !== 0),
+  total,
+});
+
 /** One line per group and one for the whole. A group that has not reported has nothing but that. */
-function lines({ rows, total }: Severity, cellsOf: Cells, href: RecordsHref): TableRow[] {
+function lines(
+  { rows, total }: Pick<Severity, "rows" | "total">,
+  cellsOf: Cells,
+  href: RecordsHref,
+): TableRow[] {
   const cells = (row: SeverityRow) => ({
     group: row.label,
     ...(row.injuries === null ? { injuries: { reason: row.reason ?? "not reported" } } : cellsOf(row)),
@@ -127,7 +137,8 @@ function bandGroupTable(severity: Severity, filters: RatesFilters, href: Records
   const bands = bandsOf(filters.injuries);
   return {
     id: "bands-by-group",
-    caption: "The same by group; an ongoing injury stands in the band it has reached",
+    caption:
+      "The same by group, of groups with an injury; an ongoing injury stands in the band it has reached",
     columns: [
       text("group", "Group"),
       count("injuries", "Injuries"),
@@ -136,7 +147,7 @@ function bandGroupTable(severity: Severity, filters: RatesFilters, href: Records
       number("longest", "Longest, % of days"),
     ],
     rows: lines(
-      severity,
+      injured(severity),
       (row) => ({
         injuries: row.injuries,
         ...Object.fromEntries(bands.map((band) => [`band ${band}`, row.bands[band]])),
@@ -178,7 +189,7 @@ function returnTable(severity: Severity, href: RecordsHref): TableData {
       number("half-to", "95 % to"),
     ],
     rows: lines(
-      severity,
+      injured(severity),
       (row) => ({
         injuries: row.injuries,
         closed: (row.injuries ?? 0) - row.ongoing,

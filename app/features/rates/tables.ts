@@ -23,8 +23,11 @@ export type TableColumn =
   | { id: string; header: string; kind: "count" }
   /** A plain number that no interval goes with, such as a quartile of days. */
   | { id: string; header: string; kind: "number"; decimals: number }
-  /** A share of a whole that was counted, not sampled (0 to 1): it has no interval. */
-  | { id: string; header: string; kind: "percent" }
+  /**
+   * A share of a whole that was counted, not sampled (0 to 1): it has no interval. `down`: rounded down, so that what
+   * is not complete never reads 100 %.
+   */
+  | { id: string; header: string; kind: "percent"; down?: boolean }
   /** An estimate with its interval; `bar` draws it on the column's own axis. `unit`: "per 1000 hours". */
   | { id: string; header: string; kind: "figure"; form: FigureForm; unit: string; bar?: boolean };
 
@@ -46,6 +49,8 @@ export type TableData = {
   columns: TableColumn[];
   rows: TableRow[];
   empty?: string;
+  /** Where the view's case definition and sessions are not those of the table: what is counted instead. */
+  counts?: string;
 };
 
 export const isFigure = (cell: Cell | undefined): cell is Figure =>
@@ -113,7 +118,7 @@ function valuesOf(column: TableColumn, cell: Cell | undefined): CsvValue[] {
 }
 
 /** The table as a file: every row with its context, figures unrounded with limits, level, method and unit. */
-export function writeTableCsv({ columns, rows }: TableData, context: TableContext): string {
+export function writeTableCsv({ columns, rows, counts }: TableData, context: TableContext): string {
   const { filters, coverage } = context;
   const before = [
     "organisation",
@@ -133,8 +138,8 @@ export function writeTableCsv({ columns, rows }: TableData, context: TableContex
     context.from,
     context.to,
     context.team,
-    definitions[filters.injuries],
-    filters.sessions,
+    counts ?? definitions[filters.injuries],
+    counts ? "do not apply" : filters.sessions,
     narrowingText(filters),
     coverage.recorded,
     coverage.held,

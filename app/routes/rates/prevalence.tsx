@@ -18,7 +18,13 @@ export default function Page({ loaderData }: Route.ComponentProps) {
   const { frame, data } = loaderData;
   if (!frame) return <NoSeason />;
   return (
-    <RatesFrame frame={frame} current="rates/prevalence" heading="Prevalence" parts={["by"]}>
+    <RatesFrame
+      frame={frame}
+      current="rates/prevalence"
+      heading="Prevalence"
+      parts={["by"]}
+      shows="athletes not fully available on a day"
+    >
       <PrevalenceView frame={frame} view={data} />
     </RatesFrame>
   );

@@ -53,7 +53,7 @@ function plainCell(column: TableColumn, cell: Cell | undefined) {
   if (cell === null || cell === undefined || typeof cell === "object") return dash;
   if (typeof cell === "string") return cell;
   if (column.kind === "number") return cell.toFixed(column.decimals);
-  if (column.kind === "percent") return `${Math.floor(cell * 100)} %`;
+  if (column.kind === "percent") return `${(column.down ? Math.floor : Math.round)(cell * 100)} %`;
   return formatCount(cell);
 }
 

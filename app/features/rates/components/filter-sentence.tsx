@@ -134,14 +134,20 @@ function Narrowed({ filters }: { filters: RatesFilters }) {
 export function FilterSentence({
   parts,
   narrow = true,
+  shows,
   ...choices
-}: Choices & { parts: readonly FilterPart[]; narrow?: boolean }) {
+}: Choices & { parts: readonly FilterPart[]; narrow?: boolean; shows?: string | undefined }) {
   const { filters } = choices;
   const part = (name: FilterPart) => <Part name={name} filters={filters} label={labels[name]} />;
   return (
     <div className="mb-3 text-soft max-sm:leading-tight print:mb-1" data-filters>
       <Narrowed filters={filters} />
-      Showing {part("injuries")} in {part("sessions")}
+      Showing{" "}
+      {shows ?? (
+        <>
+          {part("injuries")} in {part("sessions")}
+        </>
+      )}
       {parts.includes("by") ? <>, by {part("by")}</> : null}
       {parts.includes("per") ? <>, per {part("per")}</> : null}
       {narrow ? (

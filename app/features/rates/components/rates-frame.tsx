@@ -61,11 +61,13 @@ type Props = {
   /** Parts of the filter sentence beside the case definition and the sessions. */
   parts?: readonly FilterPart[];
   narrow?: boolean;
+  /** What is shown where the case definition and the sessions do not apply: "athletes not fully available". */
+  shows?: string;
   children: ReactNode;
 };
 
 /** The frame of a page of rates: its heading, the other views, the filters. */
-export function RatesFrame({ frame, current, heading, parts = [], narrow = true, children }: Props) {
+export function RatesFrame({ frame, current, heading, parts = [], narrow = true, shows, children }: Props) {
   const { slug, filters, bands, sports } = frame;
   return (
     <Page>
@@ -73,7 +75,7 @@ export function RatesFrame({ frame, current, heading, parts = [], narrow = true,
         {heading}, {frame.season}
       </h1>
       <RatesNav slug={slug} current={current} />
-      <FilterSentence {...{ filters, bands, sports, parts, narrow }} />
+      <FilterSentence {...{ filters, bands, sports, parts, narrow, shows }} />
       {children}
     </Page>
   );

@@ -15,7 +15,7 @@ export async function recentWeeksViewOf(tx: Tx, view: RatesView) {
   const counts = await countView(tx, view, { all: true });
   const selection = select(counts, filters);
   const material = { counts, selection, unit };
-  const span = recentSpan(period.to, tx.scope.today);
+  const span = recentSpan(period.to, tx.scope.today, selection.cells);
   const surprise = surpriseOf(material, span);
   const teams = surprisesByTeam(material, span);
   const charts = weekCharts(material, span);

@@ -1,4 +1,4 @@
-import { min } from "d3-array";
+import { max } from "d3-array";
 import { addDays, weekStart } from "~/platform/clock";
 import { type Estimate, exceedance } from "~/statistics";
 import { type Coverage, coverageOf, percent, stableFrom } from "./coverage";
@@ -25,10 +25,18 @@ export function weekOf(day: string): string {
 
 export type RecentSpan = { from: string; to: string };
 
-/** The last four weeks up to yesterday, or up to the last day of a season that is over. */
-export function recentSpan(seasonTo: string, today: string): RecentSpan {
+/**
+ * The last four weeks up to yesterday; of a season that is over, up to its last day with exposure.
+ * @param seasonTo the last day of the season that may be looked at
+ */
+export function recentSpan(
+  seasonTo: string,
+  today: string,
+  cells: readonly { day: string }[] = [],
+): RecentSpan {
   const yesterday = addDays(today, -1);
-  const to = min([seasonTo, yesterday]) ?? yesterday;
+  const last = max(cells, ({ day }) => (day <= seasonTo ? day : undefined));
+  const to = seasonTo < yesterday ? (last ?? seasonTo) : yesterday;
   return { from: addDays(to, 1 - recentDays), to };
 }
 

@@ -17,7 +17,7 @@ export async function teamRatesViewOf(tx: Tx, view: RatesView) {
   const rates = teamRates({ counts, selection, unit }, teamIds);
   return {
     coverage: selection.coverage,
-    sentence: teamsSentence(rates, unit, view.organisation),
+    sentence: teamsSentence(rates, filters, view.organisation),
     note: teamsNote(rates),
     points: rates.teams.flatMap(({ row, outside }) =>
       row.rate && row.denominator

@@ -1,5 +1,6 @@
-import { decimalsFor, formatCount, formatRate, formatRatio } from "./figures";
-import type { RateUnit } from "./filters";
+import { decimalsFor, formatRate, formatRatio } from "./figures";
+import { countedInWords } from "./filter-words";
+import type { RatesFilters } from "./filters";
 import { type Part, unitWords } from "./sentence";
 import { fewestTeams, type TeamRate, type TeamRates } from "./team-rates";
 import { amountWords, interval, listWords, plain, ratioLimits, strong } from "./wording";
@@ -19,7 +20,7 @@ function named(teams: readonly TeamRate[], decimals: number): Part[] {
 }
 
 /** Which teams lie outside, and how many would by luck. */
-export function teamsSentence(rates: TeamRates, unit: RateUnit, wholeName: string): Part[] {
+export function teamsSentence(rates: TeamRates, filters: RatesFilters, wholeName: string): Part[] {
   const { whole, teams, rated } = rates;
   const silent = teams.filter(({ row }) => row.injuries === null).length;
   if (!whole) return [plain("There is no rate of the whole to hold teams against.")];
@@ -28,14 +29,13 @@ export function teamsSentence(rates: TeamRates, unit: RateUnit, wholeName: strin
     formatRate(value, decimals),
   );
   const all = [
-    plain(
-      `${wholeName} had ${formatCount(rates.injuries)} ${rates.injuries === 1 ? "injury" : "injuries"}, `,
-    ),
-    strong(`${estimate} per ${unitWords[unit]}`),
+    plain(`${wholeName} had ${countedInWords(rates.injuries, filters)}, `),
+    strong(`${estimate} per ${unitWords[filters.per]}`),
     plain(" "),
     interval(`(${lower} to ${upper})`),
     plain(". "),
   ];
+  if (rates.injuries === 0) return [...all, plain("Without an injury no team stands out.")];
   if (rated < fewestTeams)
     return [
       ...all,

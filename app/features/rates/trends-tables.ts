@@ -114,12 +114,10 @@ export function soFarTable(rows: readonly SoFarRow[], unit: RateUnit): TableData
     ],
     rows: rows.map((row, index) => {
       const unstable = [own, row].some((each) => (each?.row.injuries ?? 0) < stableFrom);
-      const missing: Cell = index === 0 ? null : { reason: "too few teams or injuries" };
+      const missing: Cell = index === 0 ? null : { reason: "too few" };
       const cell = (value: SoFarRow["ratio"]): Cell => {
         if (!value) return missing;
-        return value.estimate === Infinity
-          ? { reason: "no injury to compare with" }
-          : figure(value, unstable);
+        return value.estimate === Infinity ? { reason: "no injury then" } : figure(value, unstable);
       };
       return {
         key: row.season.id,

@@ -31,6 +31,12 @@ describe("the last four weeks", () => {
     expect(recentSpan("2026-06-30", "2026-12-01")).toEqual({ from: "2026-06-03", to: "2026-06-30" });
   });
 
+  it("end with the last exposure of a season that is over", () => {
+    const cells = [{ day: "2026-05-10" }, { day: "2026-05-17" }, { day: "2026-09-01" }];
+    expect(recentSpan("2026-06-30", "2026-12-01", cells)).toEqual({ from: "2026-04-20", to: "2026-05-17" });
+    expect(recentSpan("2027-06-30", "2026-12-01", cells).to).toBe("2026-11-30");
+  });
+
   // 21 injuries in 10,000 exposures before and 1000 exposures now: 2.1 expected; P(X >= 7 | 2.1) 0.005862118 [R].
   const span = { from: "2026-11-02", to: "2026-11-29" };
   const before = Array.from({ length: 10 }, (_, index) => cell({ day: monday(index), aes: 1000 }));

@@ -58,7 +58,7 @@ describe("teams against the whole", () => {
   it("name those outside, and how many luck alone would bring", () => {
     const luck = rates.teams.reduce((sum, team) => sum + team.luck, 0);
     expect(luck).toBeGreaterThan(0);
-    const sentence = textOf(teamsSentence(rates, "aes", "The club"));
+    const sentence = textOf(teamsSentence(rates, defaultFilters, "The club"));
     expect(sentence).toMatch(
       /^The club had 58 injuries, 5\.0 per 1000 athlete-exposures \(3\.8 to 6\.5\)\. Of 10 teams 2 lie outside the 95 % limits for their exposure: Team 3 \(0\.0, below; unstable\) and Team 8 \(9\.3, above\)\./,
     );
@@ -89,7 +89,7 @@ describe("teams against the whole", () => {
     const sent = JSON.stringify([
       teamsTable(own, "aes", "All"),
       expectedTable(own),
-      teamsSentence(own, "aes", "Club"),
+      teamsSentence(own, defaultFilters, "Club"),
       teamsNote(own),
       own.limits,
     ]);
@@ -105,7 +105,7 @@ describe("teams against the whole", () => {
       injuries: ten.injuries.slice(0, 11),
     });
     const few = ratesOf(two);
-    expect(textOf(teamsSentence(few, "aes", "The club"))).toContain("With 2 teams that have a rate");
+    expect(textOf(teamsSentence(few, defaultFilters, "The club"))).toContain("With 2 teams that have a rate");
     expect(few.limits).toEqual([]);
     expect(few.teams.every(({ shrunken, ratio, outside }) => !shrunken && !ratio && !outside[0])).toBe(true);
     const silent = ratesOf({

@@ -7,17 +7,18 @@ import { type Cell, figure, isFigure, type TableColumn, type TableData } from ".
 
 /** The tables of compliance, as data for the page and for their files. */
 
-/** Columns that only the file has. */
-const fileOnly: readonly string[] = ["full", "part"];
+/** Columns that only the file has, for want of room on the page. */
+const fileOnly: Record<string, readonly string[]> = { skipped: ["full", "part", "held"], weeks: ["ofHeld"] };
 
-const unbroken = (words: string) => words.replaceAll(" ", "\u00a0");
+/** An interval stays on one line; before it a line may break. */
+const unbroken = (words: string) => words.replace(/\(.*\)/, (limits) => limits.replaceAll(" ", "\u00a0"));
 
 /**
  * A table as the page shows it: without what only its file has, and with each estimate and its interval in one cell,
  * where five measures stand side by side.
  */
 export function compact(table: TableData): TableData {
-  const columns = table.columns.filter(({ id }) => !fileOnly.includes(id));
+  const columns = table.columns.filter(({ id }) => !fileOnly[table.id]?.includes(id));
   const joined = columns.filter((column) => column.kind === "figure" && !column.bar);
   const words = (cell: Cell | undefined, column: TableColumn): Cell => {
     if (!isFigure(cell) || column.kind !== "figure" || cell.lower === null || cell.upper === null)
@@ -35,6 +36,7 @@ export function compact(table: TableData): TableData {
       ...row,
       cells: {
         ...row.cells,
+        ...(typeof row.cells.start === "string" ? { start: row.cells.start.replaceAll(" ", "\u00a0") } : {}),
         ...Object.fromEntries(joined.map((column) => [column.id, words(row.cells[column.id], column)])),
       },
     })),
@@ -91,7 +93,7 @@ export function skippedTable(teams: readonly ProgrammeTeam[], { teams: ranked }:
       count("part", "Done in part"),
       count("notRecorded", "Not recorded"),
       count("held", "Held"),
-      text("start", "Programme from"),
+      text("start", "From"),
     ],
     rows: rows.map((team) => {
       const { compliance, startsOn } = team;

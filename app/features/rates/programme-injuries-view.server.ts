@@ -40,9 +40,9 @@ const classNames: ShortNames = [
   ["not_warmed_up", "not warmed up"],
 ];
 const thirdNames: ShortNames = [
-  ["highest", "highest third"],
   ["lowest", "lowest third"],
   ["middle", "middle third"],
+  ["highest", "highest third"],
 ];
 
 type Given = {

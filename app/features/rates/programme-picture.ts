@@ -10,6 +10,9 @@ export type ContrastPicture = { groups: IntervalGroup[]; max: number };
 /** What a group is called in the picture, by the beginning of its row's key, in the order of the series. */
 export type ShortNames = readonly (readonly [group: string, label: string])[];
 
+/** Behind the longest interval there is room for its words. */
+const roomForWords = 1.3;
+
 const rateOf = ({ cells }: TableRow): Figure | null => (isFigure(cells.rate) ? cells.rate : null);
 
 /**
@@ -19,7 +22,7 @@ const rateOf = ({ cells }: TableRow): Figure | null => (isFigure(cells.rate) ? c
 function endOf(rows: readonly TableRow[]): number {
   const reach = (list: readonly TableRow[]) => Math.max(0, ...list.map((row) => rateOf(row)?.upper ?? 0));
   const several = reach(rows.filter(({ cells }) => Number(cells.injuries) >= 2));
-  return several > 0 ? several * 1.1 : reach(rows);
+  return (several > 0 ? several : reach(rows)) * roomForWords;
 }
 
 function pointOf(row: TableRow, series: SeriesNumber, label: string, max: number) {

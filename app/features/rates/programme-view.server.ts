@@ -43,9 +43,9 @@ export async function programmeViewOf(tx: Tx, view: RatesView, url: URL) {
   const counts = await countView(tx, view);
   const selection = select(counts, filters);
   const outcome = outcomeInWords({ ...plan, caseDefinition: filters.injuries });
-  const compliance = await complianceViewOf(tx, view, filters, await findStarts(tx));
+  const { teamWeeks, ...compliance } = await complianceViewOf(tx, view, filters, await findStarts(tx));
   const injuries = await injuriesViewOf(tx, { view, filters, counts, selection, outcome });
-  const all = [...Object.values(injuries.tables), ...Object.values(compliance.tables)];
+  const all = [...Object.values(injuries.tables), ...Object.values(compliance.tables), teamWeeks];
   return {
     plans,
     result: { filters, outcome, compliance, injuries },

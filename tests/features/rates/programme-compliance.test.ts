@@ -122,9 +122,9 @@ describe("weeks and tables", () => {
     const measures = compact(measuresTable(teams, complianceOf(teams.flatMap(({ sessions }) => sessions))));
     expect(measures.columns.map(({ kind }) => kind)).toEqual(Array(6).fill("text"));
     expect(measures.rows.map(({ cells }) => cells.ofRecorded)).toEqual([
-      "90\u00a0%\u00a0(60\u00a0to\u00a098)",
-      "50\u00a0%\u00a0(24\u00a0to\u00a076)",
-      "70\u00a0%\u00a0(48\u00a0to\u00a085)",
+      "90\u00a0% (60\u00a0to\u00a098)",
+      "50\u00a0% (24\u00a0to\u00a076)",
+      "70\u00a0% (48\u00a0to\u00a085)",
     ]);
   });
 });

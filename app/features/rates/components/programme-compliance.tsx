@@ -33,8 +33,8 @@ export function ProgrammeCompliance({
       </Lede>
       <FigureTable {...table} table={compact(tables.skipped)} />
       <p className="max-w-prose text-soft">
-        Skipped share: of the sessions with a warm-up record. Only days from a team's own start count;
-        sessions are the trainings and matches asked for above.
+        Skipped share: of the sessions with a warm-up record. From: the day the team began the programme. Only
+        days from a team's own start count; sessions are the trainings and matches asked for above.
       </p>
       {grid.length > 0 ? (
         <Suspense fallback={<div style={{ height: grid.length * 40 + 60 }} />}>

@@ -62,7 +62,7 @@ export function ProgrammeContrast(given: Props) {
       {picture && rates && !withheld ? (
         <Picture picture={picture} title={`${rates.caption}; the table holds the numbers`} />
       ) : null}
-      {tables.map((table) =>
+      {(contrast?.robust || withheld ? tables : [rates]).map((table) =>
         table ? (
           <FigureTable key={table.id} table={onPage(table)} slug={slug} view="programme" keeps={keeps} />
         ) : null,

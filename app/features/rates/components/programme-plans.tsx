@@ -1,6 +1,6 @@
-import { Link, useLocation } from "react-router";
+import { useLocation } from "react-router";
 import { formatDay } from "~/platform/days";
-import { DescriptionList, Disclosure, Note, Region } from "~/ui";
+import { DescriptionList, Disclosure, Note, Region, TextLink } from "~/ui";
 import { comparisonWords, outcomeInWords, type Plan } from "../programme-plan";
 import type { ProgrammeView } from "../programme-view.server";
 import { searchWith } from "../views";
@@ -37,7 +37,7 @@ function OtherPlan({ plan, shown }: { plan: Plan; shown: boolean }) {
     <li className="border-t border-line py-3">
       <PlanWords plan={plan} />
       {shown ? null : (
-        <Link to={searchWith(search, { plan: plan.id })}>Show the results under this plan</Link>
+        <TextLink to={searchWith(search, { plan: plan.id })}>Show the results under this plan</TextLink>
       )}
     </li>
   );
@@ -55,7 +55,7 @@ export function ProgrammePlans({ counts, later, earlier, plan, timing, mayPlan, 
         <Note kind="attention" title="These are results under another plan">
           <p>
             Recorded by {byline(plan)}. It is not the plan that counts for this season.{" "}
-            <Link to={searchWith(search) || "?"}>Back to the plan that counts</Link>
+            <TextLink to={searchWith(search) || "?"}>Back to the plan that counts</TextLink>
           </p>
         </Note>
       ) : null}

@@ -1,5 +1,5 @@
-import { Link, useLocation } from "react-router";
-import { Attention, Note, Region } from "~/ui";
+import { useLocation } from "react-router";
+import { Attention, Note, Region, TextLink } from "~/ui";
 import { outcomeInWords, type Plan } from "../programme-plan";
 import {
   leftOutLines,
@@ -24,7 +24,8 @@ function OtherDefinition({ plan, result: { filters } }: Props) {
   return (
     <p className="mb-4 max-w-prose">
       <Attention>Not the plan's case definition.</Attention> The plan counts {outcomeInWords(plan)}; this view
-      does not. <Link to={searchWith(search, { injuries: plan.caseDefinition })}>As the plan has it</Link>
+      does not.{" "}
+      <TextLink to={searchWith(search, { injuries: plan.caseDefinition })}>As the plan has it</TextLink>
     </p>
   );
 }

@@ -11,24 +11,25 @@ export type Shape = { teams: number; athletes: number; sessionsPerTeam: number; 
 /** Some 25,000 participations a club: 200 clubs make five million. */
 export const shape: Shape = { teams: 8, athletes: 18, sessionsPerTeam: 217, injuriesPerThousand: 6 };
 
-export async function addClubs(sql: postgres.Sql, count: number): Promise<string[]> {
+/** @param teams of each club; left out: those of the shape */
+export async function addClubs(sql: postgres.Sql, count: number, teams = shape.teams): Promise<string[]> {
   const ids = Array.from({ length: count }, () => randomUUID());
   // Ten at a time, so that the sorts of a statement stay in memory.
-  for (let from = 0; from < ids.length; from += 10) await addSome(sql, ids.slice(from, from + 10));
+  for (let from = 0; from < ids.length; from += 10) await addSome(sql, ids.slice(from, from + 10), teams);
   return ids;
 }
 
-async function addSome(sql: postgres.Sql, ids: readonly string[]) {
+async function addSome(sql: postgres.Sql, ids: readonly string[], teams: number) {
   await sql.begin(async (tx) => {
     await tx`create temp table clubs on commit drop as
       select id, row_number() over () as n, current_date - 3 * 365 as first_day from unnest(${ids as string[]}::uuid[]) as id`;
-    await addPeople(tx);
+    await addPeople(tx, teams);
     await addSessions(tx);
     await addInjuries(tx);
   });
 }
 
-async function addPeople(tx: postgres.TransactionSql) {
+async function addPeople(tx: postgres.TransactionSql, teams: number) {
   await tx`insert into organisations (organisation_id, slug, name, kind, time_zone, phone, age_bands)
     select id, 'club-' || id, 'Club', 'club', 'Europe/London', '1', ${tx.json(defaultAgeBands as never)} from clubs`;
   for (const [sport, fromAge, players, minutes] of defaultSportRules)
@@ -37,8 +38,8 @@ async function addPeople(tx: postgres.TransactionSql) {
     select id, gen_random_uuid(), 'Season ' || y, first_day + y * 365 + 1, first_day + y * 365 + 364
     from clubs, generate_series(0, 2) y`;
   await tx`create temp table squads on commit drop as
-    select id as club, first_day, gen_random_uuid() as team, t, 11 + t as under_age
-    from clubs, generate_series(1, ${shape.teams}::int) t`;
+    select id as club, first_day, gen_random_uuid() as team, t, 11 + t % 8 as under_age
+    from clubs, generate_series(1, ${teams}::int) t`;
   await tx`insert into teams (organisation_id, id, name, name_key, sport, sex, under_age)
     select club, team, 'Team ' || t, 'team ' || t, (array['soccer', 'handball', 'basketball', 'volleyball'])[1 + t % 4],
       (array['girls', 'boys'])[1 + t % 2], under_age from squads`;
@@ -90,7 +91,7 @@ async function addInjuries(tx: postgres.TransactionSql) {
 }
 
 /** Rolls up in one statement what only has to be there, so that the measured club is one among many in every table. */
-export async function rollUpOthers(sql: postgres.Sql, except: string) {
+export async function rollUpOthers(sql: postgres.Sql) {
   await sql`insert into exposure_rollup (organisation_id, day, team_id, kind, grade, aes, hours, groups)
     select organisation_id, day, team_id, kind, 'recorded', sum(aes), sum(hours),
       json_agg(json_build_array(sex, age, aes, hours))
@@ -100,8 +101,7 @@ export async function rollUpOthers(sql: postgres.Sql, except: string) {
       from sessions s
       join participations p on p.organisation_id = s.organisation_id and p.session_id = s.id
       join athletes a on a.organisation_id = p.organisation_id and a.id = p.athlete_id
-      where s.organisation_id <> ${except} and not exists (
-        select 1 from exposure_rollup e where e.organisation_id = s.organisation_id)
+      where not exists (select 1 from exposure_rollup e where e.organisation_id = s.organisation_id)
       group by 1, 2, 3, 4, 5, 6
     ) c group by 1, 2, 3, 4`;
 }

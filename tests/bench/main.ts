@@ -1,6 +1,6 @@
 /**
  * `npm run bench`: how the rates of one club fare among many, as ratios within this run against the bars of the
- * project. Builds 200 clubs with five million participations in a database of its own in the test cluster and removes
+ * project. Builds clubs with five million participations, as many as 200 of one size have, one of them ten times as large, in a database of its own in the test cluster and removes
  * it at the end. Takes some minutes. Ends with 1 only where roll-ups and records disagree: a ratio is read, not tested.
  *
  *   BENCH_CLUBS=20,200 BENCH_REPEATS=21 npm run bench
@@ -33,31 +33,40 @@ async function settle() {
   await bench.superuser`checkpoint`;
 }
 
+const placeOf = (id: string) => ({ id, slug: "club", timeZone: "Europe/London" });
+
+async function markAndRollUp(club: string) {
+  await bench.superuser`insert into rollup_marks (organisation_id, cause, team_id, from_day)
+    select distinct organisation_id, 'session', team_id, day from sessions where organisation_id = ${club}`;
+  await bench.superuser`insert into rollup_marks (organisation_id, cause, injury_id)
+    select organisation_id, 'injury', id from injuries where organisation_id = ${club}`;
+  await settle();
+  if (!(await rollUp(scopeOf(placeOf(club), ["job"])))) throw new Error("The club was not rolled up.");
+}
+
+const listSeasons = (club: string) => bench.superuser<Season[]>`
+  select id, name, starts_on::text as "startsOn", ends_on::text as "endsOn" from seasons
+  where organisation_id = ${club} order by starts_on`;
+
 for (const signal of ["SIGINT", "SIGTERM"] as const)
   process.once(signal, () => void bench.close().finally(() => process.exit(1)));
 
 try {
   const [club = "", ...others] = await step(`${few} clubs`, () => addClubs(bench.superuser, few));
-  const place = { id: club, slug: "club", timeZone: "Europe/London" };
+  const [large = ""] = await step("a club ten times as large", () => addClubs(bench.superuser, 1, 80));
   await step("rolling up", async () => {
-    await bench.superuser`insert into rollup_marks (organisation_id, cause, team_id, from_day)
-      select distinct organisation_id, 'session', team_id, day from sessions where organisation_id = ${club}`;
-    await bench.superuser`insert into rollup_marks (organisation_id, cause, injury_id)
-      select organisation_id, 'injury', id from injuries where organisation_id = ${club}`;
-    await settle();
-    if (!(await rollUp(scopeOf(place, ["job"])))) throw new Error("The club was not rolled up.");
-    await rollUpOthers(bench.superuser, club);
+    for (const each of [club, large]) await markAndRollUp(each);
+    await rollUpOthers(bench.superuser);
     await settle();
   });
 
-  const scope = scopeOf(place, ["lead"]);
-  const [app, free] = [
+  const scope = scopeOf(placeOf(club), ["lead"]);
+  const [app, free, largeApp] = [
     await connect(process.env.DATABASE_URL ?? "", scope),
     await connect(process.env.DATABASE_MAINTENANCE_URL ?? "", scope),
+    await connect(process.env.DATABASE_URL ?? "", scopeOf(placeOf(large), ["lead"])),
   ];
-  const seasons = await bench.superuser<Season[]>`
-    select id, name, starts_on::text as "startsOn", ends_on::text as "endsOn" from seasons
-    where organisation_id = ${club} order by starts_on`;
+  const [seasons, largeSeasons] = [await listSeasons(club), await listSeasons(large)];
   const all = { from: seasons[0]?.startsOn ?? "", to: scope.today, teamIds: null };
 
   const as = ({ tx, pid }: typeof app, run: (tx: Tx) => Promise<unknown>) => ({ run: () => run(tx), pid });
@@ -67,14 +76,16 @@ try {
         count: as(app, countParticipations),
         season: as(app, (tx) => dashboard(tx, seasons.slice(-1))),
         all: as(app, (tx) => dashboard(tx, seasons)),
+        largeCount: as(largeApp, countParticipations),
+        largeSeason: as(largeApp, (tx) => dashboard(tx, largeSeasons.slice(-1))),
       },
       repeats,
     );
   const amongFew = await step(`timing among ${few}`, timePages);
 
-  await step(`${many} clubs`, () => addClubs(bench.superuser, many - 1 - others.length));
+  await step(`${many} clubs`, () => addClubs(bench.superuser, many - 11 - others.length));
   await step("rolling up the others", async () => {
-    await rollUpOthers(bench.superuser, club);
+    await rollUpOthers(bench.superuser);
     await settle();
   });
   const amongMany = await step(`timing among ${many}`, timePages);
@@ -102,6 +113,10 @@ try {
   const lines: Line[] = [
     { ...line(`a season, among ${many}`, amongMany.season, count, amongMany.count), atMost: 5 },
     { ...line(`all seasons, among ${many}`, amongMany.all, count, amongMany.count), atMost: 5 },
+    {
+      ...line("a season, ten times as large", amongMany.largeSeason, count, amongMany.largeCount),
+      atMost: 5,
+    },
     { ...line(`a season, among ${many}`, amongMany.season, `among ${few}`, amongFew.season), atMost: 1.25 },
     { ...line(`all seasons, among ${many}`, amongMany.all, `among ${few}`, amongFew.all), atMost: 1.25 },
     { ...line("all time, from roll-ups", rest.rolled, "from records", rest.live), atLeast: 20 },
@@ -119,6 +134,7 @@ try {
   }
   await app.close();
   await free.close();
+  await largeApp.close();
 } finally {
   await closeDatabase();
   await bench.close();

@@ -92,16 +92,23 @@ export const exposureOf = (tx: Tx, { from, to }: Pick<Range, "from" | "to">, onl
   where s.organisation_id = ${tx.scope.organisationId}::uuid and s.day between ${from}::date and ${to}::date
     and ${tookPlace} and ${only}`;
 
-/** The same of a team's days from the roll-up, where nothing is marked. @param between the condition on the day */
+/**
+ * The same of a team's week from the roll-up, where nothing is marked. Seven days by name lead the index to one team's
+ * rows, where a stretch of days would lead it to every team's.
+ */
 export const exposureRolledUp = (
   tx: Tx,
   { from, to }: Pick<Range, "from" | "to">,
   team: SQL,
-  between: SQL,
+  monday: SQL,
 ) => sql`
   select coalesce(bool_or(e.aes > 0), false) as aes, coalesce(bool_or(e.hours > 0), false) as hours
   from exposure_rollup e
-  where e.organisation_id = ${tx.scope.organisationId}::uuid and e.team_id = ${team} and e.day ${between}
+  where e.organisation_id = ${tx.scope.organisationId}::uuid and e.team_id = ${team}
+    and e.day = any (array[${sql.join(
+      [0, 1, 2, 3, 4, 5, 6].map((n) => sql`${monday} + ${sql.raw(String(n))}`),
+      sql`, `,
+    )}])
     and e.day between ${from}::date and ${to}::date`;
 
 /**
@@ -171,7 +178,7 @@ export const exposureGroups = (tx: Tx, range: Range, only: SQL) => sql`
 
 type Rolled = Pick<ExposureCell, "teamId" | "day" | "kind" | "grade"> & { groups: RolledGroup[] };
 
-const rolledRow = sql`r.team_id as "teamId", r.day::text as day, r.kind, r.grade, r.groups`;
+const rolledRow = sql`r.team_id as "teamId", r.day, r.kind, r.grade, r.groups`;
 
 const rolledUp = (tx: Tx, { from, to, teamIds }: Range, only: SQL) => sql`
   select ${rolledRow} from exposure_rollup r

@@ -9,10 +9,10 @@ import { mondayOf, nothingMarked, readsRollups } from "./rollups-marks.queries.s
 /** The day an injury is counted on, of a revision `i` and its session `s`. */
 const countedDay = sql`case when i.onset is distinct from 'gradual' then coalesce(s.day, i.onset_day) else i.onset_day end`;
 
-type ExposureOfDays = (tx: Tx, range: Range, team: SQL, between: SQL) => SQL;
+type ExposureOfWeek = (tx: Tx, range: Range, team: SQL, monday: SQL) => SQL;
 
-const exposureFromRecords: ExposureOfDays = (tx, range, team, between) =>
-  exposureOf(tx, range, sql`s.team_id = ${team} and s.day ${between}`);
+const exposureFromRecords: ExposureOfWeek = (tx, range, team, monday) =>
+  exposureOf(tx, range, sql`s.team_id = ${team} and s.day between ${monday} and ${monday} + 6`);
 
 /**
  * CTEs up to `injuries_placed`: the injuries counted in a range with their team and whether their session and the
@@ -22,17 +22,15 @@ const exposureFromRecords: ExposureOfDays = (tx, range, team, between) =>
  * days of the range count. Everything is looked up injury by injury: they are few beside the sessions, and the planner
  * has no numbers for what one part of a statement hands to the next.
  * @param only a further condition on the day that an injury is counted on
- * @param exposureOfDays a query of one row: the exposure of a team's days; left out: counted from the records
+ * @param exposureOfWeek a query of one row: the exposure of a team's week; left out: counted from the records
  */
 export const placedInjuries = (
   tx: Tx,
   range: Range,
   only: (day: SQL) => SQL = () => sql`true`,
-  exposureOfDays: ExposureOfDays = exposureFromRecords,
+  exposureOfWeek: ExposureOfWeek = exposureFromRecords,
 ) => {
   const organisation = sql`${tx.scope.organisationId}::uuid`;
-  const exposureOfWeek = (team: SQL, week: SQL) =>
-    exposureOfDays(tx, range, team, sql`between ${week} and ${week} + 6`);
   return sql`
     found as materialized (
       select i.injury_id, i.athlete_id, i.onset, i.subsequence, i.outside_sport, i.withdrawn, i.onset_day,
@@ -49,7 +47,7 @@ export const placedInjuries = (
       from found f
       left join lateral (
         select entry.team_id from roster_entries entry
-        cross join lateral (${exposureOfWeek(sql`entry.team_id`, sql`f.week`)}) w
+        cross join lateral (${exposureOfWeek(tx, range, sql`entry.team_id`, sql`f.week`)}) w
         where f.session_team is null and entry.organisation_id = ${organisation} and entry.athlete_id = f.athlete_id
           and entry.from_day <= f.onset_day and (entry.to_day is null or entry.to_day >= f.onset_day)
         order by w.aes desc, w.hours desc, entry.from_day, entry.team_id limit 1
@@ -62,7 +60,7 @@ export const placedInjuries = (
       from homes f
       join athletes a on a.organisation_id = ${organisation} and a.id = f.athlete_id
       cross join lateral (${exposureOf(tx, range, sql`s.id = f.session_id`)}) m
-      cross join lateral (${exposureOfWeek(sql`f.team_id`, sql`f.week`)}) w
+      cross join lateral (${exposureOfWeek(tx, range, sql`f.team_id`, sql`f.week`)}) w
     )`;
 };
 

@@ -17,10 +17,10 @@ const ratio = (id: string, header: string): TableColumn => ({
   form: "ratio",
 });
 
-const counted = (unit: RateUnit): TableColumn[] => [
+const counted = (unit: RateUnit, bar = true): TableColumn[] => [
   count("injuries", "Injuries"),
   count("exposure", unit === "aes" ? "Exposures" : "Hours"),
-  { id: "rate", header: "Rate", kind: "figure", form: "rate", unit: `per ${unitWords[unit]}`, bar: true },
+  { id: "rate", header: "Rate", kind: "figure", form: "rate", unit: `per ${unitWords[unit]}`, bar },
 ];
 
 const countedCells = ({ injuries, denominator, rate, reason, unstable }: RateRow): Record<string, Cell> => ({
@@ -108,7 +108,8 @@ export function soFarTable(rows: readonly SoFarRow[], unit: RateUnit): TableData
       : "The season so far",
     columns: [
       text("season", "Season"),
-      ...counted(unit),
+      // Both ratios need the room of its picture; the seasons below have theirs.
+      ...counted(unit, false),
       ratio("ratio", "Rate ratio"),
       ratio("robust", "With teams as clusters"),
     ],

@@ -27,6 +27,8 @@ export default function handleRequest(
       </NonceContext>,
       {
         nonce,
+        // Nothing is sent behind the page to be put in place by script, however large a chart is.
+        progressiveChunkSize: Number.POSITIVE_INFINITY,
         onShellReady() {
           hasShell = true;
         },

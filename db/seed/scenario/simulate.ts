@@ -84,7 +84,7 @@ export function playFixtures(world: World): Played {
     const warmUp =
       fixture.day >= fate.programmeFrom
         ? holdWarmUp(random, fixture, turns, coach)
-        : { record: null, warmedUp: new Set<string>() };
+        : { record: null, warmedUp: new Set<string>(), tookPart: new Set<string>() };
     hurt(random, world, played, fixture, turns, warmUp, trainer);
     record(played, fixture, fate, turns, warmUp);
   }
@@ -182,7 +182,7 @@ function hurt(
         key: fixture.key,
         isMatch: kind === "match",
         surface: fixture.surface,
-        warmedUp: warmUp.record ? (warmedUp ? "yes" : "no") : "unknown",
+        warmedUp: warmUp.record ? (warmUp.tookPart.has(athlete.key) ? "yes" : "no") : "unknown",
       },
       before: [...world.injuriesBefore, ...played.injuries].filter(
         (each) => each.athlete === athlete.key && each.at.slice(0, 10) < day,

@@ -25,8 +25,10 @@ const KEEPS_FROM_WARM_UP: readonly Restriction[] = [
 
 export type WarmUpHeld = {
   record: WarmUp | null;
-  /** Who did the full warm-up, whether it was written down or not. */
+  /** Who did the full warm-up, whether it was written down or not: what protects in the truth of the demo. */
   warmedUp: ReadonlySet<string>;
+  /** Who did the warm-up in full or in part: what the injury's own record says, as the application proposes it. */
+  tookPart: ReadonlySet<string>;
 };
 
 /** What the team did before a session, and whether anybody wrote it down. */
@@ -56,7 +58,8 @@ export function holdWarmUp(
     (turn) => turn.isLate || turn.availability.restrictions.some((each) => KEEPS_FROM_WARM_UP.includes(each)),
   );
   const notWarmedUp = outcome === "skipped" ? [] : misses.map((turn) => turn.member.athlete.key);
-  const warmedUp = outcome === "full" ? taking.filter((turn) => !misses.includes(turn)) : [];
+  const tookPart = outcome === "skipped" ? [] : taking.filter((turn) => !misses.includes(turn));
+  const warmedUp = outcome === "full" ? tookPart : [];
   const record: WarmUp = {
     organisation: plan.organisation,
     session: fixture.key,
@@ -67,10 +70,8 @@ export function holdWarmUp(
     ledBy: outcome === "skipped" ? null : ledBy,
     notWarmedUp,
   };
-  return {
-    record: isRecorded ? record : null,
-    warmedUp: new Set(warmedUp.map((turn) => turn.member.athlete.key)),
-  };
+  const keysOf = (list: readonly Turn[]) => new Set(list.map((turn) => turn.member.athlete.key));
+  return { record: isRecorded ? record : null, warmedUp: keysOf(warmedUp), tookPart: keysOf(tookPart) };
 }
 
 function drawSkipReason(random: Random, isOutdoor: boolean): SkipReason {

@@ -7,7 +7,7 @@ import { sealAllAudits } from "./audit/audit.server";
 import { runImportJob } from "./imports/imports.server";
 import { composeFreshLinkDelivery, composeNoticeDelivery } from "./notices/composing.server";
 import { type Composer, deliver, sweepOutbox, type Template } from "./outbox/outbox.server";
-import { rollUpMarked } from "./rates/rollups.server";
+import { rollUpMarked } from "./rates/rollups/rollups.server";
 
 const composers: Record<Template, Composer> = {
   invitation: async (tx, scope, { invitationId }) =>

@@ -1,5 +1,5 @@
 import type { ExposureCell } from "~/features/rates/counting";
-import type { RolledInjuries } from "~/features/rates/rollups";
+import type { RolledInjuries } from "~/features/rates/rollups/rollups";
 
 type Answer = { cells: ExposureCell[]; injuries: RolledInjuries[] };
 

@@ -18,7 +18,7 @@ const repeats = Number(process.env.BENCH_REPEATS ?? 21);
 
 const bench = await openBench();
 const { connect, countParticipations, dashboard, live, rolled } = await import("./work");
-const { rollUp } = await import("~/features/rates/rollups.server");
+const { rollUp } = await import("~/features/rates/rollups/rollups.server");
 const { closeDatabase } = await import("~db/client.server");
 
 async function step<T>(name: string, run: () => Promise<T>): Promise<T> {

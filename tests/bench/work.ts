@@ -1,8 +1,11 @@
 import { sql } from "drizzle-orm";
 import { drizzle } from "drizzle-orm/postgres-js";
 import postgres from "postgres";
-import { sumExposureCells, sumExposureCellsLive } from "~/features/rates/exposure.queries.server";
-import { countInjuriesLive, countInjuriesRolled } from "~/features/rates/rollups-injuries.queries.server";
+import { sumExposureCells, sumExposureCellsLive } from "~/features/rates/rollups/exposure.queries.server";
+import {
+  countInjuriesLive,
+  countInjuriesRolled,
+} from "~/features/rates/rollups/rollups-injuries.queries.server";
 import { countSeasons } from "~/features/rates/view.server";
 import type { Scope, Tx } from "~db/client.server";
 import * as schema from "~db/schema";

@@ -1,17 +1,17 @@
 import { notFound } from "~/platform/errors";
 import type { Tx } from "~db/client.server";
-import { bodyAreasViewOf } from "./body-areas-view.server";
-import { comparisonsViewOf } from "./comparisons-view.server";
+import { bodyAreasViewOf } from "./body-areas/body-areas-view.server";
+import { comparisonsViewOf } from "./comparisons/comparisons-view.server";
 import { coverageOf } from "./coverage";
-import { coverageViewOf } from "./coverage-view.server";
-import { prevalenceViewOf } from "./prevalence-view.server";
-import { programmeViewOf } from "./programme-view.server";
+import { coverageViewOf } from "./coverage/coverage-view.server";
+import { prevalenceViewOf } from "./prevalence/prevalence-view.server";
+import { programmeViewOf } from "./programme/programme-view.server";
 import { tallySessions } from "./rates.queries.server";
-import { recentWeeksViewOf } from "./recent-weeks-view.server";
-import { severityViewOf } from "./severity-view.server";
+import { recentWeeksViewOf } from "./recent-weeks/recent-weeks-view.server";
+import { severityViewOf } from "./severity/severity-view.server";
 import { type TableData, writeTableCsv } from "./tables";
-import { teamRatesViewOf } from "./team-rates-view.server";
-import { trendsViewOf } from "./trends-view.server";
+import { teamRatesViewOf } from "./teams/team-rates-view.server";
+import { trendsViewOf } from "./trends/trends-view.server";
 import type { RatesView } from "./view.server";
 
 /** The tables of each view, for their files: the same functions as the pages', so that both say the same. */

@@ -1,8 +1,8 @@
 import { sql } from "drizzle-orm";
 import type { Tx } from "~db/client.server";
 import type { SessionTally } from "./coverage";
-import { countedGrade, inTeams, type Range } from "./exposure.queries.server";
 import type { Band, RatedTeam } from "./groups";
+import { countedGrade, inTeams, type Range } from "./rollups/exposure.queries.server";
 import type { ConfirmedWeek } from "./silence";
 
 /** Sessions, teams and rules that rates stand on. What counts is said in counting.ts. */

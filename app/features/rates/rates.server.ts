@@ -4,9 +4,9 @@ import type { MemberScope } from "~/features/accounts/scope.server";
 import { resolveViewing, type Viewing, viewedTeamIds } from "~/features/accounts/viewing.server";
 import { complianceByTeam } from "~/features/warm-ups/warm-ups.server";
 import { read, type Scope, type Tx } from "~db/client.server";
-import { listExposedAthletes } from "./exposure.queries.server";
-import { fixTables } from "./fixed-tables";
+import { fixTables } from "./fixed/fixed-tables";
 import { computeRates, type RateRow } from "./rates";
+import { listExposedAthletes } from "./rollups/exposure.queries.server";
 import { reportedWeeks } from "./silence";
 import { countSeasons, countView, type Period, periodOf, type RatesView } from "./view.server";
 

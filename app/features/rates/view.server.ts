@@ -2,11 +2,11 @@ import type { MemberScope } from "~/features/accounts/scope.server";
 import { resolveViewing, type Season, type Viewing, viewedTeamIds } from "~/features/accounts/viewing.server";
 import { read, type Scope, type Tx } from "~db/client.server";
 import type { Frame } from "./components/rates-frame";
-import { type Range, sumExposureCells } from "./exposure.queries.server";
 import type { RatesFilters } from "./filters";
-import { listInjuryRows } from "./injury-rows.queries.server";
 import { findCountingRules, listConfirmedWeeks, listRatedTeams, tallySessions } from "./rates.queries.server";
 import { parseRatesQuery, type RatesQuery, readBand } from "./rates.schema";
+import { type Range, sumExposureCells } from "./rollups/exposure.queries.server";
+import { listInjuryRows } from "./rollups/injury-rows.queries.server";
 import type { Counts } from "./selection";
 import { splitSilent } from "./silence";
 

@@ -1,5 +1,5 @@
-import { bodyAreasViewOf } from "~/features/rates/body-areas-view.server";
-import { BodyAreasView } from "~/features/rates/components/body-areas-view";
+import { BodyAreasView } from "~/features/rates/body-areas/body-areas-view";
+import { bodyAreasViewOf } from "~/features/rates/body-areas/body-areas-view.server";
 import { NoSeason } from "~/features/rates/components/no-season";
 import { RatesFrame } from "~/features/rates/components/rates-frame";
 import { loadRates } from "~/features/rates/view.server";

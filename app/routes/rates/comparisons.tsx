@@ -1,5 +1,5 @@
-import { comparisonsViewOf } from "~/features/rates/comparisons-view.server";
-import { ComparisonsView } from "~/features/rates/components/comparisons-view";
+import { ComparisonsView } from "~/features/rates/comparisons/comparisons-view";
+import { comparisonsViewOf } from "~/features/rates/comparisons/comparisons-view.server";
 import { NoSeason } from "~/features/rates/components/no-season";
 import { RatesFrame } from "~/features/rates/components/rates-frame";
 import { loadRates } from "~/features/rates/view.server";

@@ -1,7 +1,7 @@
-import { CoverageView } from "~/features/rates/components/coverage-view";
 import { NoSeason } from "~/features/rates/components/no-season";
 import { RatesFrame } from "~/features/rates/components/rates-frame";
-import { coverageViewOf } from "~/features/rates/coverage-view.server";
+import { CoverageView } from "~/features/rates/coverage/coverage-view";
+import { coverageViewOf } from "~/features/rates/coverage/coverage-view.server";
 import { loadRates } from "~/features/rates/view.server";
 import { memberLoader } from "~/middleware/handlers.server";
 import type { Route } from "./+types/coverage";

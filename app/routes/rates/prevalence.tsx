@@ -1,7 +1,7 @@
 import { NoSeason } from "~/features/rates/components/no-season";
-import { PrevalenceView } from "~/features/rates/components/prevalence-view";
 import { RatesFrame } from "~/features/rates/components/rates-frame";
-import { prevalenceViewOf } from "~/features/rates/prevalence-view.server";
+import { PrevalenceView } from "~/features/rates/prevalence/prevalence-view";
+import { prevalenceViewOf } from "~/features/rates/prevalence/prevalence-view.server";
 import { loadRates } from "~/features/rates/view.server";
 import { memberLoader } from "~/middleware/handlers.server";
 import type { Route } from "./+types/prevalence";

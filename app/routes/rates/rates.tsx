@@ -1,8 +1,8 @@
 import { ClinicalRates } from "~/features/rates/components/clinical-rates";
 import { ComplianceBeside } from "~/features/rates/components/compliance-beside";
-import { FixedRates } from "~/features/rates/components/fixed-rates";
 import { NoSeason } from "~/features/rates/components/no-season";
 import { RatesFrame } from "~/features/rates/components/rates-frame";
+import { FixedRates } from "~/features/rates/fixed/fixed-rates";
 import { fixedTablesOf, incidenceOf, seesRates, warmUpsBeside } from "~/features/rates/rates.server";
 import { loadRates } from "~/features/rates/view.server";
 import { searchWith } from "~/features/rates/views";

@@ -1,7 +1,7 @@
 import { NoSeason } from "~/features/rates/components/no-season";
 import { RatesFrame } from "~/features/rates/components/rates-frame";
-import { RecentWeeksView } from "~/features/rates/components/recent-weeks-view";
-import { recentWeeksViewOf } from "~/features/rates/recent-weeks-view.server";
+import { RecentWeeksView } from "~/features/rates/recent-weeks/recent-weeks-view";
+import { recentWeeksViewOf } from "~/features/rates/recent-weeks/recent-weeks-view.server";
 import { loadRates } from "~/features/rates/view.server";
 import { memberLoader } from "~/middleware/handlers.server";
 import type { Route } from "./+types/recent-weeks";

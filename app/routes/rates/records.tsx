@@ -1,7 +1,7 @@
 import { NoSeason } from "~/features/rates/components/no-season";
 import { RatesFrame } from "~/features/rates/components/rates-frame";
-import { RecordsBehind } from "~/features/rates/components/records-behind";
-import { recordsBehind } from "~/features/rates/records.server";
+import { recordsBehind } from "~/features/rates/records/records.server";
+import { RecordsBehind } from "~/features/rates/records/records-behind";
 import { loadRates } from "~/features/rates/view.server";
 import { memberLoader } from "~/middleware/handlers.server";
 import { write } from "~db/client.server";

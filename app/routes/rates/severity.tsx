@@ -1,7 +1,7 @@
 import { NoSeason } from "~/features/rates/components/no-season";
 import { RatesFrame } from "~/features/rates/components/rates-frame";
-import { SeverityView } from "~/features/rates/components/severity-view";
-import { severityViewOf } from "~/features/rates/severity-view.server";
+import { SeverityView } from "~/features/rates/severity/severity-view";
+import { severityViewOf } from "~/features/rates/severity/severity-view.server";
 import { loadRates } from "~/features/rates/view.server";
 import { memberLoader } from "~/middleware/handlers.server";
 import type { Route } from "./+types/severity";

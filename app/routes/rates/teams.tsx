@@ -1,7 +1,7 @@
 import { NoSeason } from "~/features/rates/components/no-season";
 import { RatesFrame } from "~/features/rates/components/rates-frame";
-import { TeamRatesView } from "~/features/rates/components/team-rates-view";
-import { teamRatesViewOf } from "~/features/rates/team-rates-view.server";
+import { TeamRatesView } from "~/features/rates/teams/team-rates-view";
+import { teamRatesViewOf } from "~/features/rates/teams/team-rates-view.server";
 import { loadRates } from "~/features/rates/view.server";
 import { memberLoader } from "~/middleware/handlers.server";
 import type { Route } from "./+types/teams";

@@ -1,7 +1,7 @@
 import { NoSeason } from "~/features/rates/components/no-season";
 import { RatesFrame } from "~/features/rates/components/rates-frame";
-import { TrendsView } from "~/features/rates/components/trends-view";
-import { trendsViewOf } from "~/features/rates/trends-view.server";
+import { TrendsView } from "~/features/rates/trends/trends-view";
+import { trendsViewOf } from "~/features/rates/trends/trends-view.server";
 import { loadRates } from "~/features/rates/view.server";
 import { memberLoader } from "~/middleware/handlers.server";
 import type { Route } from "./+types/trends";

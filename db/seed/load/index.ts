@@ -1,7 +1,7 @@
 import { count, sql } from "drizzle-orm";
 import postgres from "postgres";
 import { resolveMemberScope } from "~/features/accounts/scope.server";
-import { rollUpMarked } from "~/features/rates/rollups.server";
+import { rollUpMarked } from "~/features/rates/rollups/rollups.server";
 import { audit } from "~/platform/audit.server";
 import { type Tx, write } from "~db/client.server";
 import { athletes, seasons } from "~db/schema";

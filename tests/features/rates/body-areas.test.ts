@@ -1,7 +1,7 @@
 import { describe, expect, it } from "vitest";
-import { type AreaWithSides, bodyAreasOf } from "~/features/rates/body-areas";
-import { bodyAreasTables, pictureRows } from "~/features/rates/body-areas-tables";
-import { bodyAreasNote, bodyAreasSentence, sidesWords } from "~/features/rates/body-areas-words";
+import { type AreaWithSides, bodyAreasOf } from "~/features/rates/body-areas/body-areas";
+import { bodyAreasTables, pictureRows } from "~/features/rates/body-areas/body-areas-tables";
+import { bodyAreasNote, bodyAreasSentence, sidesWords } from "~/features/rates/body-areas/body-areas-words";
 import type { InjuryRow } from "~/features/rates/counting";
 import { defaultFilters, type RatesFilters } from "~/features/rates/filters";
 import { textOf } from "~/features/rates/sentence";

@@ -1,15 +1,15 @@
 import { describe, expect, it } from "vitest";
-import { choosePair, comparePair } from "~/features/rates/comparisons";
-import { parseComparison } from "~/features/rates/comparisons.schema";
+import { choosePair, comparePair } from "~/features/rates/comparisons/comparisons";
+import { parseComparison } from "~/features/rates/comparisons/comparisons.schema";
 import {
   compareBySport,
   sportRatiosTable,
   sportsSentence,
   sportsTable,
-} from "~/features/rates/comparisons-sports";
-import type { Dimension } from "~/features/rates/comparisons-strata";
-import { ratesTable, ratiosTable, strataTable } from "~/features/rates/comparisons-tables";
-import { pairNote, pairSentence } from "~/features/rates/comparisons-words";
+} from "~/features/rates/comparisons/comparisons-sports";
+import type { Dimension } from "~/features/rates/comparisons/comparisons-strata";
+import { ratesTable, ratiosTable, strataTable } from "~/features/rates/comparisons/comparisons-tables";
+import { pairNote, pairSentence } from "~/features/rates/comparisons/comparisons-words";
 import { defaultFilters, type RatesFilters } from "~/features/rates/filters";
 import { type Counts, computeRates, tabulate } from "~/features/rates/rates";
 import { select } from "~/features/rates/selection";

@@ -5,9 +5,13 @@ import {
   type PrevalenceSums,
   peopleGroupingOf,
   prevalenceOf,
-} from "~/features/rates/prevalence";
-import { prevalenceTables } from "~/features/rates/prevalence-tables";
-import { groupingNote, prevalenceNote, prevalenceSentence } from "~/features/rates/prevalence-words";
+} from "~/features/rates/prevalence/prevalence";
+import { prevalenceTables } from "~/features/rates/prevalence/prevalence-tables";
+import {
+  groupingNote,
+  prevalenceNote,
+  prevalenceSentence,
+} from "~/features/rates/prevalence/prevalence-words";
 import { textOf } from "~/features/rates/sentence";
 import { isFigure } from "~/features/rates/tables";
 import { expectInterval } from "../../statistics/agreement";

@@ -5,9 +5,9 @@ import {
   leastRecorded,
   type ProgrammeTeam,
   skippingOf,
-} from "~/features/rates/programme-compliance";
-import { compact, measuresTable, skippedTable } from "~/features/rates/programme-compliance-tables";
-import { skipSentence, unrecordedNote } from "~/features/rates/programme-sentence";
+} from "~/features/rates/programme/programme-compliance";
+import { compact, measuresTable, skippedTable } from "~/features/rates/programme/programme-compliance-tables";
+import { skipSentence, unrecordedNote } from "~/features/rates/programme/programme-sentence";
 import { textOf } from "~/features/rates/sentence";
 import { complianceOf } from "~/features/warm-ups/compliance";
 import type { TallySession, TeamCompliance } from "~/features/warm-ups/warm-ups.server";

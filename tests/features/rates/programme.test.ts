@@ -9,9 +9,14 @@ import {
   type Tally,
   tally,
   thirdOf,
-} from "~/features/rates/programme";
-import { contrastPicture } from "~/features/rates/programme-picture";
-import { outcomeInWords, type Plan, plansOfSeason, timingOf } from "~/features/rates/programme-plan";
+} from "~/features/rates/programme/programme";
+import { contrastPicture } from "~/features/rates/programme/programme-picture";
+import {
+  outcomeInWords,
+  type Plan,
+  plansOfSeason,
+  timingOf,
+} from "~/features/rates/programme/programme-plan";
 import {
   clusterNote,
   contrastSentence,
@@ -19,8 +24,8 @@ import {
   recordSentence,
   smallestSentence,
   warmUpWords,
-} from "~/features/rates/programme-sentence";
-import { onPage, rateTable, ratioTable } from "~/features/rates/programme-tables";
+} from "~/features/rates/programme/programme-sentence";
+import { onPage, rateTable, ratioTable } from "~/features/rates/programme/programme-tables";
 import { textOf } from "~/features/rates/sentence";
 import { mantelHaenszel, smallestDetectableRatio } from "~/statistics";
 

@@ -1,16 +1,20 @@
 import { describe, expect, it } from "vitest";
 import { defaultFilters } from "~/features/rates/filters";
 import type { Counts } from "~/features/rates/rates";
-import { recentSpan, surpriseOf, surprisesByTeam } from "~/features/rates/recent-weeks";
-import { weekCharts } from "~/features/rates/recent-weeks-charts";
-import { cusumThreshold, restartingCusum, weeksToFind } from "~/features/rates/recent-weeks-cusum";
-import { teamSurprisesTable, weeksTable } from "~/features/rates/recent-weeks-tables";
+import { recentSpan, surpriseOf, surprisesByTeam } from "~/features/rates/recent-weeks/recent-weeks";
+import { weekCharts } from "~/features/rates/recent-weeks/recent-weeks-charts";
+import {
+  cusumThreshold,
+  restartingCusum,
+  weeksToFind,
+} from "~/features/rates/recent-weeks/recent-weeks-cusum";
+import { teamSurprisesTable, weeksTable } from "~/features/rates/recent-weeks/recent-weeks-tables";
 import {
   lookingOften,
   recentNote,
   recentSentence,
   thresholdWords,
-} from "~/features/rates/recent-weeks-words";
+} from "~/features/rates/recent-weeks/recent-weeks-words";
 import { select } from "~/features/rates/selection";
 import { textOf } from "~/features/rates/sentence";
 import { addDays } from "~/platform/clock";

@@ -1,7 +1,7 @@
 import { describe, expect, it } from "vitest";
 import { defaultFilters } from "~/features/rates/filters";
 import { computeRates } from "~/features/rates/rates";
-import { exposureBehind, figurePartOf, groupLabel, injuriesBehind } from "~/features/rates/records";
+import { exposureBehind, figurePartOf, groupLabel, injuriesBehind } from "~/features/rates/records/records";
 import { select } from "~/features/rates/selection";
 import { cell, counts, injury } from "./view";
 

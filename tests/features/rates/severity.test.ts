@@ -1,10 +1,10 @@
 import { describe, expect, it } from "vitest";
 import { defaultFilters, type RatesFilters } from "~/features/rates/filters";
 import { textOf } from "~/features/rates/sentence";
-import { compareReturns, type Loss, returnCurve, severityOf } from "~/features/rates/severity";
-import { burdenPoints, equalBurdens, returnCurves } from "~/features/rates/severity-pictures";
-import { severityTables } from "~/features/rates/severity-tables";
-import { returnWords, severityNote, severitySentence } from "~/features/rates/severity-words";
+import { compareReturns, type Loss, returnCurve, severityOf } from "~/features/rates/severity/severity";
+import { burdenPoints, equalBurdens, returnCurves } from "~/features/rates/severity/severity-pictures";
+import { severityTables } from "~/features/rates/severity/severity-tables";
+import { returnWords, severityNote, severitySentence } from "~/features/rates/severity/severity-words";
 import { expectInterval, expectValue } from "../../statistics/agreement";
 import { cell, counts, injury, tally } from "./view";
 

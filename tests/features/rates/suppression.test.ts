@@ -1,6 +1,6 @@
 import fc from "fast-check";
 import { describe, expect, it } from "vitest";
-import { type CountCell, suppressSmallCells } from "~/features/rates/suppression";
+import { type CountCell, suppressSmallCells } from "~/features/rates/fixed/suppression";
 
 const cellsOf = (events: readonly number[], athletes: readonly number[] = []): CountCell[] =>
   events.map((count, index) => ({

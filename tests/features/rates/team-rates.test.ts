@@ -3,9 +3,9 @@ import { expectedIn, standardOf } from "~/features/rates/expected";
 import { defaultFilters } from "~/features/rates/filters";
 import { select } from "~/features/rates/selection";
 import { textOf } from "~/features/rates/sentence";
-import { chanceOutside, teamRates } from "~/features/rates/team-rates";
-import { expectedTable, teamsTable } from "~/features/rates/team-rates-tables";
-import { teamsNote, teamsSentence } from "~/features/rates/team-rates-words";
+import { chanceOutside, teamRates } from "~/features/rates/teams/team-rates";
+import { expectedTable, teamsTable } from "~/features/rates/teams/team-rates-tables";
+import { teamsNote, teamsSentence } from "~/features/rates/teams/team-rates-words";
 import { funnelLimits } from "~/statistics";
 import { cell, counts, injury, several } from "./view";
 

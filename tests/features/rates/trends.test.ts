@@ -3,10 +3,10 @@ import { defaultFilters, type RatesFilters } from "~/features/rates/filters";
 import type { Counts } from "~/features/rates/rates";
 import { select } from "~/features/rates/selection";
 import { textOf } from "~/features/rates/sentence";
-import { monthRows, trendOf, trendWithinKinds } from "~/features/rates/trends";
-import { seasonRows, seasonsSoFar } from "~/features/rates/trends-seasons";
-import { monthsTable, soFarTable } from "~/features/rates/trends-tables";
-import { soFarSentence, trendNote, trendSentence } from "~/features/rates/trends-words";
+import { monthRows, trendOf, trendWithinKinds } from "~/features/rates/trends/trends";
+import { seasonRows, seasonsSoFar } from "~/features/rates/trends/trends-seasons";
+import { monthsTable, soFarTable } from "~/features/rates/trends/trends-tables";
+import { soFarSentence, trendNote, trendSentence } from "~/features/rates/trends/trends-words";
 import { rateRatio } from "~/statistics";
 import { cell, counts, several } from "./view";
 

@@ -1,10 +1,10 @@
 import { beforeAll, describe, expect, it } from "vitest";
 import { defaultAgeBands } from "~/features/accounts/founding.server";
-import { comparisonsViewOf } from "~/features/rates/comparisons-view.server";
-import { recentWeeksViewOf } from "~/features/rates/recent-weeks-view.server";
+import { comparisonsViewOf } from "~/features/rates/comparisons/comparisons-view.server";
+import { recentWeeksViewOf } from "~/features/rates/recent-weeks/recent-weeks-view.server";
 import { isFigure, type TableData } from "~/features/rates/tables";
-import { teamRatesViewOf } from "~/features/rates/team-rates-view.server";
-import { trendsViewOf } from "~/features/rates/trends-view.server";
+import { teamRatesViewOf } from "~/features/rates/teams/team-rates-view.server";
+import { trendsViewOf } from "~/features/rates/trends/trends-view.server";
 import { loadRates } from "~/features/rates/view.server";
 import { addDays, daysBetween, weekStart } from "~/platform/clock";
 import { ageAt, plantComparedClub, type RawRow } from "./compared-club";

@@ -3,7 +3,6 @@ import { beforeAll, describe, expect, it } from "vitest";
 import { defaultAgeBands, defaultSportRules } from "~/features/accounts/founding.server";
 import { resolveViewing } from "~/features/accounts/viewing.server";
 import { timeLossOf } from "~/features/availability/availability";
-import { ageInYears } from "~/features/rates/exposure.queries.server";
 import {
   caseDefinitions,
   defaultFilters,
@@ -15,6 +14,7 @@ import {
 import { type Counts, computeRates, type Rates } from "~/features/rates/rates";
 import { ratesQuery } from "~/features/rates/rates.schema";
 import { incidenceOf } from "~/features/rates/rates.server";
+import { ageInYears } from "~/features/rates/rollups/exposure.queries.server";
 import { countSeasons, openView } from "~/features/rates/view.server";
 import { addDays } from "~/platform/clock";
 import { ageOn } from "~/statistics";

@@ -1,6 +1,6 @@
 import { randomUUID } from "node:crypto";
 import { defaultAgeBands } from "~/features/accounts/founding.server";
-import type { peopleGroupings } from "~/features/rates/prevalence";
+import type { peopleGroupings } from "~/features/rates/prevalence/prevalence";
 import { addDays, weekStart } from "~/platform/clock";
 import { type Plan, randomOf } from "./generated-club";
 import { stateOn, sum } from "./views-by-hand";

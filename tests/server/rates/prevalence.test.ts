@@ -1,7 +1,7 @@
 import { beforeAll, describe, expect, it } from "vitest";
 import { tableFileOf } from "~/features/rates/csv-views.server";
-import { peopleGroupings } from "~/features/rates/prevalence";
-import { countPrevalence, prevalenceViewOf } from "~/features/rates/prevalence-view.server";
+import { peopleGroupings } from "~/features/rates/prevalence/prevalence";
+import { countPrevalence, prevalenceViewOf } from "~/features/rates/prevalence/prevalence-view.server";
 import { addDays, weekStart } from "~/platform/clock";
 import type { Scope } from "~db/client.server";
 import {

@@ -1,7 +1,7 @@
 import { beforeAll, describe, expect, it } from "vitest";
 import { defaultAgeBands } from "~/features/accounts/founding.server";
-import { recordPlan } from "~/features/rates/programme-plans.server";
-import { programmeViewOf } from "~/features/rates/programme-view.server";
+import { recordPlan } from "~/features/rates/programme/programme-plans.server";
+import { programmeViewOf } from "~/features/rates/programme/programme-view.server";
 import { parseRatesQuery } from "~/features/rates/rates.schema";
 import { isFigure, type TableData } from "~/features/rates/tables";
 import { openView } from "~/features/rates/view.server";

@@ -1,7 +1,7 @@
 import { describe, expect, it } from "vitest";
-import type { PlanInput } from "~/features/rates/programme.schema";
-import { listPlans, recordPlan } from "~/features/rates/programme-plans.server";
-import { programmeViewOf } from "~/features/rates/programme-view.server";
+import type { PlanInput } from "~/features/rates/programme/programme.schema";
+import { listPlans, recordPlan } from "~/features/rates/programme/programme-plans.server";
+import { programmeViewOf } from "~/features/rates/programme/programme-view.server";
 import { parseRatesQuery } from "~/features/rates/rates.schema";
 import { openView } from "~/features/rates/view.server";
 import { addDays } from "~/platform/clock";

@@ -2,7 +2,7 @@ import { eq } from "drizzle-orm";
 import { beforeAll, describe, expect, it } from "vitest";
 import { listInjuries } from "~/features/injuries/list-injuries.server";
 import { incidenceOf } from "~/features/rates/rates.server";
-import { recordsBehind } from "~/features/rates/records.server";
+import { recordsBehind } from "~/features/rates/records/records.server";
 import { loadRates } from "~/features/rates/view.server";
 import { addDays } from "~/platform/clock";
 import { type Scope, write } from "~db/client.server";

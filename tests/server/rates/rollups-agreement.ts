@@ -1,9 +1,12 @@
 import { expect } from "vitest";
 import type { ExposureCell } from "~/features/rates/counting";
-import { sumExposureCells, sumExposureCellsLive } from "~/features/rates/exposure.queries.server";
-import { listInjuryRows, listInjuryRowsLive } from "~/features/rates/injury-rows.queries.server";
-import type { RolledInjuries } from "~/features/rates/rollups";
-import { countInjuriesLive, countInjuriesRolled } from "~/features/rates/rollups-injuries.queries.server";
+import { sumExposureCells, sumExposureCellsLive } from "~/features/rates/rollups/exposure.queries.server";
+import { listInjuryRows, listInjuryRowsLive } from "~/features/rates/rollups/injury-rows.queries.server";
+import type { RolledInjuries } from "~/features/rates/rollups/rollups";
+import {
+  countInjuriesLive,
+  countInjuriesRolled,
+} from "~/features/rates/rollups/rollups-injuries.queries.server";
 import { read, type Scope } from "~db/client.server";
 import { maintenance } from "../../harness";
 

@@ -1,8 +1,8 @@
 import { randomUUID } from "node:crypto";
 import { eq, sql } from "drizzle-orm";
 import { describe, expect, it } from "vitest";
-import { sumExposureCells } from "~/features/rates/exposure.queries.server";
-import { rollUp, rollUpMarked } from "~/features/rates/rollups.server";
+import { sumExposureCells } from "~/features/rates/rollups/exposure.queries.server";
+import { rollUp, rollUpMarked } from "~/features/rates/rollups/rollups.server";
 import { recordAttendance } from "~/features/sessions/attendance.server";
 import { addDays } from "~/platform/clock";
 import { read, type Scope, sqlState, type Tx, write } from "~db/client.server";

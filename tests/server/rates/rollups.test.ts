@@ -1,10 +1,10 @@
 import { beforeAll, describe, expect, it } from "vitest";
 import { countInjuries } from "~/features/rates/counting";
 import { caseDefinitions, sessionChoices, units } from "~/features/rates/filters";
-import { listInjuryRows } from "~/features/rates/injury-rows.queries.server";
-import { countRolled } from "~/features/rates/rollups";
-import { rollUp } from "~/features/rates/rollups.server";
-import { countInjuriesRolled } from "~/features/rates/rollups-injuries.queries.server";
+import { listInjuryRows } from "~/features/rates/rollups/injury-rows.queries.server";
+import { countRolled } from "~/features/rates/rollups/rollups";
+import { rollUp } from "~/features/rates/rollups/rollups.server";
+import { countInjuriesRolled } from "~/features/rates/rollups/rollups-injuries.queries.server";
 import { addDays } from "~/platform/clock";
 import { DomainError } from "~/platform/errors";
 import { read, type Scope } from "~db/client.server";

@@ -1,8 +1,8 @@
 import { beforeAll, describe, expect, it } from "vitest";
-import { bodyAreasViewOf } from "~/features/rates/body-areas-view.server";
+import { bodyAreasViewOf } from "~/features/rates/body-areas/body-areas-view.server";
 import { tableFileOf } from "~/features/rates/csv-views.server";
 import { defaultFilters, type RatesFilters } from "~/features/rates/filters";
-import { severityViewOf } from "~/features/rates/severity-view.server";
+import { severityViewOf } from "~/features/rates/severity/severity-view.server";
 import { countByHand } from "./brute-force";
 import {
   type Counted,

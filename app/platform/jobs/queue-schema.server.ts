@@ -14,6 +14,9 @@ export const queues = {
 
 export type QueueName = keyof typeof queues;
 
+/** pg-boss's own queue, through which its clock sends what is due. It would make it itself, but only as the owner. */
+const clockQueue = "__pgboss__send-it";
+
 /** Makes or updates the queue's schema as its owner and grants the application what it needs to run it. */
 export async function migrateQueue(ownerUrl: string) {
   const boss = new PgBoss({
@@ -29,6 +32,7 @@ export async function migrateQueue(ownerUrl: string) {
     if (await boss.getQueue(name)) await boss.updateQueue(name, { name, ...options });
     else await boss.createQueue(name, { name, ...options });
   }
+  if (!(await boss.getQueue(clockQueue))) await boss.createQueue(clockQueue);
   await boss.stop({ graceful: false, close: true, wait: true });
   const owner = postgres(ownerUrl, { max: 1, onnotice: () => {} });
   try {

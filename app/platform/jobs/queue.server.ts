@@ -70,13 +70,14 @@ export async function enqueue(
 /** Registers the worker of a queue. A thrown error lets the queue try again by its rules. */
 export async function work(name: QueueName, handle: (data: Record<string, string>) => Promise<void>) {
   const active = await queue();
-  await active.work<Record<string, string>>(
+  await active.work<Record<string, string> | null>(
     name,
     { pollingIntervalSeconds: 1, batchSize: 1 },
     async (jobs) => {
       for (const job of jobs) {
         try {
-          await handle(job.data);
+          // A job that its clock has sent carries nothing.
+          await handle(job.data ?? {});
         } catch (error) {
           const fault = describeFault(error);
           log.error({ queue: name, ...fault }, "job failed");

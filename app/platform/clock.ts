@@ -36,9 +36,13 @@ export function daysBetween(from: string, to: string): number {
   );
 }
 
-/** Monday of the week of a day (ISO 8601). */
+const dayMilliseconds = 86_400_000;
+
+/** Monday of the week of a day (ISO 8601). Asked of every cell of exposure, so by plain arithmetic in UTC. */
 export function weekStart(day: string): string {
-  return DateTime.fromISO(day, { zone: "utc" }).startOf("week").toISODate() ?? "";
+  const at = Date.parse(`${day}T00:00:00Z`);
+  const sinceMonday = (new Date(at).getUTCDay() + 6) % 7;
+  return new Date(at - sinceMonday * dayMilliseconds).toISOString().slice(0, 10);
 }
 
 /** The same date some months on; the last of the month where that date does not exist (31 January: 28 February). */

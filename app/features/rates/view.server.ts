@@ -1,8 +1,10 @@
+import { group } from "d3-array";
 import type { MemberScope } from "~/features/accounts/scope.server";
 import { resolveViewing, type Season, type Viewing, viewedTeamIds } from "~/features/accounts/viewing.server";
 import { read, type Scope, type Tx } from "~db/client.server";
 import type { Frame } from "./components/rates-frame";
 import type { RatesFilters } from "./filters";
+import { seasonOf } from "./periods";
 import { findCountingRules, listConfirmedWeeks, listRatedTeams, tallySessions } from "./rates.queries.server";
 import { parseRatesQuery, type RatesQuery, readBand } from "./rates.schema";
 import { type Range, sumExposureCells } from "./rollups/exposure.queries.server";
@@ -16,6 +18,7 @@ import { splitSilent } from "./silence";
 export type Period = { from: string; to: string; season: string };
 
 const upTo = (day: string, today: string) => (day < today ? day : today);
+const laterOf = (a: string, b: string) => (a > b ? a : b);
 
 export const periodOf = ({ season }: Pick<Viewing, "season">, today: string): Period | null =>
   season && { from: season.startsOn, to: upTo(season.endsOn, today), season: season.name };
@@ -24,14 +27,9 @@ export const periodOf = ({ season }: Pick<Viewing, "season">, today: string): Pe
 export const teamsOf = (viewing: Viewing, scope: Scope): Range["teamIds"] =>
   viewing.team === null && scope.teams === "all" ? null : viewedTeamIds(viewing);
 
-/** A season's own days that lie in the past or are today; null when it has not begun. */
-function daysOf({ startsOn, endsOn }: Season, today: string) {
-  return startsOn > today ? null : { from: startsOn, to: upTo(endsOn, today) };
-}
-
 /**
- * The counts of some seasons together. Silence is judged season by season: a team that reported last year may be
- * silent in this one.
+ * The counts of some seasons together, asked in one go from the first day to the last; days between two seasons count
+ * nothing. Silence is judged season by season: a team that reported last year may be silent in this one.
  * @param seasons in any order; those that have not begun count nothing
  */
 export async function countSeasons(
@@ -39,38 +37,34 @@ export async function countSeasons(
   seasons: readonly Season[],
   teamIds: Range["teamIds"],
 ): Promise<Counts & { smallNumber: number }> {
+  const { today } = tx.scope;
   const { bands, smallNumber } = await findCountingRules(tx);
-  const begun = seasons.filter(({ startsOn }) => startsOn <= tx.scope.today);
-  const days = begun.flatMap((season) => daysOf(season, tx.scope.today) ?? []);
-  const sum: Counts & { smallNumber: number } = {
-    bands,
-    smallNumber,
-    seasons: [...begun].sort((a, b) => (a.startsOn < b.startsOn ? -1 : 1)),
-    from: days.map(({ from }) => from).sort()[0] ?? tx.scope.today,
-    to:
-      days
-        .map(({ to }) => to)
-        .sort()
-        .at(-1) ?? tx.scope.today,
-    teams: await listRatedTeams(tx, teamIds),
-    cells: [],
-    silent: [],
-    injuries: [],
-    sessions: [],
-    confirmedWeeks: [],
+  const begun = seasons
+    .filter(({ startsOn }) => startsOn <= today)
+    .sort((a, b) => (a.startsOn < b.startsOn ? -1 : 1));
+  const from = begun[0]?.startsOn ?? today;
+  const to = begun.reduce((last, { endsOn }) => laterOf(last, upTo(endsOn, today)), from);
+  const teams = await listRatedTeams(tx, teamIds);
+  const empty = { cells: [], silent: [], injuries: [], sessions: [], confirmedWeeks: [] };
+  if (begun.length === 0) return { bands, smallNumber, seasons: begun, from, to, teams, ...empty };
+  const range = { from, to, teamIds };
+  const isInSeason = ({ day }: { day: string }) => seasonOf(day, begun) !== undefined;
+  const injuries = (await listInjuryRows(tx, range)).filter(isInSeason);
+  const cells = (await sumExposureCells(tx, range)).filter(isInSeason);
+  const confirmedWeeks = await listConfirmedWeeks(tx, range);
+  const sessions = (await tallySessions(tx, range)).filter(isInSeason);
+  const ofSeason = <T extends { day: string }>(rows: readonly T[]) =>
+    group(rows, ({ day }) => seasonOf(day, begun)?.id);
+  const [cellsOf, injuriesOf] = [ofSeason(cells), ofSeason(injuries)];
+  const split = begun.map(({ id }) =>
+    splitSilent(cellsOf.get(id) ?? [], injuriesOf.get(id) ?? [], confirmedWeeks),
+  );
+  return {
+    ...{ bands, smallNumber, seasons: begun, from, to, teams },
+    ...{ injuries, sessions, confirmedWeeks },
+    cells: split.flatMap((each) => each.cells),
+    silent: split.flatMap((each) => each.silent),
   };
-  for (const { from, to } of days) {
-    const range = { from, to, teamIds };
-    const injuries = await listInjuryRows(tx, range);
-    const confirmedWeeks = await listConfirmedWeeks(tx, range);
-    const split = splitSilent(await sumExposureCells(tx, range), injuries, confirmedWeeks);
-    sum.cells = [...sum.cells, ...split.cells];
-    sum.silent = [...sum.silent, ...split.silent];
-    sum.injuries = [...sum.injuries, ...injuries];
-    sum.sessions = [...sum.sessions, ...(await tallySessions(tx, range))];
-    sum.confirmedWeeks = [...sum.confirmedWeeks, ...confirmedWeeks];
-  }
-  return sum;
 }
 
 /** What an address asks for, as the frame of every page of rates needs it. */

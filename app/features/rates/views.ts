@@ -16,8 +16,8 @@ export const rateViews = [
 
 export type RateViewPath = (typeof rateViews)[number]["path"];
 
-/** What of an address another view of the same rates understands. */
-const sharedNames: readonly string[] = ["season", "team", ...filterNames];
+/** What of an address the views of the rates understand: scope and filters, and the two sides of a comparison. */
+const sharedNames: readonly string[] = ["season", "team", ...filterNames, "compare", "a", "b", "over"];
 
 /**
  * The search of an address with some parameters changed; undefined takes one away. What belongs to one table alone

@@ -92,9 +92,12 @@ export const exposureOf = (tx: Tx, { from, to }: Pick<Range, "from" | "to">, onl
   where s.organisation_id = ${tx.scope.organisationId}::uuid and s.day between ${from}::date and ${to}::date
     and ${tookPlace} and ${only}`;
 
+const dayWithin = (day: SQL, from: string, to: string) =>
+  sql`case when ${day} between ${from}::date and ${to}::date then ${day} end`;
+
 /**
  * The same of a team's week from the roll-up, where nothing is marked. Seven days by name lead the index to one team's
- * rows, where a stretch of days would lead it to every team's.
+ * rows, where a stretch of days would lead it to every team's; a day outside the range is null and meets nothing.
  */
 export const exposureRolledUp = (
   tx: Tx,
@@ -106,10 +109,9 @@ export const exposureRolledUp = (
   from exposure_rollup e
   where e.organisation_id = ${tx.scope.organisationId}::uuid and e.team_id = ${team}
     and e.day = any (array[${sql.join(
-      [0, 1, 2, 3, 4, 5, 6].map((n) => sql`${monday} + ${sql.raw(String(n))}`),
+      [0, 1, 2, 3, 4, 5, 6].map((n) => dayWithin(sql`${monday} + ${sql.raw(String(n))}`, from, to)),
       sql`, `,
-    )}])
-    and e.day between ${from}::date and ${to}::date`;
+    )}])`;
 
 /**
  * One row per athlete and session: recorded minutes, or the share of a headcount or of an estimate that falls on

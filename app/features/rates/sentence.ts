@@ -1,7 +1,7 @@
 import { stableFrom } from "./coverage";
 import { decimalsFor, formatCount, formatRate, formatRatio } from "./figures";
 import { countedInWords, peopleInWords } from "./filter-words";
-import type { RatesFilters, RateUnit } from "./filters";
+import { defaultFilters, type RatesFilters, type RateUnit } from "./filters";
 import type { Comparison, RateRow, Rates } from "./rates";
 import type { ReportedWeeks } from "./silence";
 
@@ -125,6 +125,22 @@ export function writeSentence(rates: Rates, filters: RatesFilters, scope: string
   }
   const thin = total.unstable ? [plain(" "), attention("This is thin evidence.")] : [];
   return [...clause(subject, total, filters, decimals), plain("."), ...thin];
+}
+
+/** The season so far, for a page that shows no more of the rates. */
+export function writeSoFar(row: RateRow, season: string): Part[] {
+  const counted = `${countedInWords(row.injuries ?? 0, defaultFilters)} with time loss in ${several(row.denominator ?? 0, "athlete-exposure", "athlete-exposures")}`;
+  if (!row.rate) return [plain(`Season ${season} so far: ${counted}; ${row.reason}.`)];
+  const decimals = decimalsFor([row.rate.estimate]);
+  const thin = row.unstable ? [plain(" "), attention("This is thin evidence.")] : [];
+  return [
+    plain(`Season ${season} so far: `),
+    strong(counted),
+    plain(", "),
+    ...ratePart(row, decimals),
+    plain("."),
+    ...thin,
+  ];
 }
 
 const definitionNote: Record<RatesFilters["injuries"], string> = {

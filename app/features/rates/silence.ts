@@ -9,10 +9,13 @@ import type { ExposureCell, InjuryRow } from "./counting";
  */
 export type ConfirmedWeek = { teamId: string /** Monday, ISO. */; week: string };
 
+/** What an injury says of its team's reporting. */
+type Entered = Pick<InjuryRow, "teamId" | "withdrawn">;
+
 /** Splits the exposure of one season into what was reported on and what silent teams had. */
 export function splitSilent(
   cells: readonly ExposureCell[],
-  injuries: readonly InjuryRow[],
+  injuries: readonly Entered[],
   confirmed: readonly ConfirmedWeek[],
 ): { cells: ExposureCell[]; silent: ExposureCell[] } {
   const reporting = new Set(injuries.filter(({ withdrawn }) => !withdrawn).map(({ teamId }) => teamId));

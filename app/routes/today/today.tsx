@@ -1,4 +1,6 @@
 import { may, roleNames } from "~/features/accounts/permissions";
+import { SentenceParts } from "~/features/rates/components/sentence-parts";
+import { seasonSoFar } from "~/features/rates/season-so-far.server";
 import { EmergencyCard } from "~/features/sessions/components/emergency-card";
 import { AvailabilityList } from "~/features/today/components/availability-list";
 import { CoachSession } from "~/features/today/components/coach-session";
@@ -25,7 +27,7 @@ export const loader = memberLoader(async ({ scope, url }) => {
     rates: may(roles, "rates.read"),
     imports: may(roles, "imports"),
   };
-  if (roles.length === 0) return { ...shared, day: null, coach: null, week: null };
+  if (roles.length === 0) return { ...shared, day: null, coach: null, week: null, soFar: null };
   const onlyCoach = roles.every((role) => role === "coach");
   const day = await readToday(scope, url);
   return {
@@ -33,6 +35,7 @@ export const loader = memberLoader(async ({ scope, url }) => {
     day: { ...day, tasks: [...day.tasks, ...(await readPeopleTasks(scope))] },
     coach: onlyCoach ? await readCoachToday(scope) : null,
     week: may(roles, "warm-ups.write") ? await readWarmUpWeek(scope) : null,
+    soFar: await seasonSoFar(scope),
   };
 });
 
@@ -75,7 +78,8 @@ function weekSentence(week: Data["week"]) {
 }
 
 export default function Today({ loaderData }: Route.ComponentProps) {
-  const { base, today, timeZone, waitingRoles, day, coach, clinical, acts, rates, imports } = loaderData;
+  const { base, today, timeZone, waitingRoles, day, coach, clinical, acts, rates, imports, soFar } =
+    loaderData;
   const sentence = weekSentence(loaderData.week);
   return (
     <Page>
@@ -172,7 +176,12 @@ export default function Today({ loaderData }: Route.ComponentProps) {
       ) : null}
       {sentence || rates ? (
         <Region heading={coach ? "Your week" : "The season"}>
-          {sentence ? <p className="max-w-prose">{sentence}</p> : null}
+          {soFar ? (
+            <p className="max-w-prose">
+              <SentenceParts parts={soFar} />
+            </p>
+          ) : null}
+          {sentence ? <p className="mt-2 max-w-prose">{sentence}</p> : null}
           <p className="mt-2 flex flex-wrap gap-x-6">
             <TextLink to={`${base}/warm-ups`}>Warm-ups by team</TextLink>
             {rates ? <TextLink to={`${base}/rates`}>Rates of this season</TextLink> : null}

@@ -12,22 +12,56 @@ import { severityViewOf } from "./severity/severity-view.server";
 import { type TableData, writeTableCsv } from "./tables";
 import { teamRatesViewOf } from "./teams/team-rates-view.server";
 import { trendsViewOf } from "./trends/trends-view.server";
-import type { RatesView } from "./view.server";
+import type { Period, RatesView } from "./view.server";
+
+/** The tables of a view, and whether they are of all seasons whichever the address names. */
+type Tables = { tables: readonly TableData[]; all?: boolean };
+type TablesOf = (tx: Tx, view: RatesView, url: URL) => Promise<Tables>;
 
 /** The tables of each view, for their files: the same functions as the pages', so that both say the same. */
-type TablesOf = (tx: Tx, view: RatesView, url: URL) => Promise<readonly TableData[]>;
-
 const views: Record<string, TablesOf> = {
-  severity: async (tx, view, url) => Object.values((await severityViewOf(tx, view, url)).tables),
-  prevalence: async (tx, view, url) => Object.values((await prevalenceViewOf(tx, view, url)).tables),
-  "body-areas": async (tx, view, url) => Object.values((await bodyAreasViewOf(tx, view, url)).tables),
-  coverage: async (tx, view) => (await coverageViewOf(tx, view)).tables,
-  comparisons: async (tx, view, url) => (await comparisonsViewOf(tx, view, url)).tables,
-  trends: async (tx, view) => (await trendsViewOf(tx, view)).tables,
-  teams: async (tx, view) => (await teamRatesViewOf(tx, view)).tables,
-  programme: async (tx, view, url) => (await programmeViewOf(tx, view, url)).tables,
-  "recent-weeks": async (tx, view) => (await recentWeeksViewOf(tx, view)).tables,
+  severity: async (tx, view, url) => ({
+    tables: Object.values((await severityViewOf(tx, view, url)).tables),
+    all: view.filters.by === "season",
+  }),
+  prevalence: async (tx, view, url) => ({
+    tables: Object.values((await prevalenceViewOf(tx, view, url)).tables),
+  }),
+  "body-areas": async (tx, view, url) => ({
+    tables: Object.values((await bodyAreasViewOf(tx, view, url)).tables),
+  }),
+  coverage: coverageViewOf,
+  comparisons: async (tx, view, url) => {
+    const { tables, over } = await comparisonsViewOf(tx, view, url);
+    return { tables, all: over === "all" };
+  },
+  trends: async (tx, view) => ({ tables: (await trendsViewOf(tx, view)).tables, all: true }),
+  teams: teamRatesViewOf,
+  programme: programmeViewOf,
+  "recent-weeks": async (tx, view) => ({ tables: (await recentWeeksViewOf(tx, view)).tables, all: true }),
 };
+
+export const viewNames = Object.keys(views);
+
+/** The tables of a view by its name in the address; null for one that there is not. */
+export async function tablesOf(tx: Tx, view: RatesView, url: URL, name: string): Promise<Tables | null> {
+  return (Object.hasOwn(views, name) && (await views[name]?.(tx, view, url))) || null;
+}
+
+/** The days of all seasons that have begun, for what is counted over them. */
+export function allSeasons({ viewing, period }: RatesView, today: string): Period {
+  const first = viewing.seasons.map(({ startsOn }) => startsOn).sort()[0];
+  const last = viewing.seasons
+    .filter(({ startsOn }) => startsOn <= today)
+    .map(({ endsOn }) => endsOn)
+    .sort()
+    .at(-1);
+  return {
+    season: "all seasons",
+    from: first && first < period.from ? first : period.from,
+    to: last && last < today ? last : today,
+  };
+}
 
 /**
  * One table of a view as a file: its name and its text.
@@ -39,10 +73,11 @@ export async function tableFileOf(
   url: URL,
   name: { view: string; table: string },
 ): Promise<{ name: string; text: string }> {
-  const tables = Object.hasOwn(views, name.view) ? await views[name.view]?.(tx, view, url) : undefined;
-  const table = tables?.find(({ id }) => id === name.table);
+  const found = await tablesOf(tx, view, url, name.view);
+  const table = found?.tables.find(({ id }) => id === name.table);
   if (!table) throw notFound("That table");
-  const { period, filters, viewing, organisation } = view;
+  const { filters, viewing, organisation } = view;
+  const period = found?.all ? allSeasons(view, tx.scope.today) : view.period;
   const text = writeTableCsv(table, {
     ...period,
     organisation,

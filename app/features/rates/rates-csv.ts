@@ -1,6 +1,7 @@
 import { type CsvValue, writeCsv } from "~/platform/csv";
 import type { RatesFilters } from "./filters";
 import type { RateRow, Rates } from "./rates";
+import { narrowingText } from "./tables";
 
 /** What every row says of itself, so that a figure cut out of the file still carries its definition. */
 export type CsvContext = {
@@ -20,6 +21,7 @@ const head = [
   "team",
   "case_definition",
   "sessions",
+  "narrowed_to",
   "grouped_by",
   "group",
   "injuries",
@@ -60,6 +62,7 @@ function cells(row: RateRow, filters: RatesFilters, context: CsvContext): CsvVal
     context.team,
     definitions[filters.injuries],
     filters.sessions,
+    narrowingText(filters),
     filters.by,
     row.label,
     row.injuries,

@@ -122,10 +122,10 @@ export function writeTableCsv({ columns, rows, counts }: TableData, context: Tab
   const { filters, coverage } = context;
   const before = [
     "organisation",
-    "season",
-    "from",
-    "to",
-    "team",
+    "view_season",
+    "view_from",
+    "view_to",
+    "view_team",
     "case_definition",
     "sessions",
     "narrowed_to",

@@ -1,3 +1,4 @@
+import { allSeasons } from "~/features/rates/csv-views.server";
 import { fixedFilters } from "~/features/rates/filters";
 import { fixedTablesOf, incidenceOf, seesRates } from "~/features/rates/rates.server";
 import { type CsvContext, writeRatesCsv } from "~/features/rates/rates-csv";
@@ -19,13 +20,14 @@ export const loader = memberLoader(async ({ scope, url }) => {
   }
   const { frame, data } = await loadRates(scope, url, async (tx, view) => ({
     ...(await incidenceOf(tx, view)),
+    span: view.filters.by === "season" ? allSeasons(view, scope.today) : view.period,
     team: view.viewing.team?.name ?? (scope.teams === "all" ? "all teams" : "own teams"),
   }));
   if (!frame) throw notFound("A season with rates");
-  const { rates, club, team } = data;
+  const { rates, club, team, span } = data;
   const rows = [...rates.rows, rates.total, ...(club ? [club] : [])];
-  const { season, from, to, organisation, filters } = frame;
-  const context = { season, from, to, organisation, team, coverage: rates.coverage };
+  const { organisation, filters } = frame;
+  const context = { ...span, organisation, team, coverage: rates.coverage };
   return answer([{ filters, rows }], context);
 }) satisfies (args: Route.LoaderArgs) => unknown;
 

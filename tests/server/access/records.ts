@@ -44,6 +44,8 @@ export async function recordsOf(club: Club, team = club.team, athlete = club.ath
     notice: told.notice.id,
     import: imported.id,
     kind: "roster",
+    view: "coverage",
+    table: "teams",
   };
 }
 

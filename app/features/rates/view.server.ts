@@ -9,6 +9,7 @@ import { findCountingRules, listConfirmedWeeks, listRatedTeams, tallySessions } 
 import { parseRatesQuery, type RatesQuery, readBand } from "./rates.schema";
 import { type Range, sumExposureCells } from "./rollups/exposure.queries.server";
 import { listInjuryRows } from "./rollups/injury-rows.queries.server";
+import { keepWeeksToSeasons } from "./season-weeks";
 import type { Counts } from "./selection";
 import { splitSilent } from "./silence";
 
@@ -49,8 +50,9 @@ export async function countSeasons(
   if (begun.length === 0) return { bands, smallNumber, seasons: begun, from, to, teams, ...empty };
   const range = { from, to, teamIds };
   const isInSeason = ({ day }: { day: string }) => seasonOf(day, begun) !== undefined;
-  const injuries = (await listInjuryRows(tx, range)).filter(isInSeason);
   const cells = (await sumExposureCells(tx, range)).filter(isInSeason);
+  const listed = (await listInjuryRows(tx, range)).filter(isInSeason);
+  const injuries = begun.length > 1 ? keepWeeksToSeasons(listed, cells, begun) : listed;
   const confirmedWeeks = await listConfirmedWeeks(tx, range);
   const sessions = (await tallySessions(tx, range)).filter(isInSeason);
   const ofSeason = <T extends { day: string }>(rows: readonly T[]) =>

@@ -7,7 +7,8 @@ import { funnelLimits, incidenceRate, rateRatio, rateTrend } from "~/statistics"
 import { loadDemo } from "~db/seed/load";
 import { listDemoPeople } from "~db/seed/load/demo-people";
 import { buildScenario } from "~db/seed/scenario";
-import { axe, expectNoFailures, openSite, signIn } from "../../harness/browser";
+import type { TestPerson } from "../../harness";
+import { axe, expectNoFailures, openSite, type Site, signIn } from "../../harness/browser";
 import { type Brute, countByHand, countedByHand } from "../../server/rates/brute-force";
 import { type RawSeason, readSeasons, readWarmUps } from "./raw-rows";
 
@@ -16,17 +17,20 @@ import { type RawSeason, readSeasons, readWarmUps } from "./raw-rows";
  * counted by hand.
  */
 const slug = "marram-bay";
+let site: Site;
+let lead: TestPerson;
 let page: Page;
 let seasons: RawSeason[];
 
 beforeAll(async () => {
   await loadDemo({ maintenanceUrl: process.env.DATABASE_MAINTENANCE_URL ?? "" });
   seasons = await readSeasons(slug, dayIn("Europe/London"));
-  const site = await openSite();
+  const found = listDemoPeople(buildScenario({})).find(({ role }) => role === "lead");
+  if (!found) throw new Error("The demo has no lead.");
+  lead = { ...found, id: "" };
+  site = await openSite();
   page = await site.newPage();
-  const lead = listDemoPeople(buildScenario({})).find(({ role }) => role === "lead");
-  if (!lead) throw new Error("The demo has no lead.");
-  await signIn(page, { ...lead, id: "" });
+  await signIn(page, lead);
 }, 600_000);
 afterEach(expectNoFailures);
 
@@ -66,6 +70,21 @@ function withheld({ world, from, to }: RawSeason) {
     return own.filter(({ exposureGrade }) => exposureGrade === "recorded").length / own.length < 0.5;
   };
 }
+
+it("shows every picture and its table to a browser without script", async () => {
+  const plain = await site.newPage({ script: false });
+  await signIn(plain, lead);
+  for (const view of ["", "/severity", "/prevalence", "/body-areas", "/teams", "/trends", "/coverage"]) {
+    await plain.goto(`/${slug}/rates${view}`);
+    expect(
+      await plain.locator("main figure svg, main [role=img] svg, main svg[role=img]").count(),
+      view,
+    ).toBeGreaterThan(0);
+    expect(await plain.locator("main template").count(), view).toBe(0);
+    expect(await plain.getByRole("link", { name: /CSV/ }).count(), view).toBeGreaterThan(0);
+  }
+  await plain.context().close();
+});
 
 describe("the medical lead asks", () => {
   it("which team stands out", async () => {

@@ -42,7 +42,7 @@ describe("several seasons asked for in one go", () => {
     const text = (rows: readonly object[]) => rows.map((row) => JSON.stringify(row)).sort();
     expect(single).toHaveLength(3);
     for (const name of ["cells", "silent", "sessions"] as const)
-      expect(text(all[name]), name).toEqual(text(single.flatMap((each) => each[name])));
+      expect(text(all[name]), name).toEqual(text(single.flatMap((each): object[] => [...each[name]])));
     // Which of two teams an injury without a session belongs to may hang on a week that two seasons share.
     const shared = new Set(all.seasons.flatMap(({ startsOn, endsOn }) => [startsOn, endsOn].map(weekStart)));
     const placed = (rows: typeof all.injuries) =>

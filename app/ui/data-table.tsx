@@ -102,7 +102,10 @@ function SortLink<Row>(props: { column: Column<Row>; sort: ReturnType<typeof rea
   );
 }
 
-const pad = (column: { axis?: boolean }) => (column.axis ? "axis-cell" : "px-3 first:pl-0 last:pr-0");
+const pad = (column: { axis?: boolean }) =>
+  column.axis
+    ? "axis-cell"
+    : "px-3 first:pl-0 last:pr-0 lg:max-xl:px-2 lg:max-xl:first:pl-0 lg:max-xl:last:pr-0";
 
 /**
  * A table with its caption, sortable by links and, on a narrow screen, scrolled sideways by finger or keys while
@@ -136,7 +139,7 @@ export function DataTable<Row extends object>({ sortParam = "sort", ...props }: 
         data-scroll
         className="overflow-x-auto lg:overflow-x-visible"
       >
-        <table className="w-full border-collapse">
+        <table className="dense-table w-full border-collapse">
           <caption
             id={captionId}
             className={props.captionHidden ? "sr-only" : "pb-1 text-left font-semibold text-pretty"}
@@ -151,7 +154,7 @@ export function DataTable<Row extends object>({ sortParam = "sort", ...props }: 
                   scope="col"
                   aria-sort={sort?.id === column.id ? (sort.desc ? "descending" : "ascending") : undefined}
                   className={joinClasses(
-                    "py-1 align-bottom font-medium text-soft",
+                    "py-1 align-bottom font-medium text-soft [overflow-wrap:normal]",
                     pad(column),
                     column.numeric ? "text-right" : "text-left",
                     column.rowHeader && "sticky left-0 bg-chalk lg:static",

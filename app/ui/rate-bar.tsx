@@ -118,13 +118,31 @@ export function NoRate({ reason }: { reason: ReactNode }) {
   );
 }
 
+/** The narrowest that a column of bars becomes, in px; its axis has to be readable there too. */
+const narrowestAxis = 144;
+
+/** From where to where a label lies on the narrowest axis: the first begins, the last ends at its line. */
+function labelExtent(tick: number, max: number) {
+  const width = [...formatTick(tick)].reduce((sum, sign) => sum + (/[.,]/.test(sign) ? 4 : 8), 0);
+  const line = (tick / max) * narrowestAxis;
+  const from = tick === 0 ? 0 : tick === max ? line - width : line - width / 2;
+  return { from, to: from + width };
+}
+
+/** The ticks that are written: every one, or every second or third, as many as have room, always evenly apart. */
+export function labelledTicks({ ticks, max }: NiceScale): number[] {
+  for (let step = 1; step < ticks.length; step++) {
+    const shown = ticks.filter((_, index) => index % step === 0);
+    const extents = shown.map((tick) => labelExtent(tick, max));
+    if (extents.every(({ from }, index) => index === 0 || from - (extents[index - 1]?.to ?? 0) >= 5))
+      return shown;
+  }
+  return ticks.slice(0, 1);
+}
+
 /** The axis at the head of a column of `RateBar`s. */
 export function RateAxis({ scale, label }: { scale: NiceScale; label: string }) {
-  const last = scale.ticks.length - 1;
-  const step = scale.ticks.length > 5 ? 2 : 1;
-  const shown = scale.ticks.filter(
-    (_, index) => index === 0 || index === last || (index % step === 0 && index + step <= last),
-  );
+  const shown = labelledTicks(scale);
   return (
     <>
       <span className="sr-only">{label}</span>
@@ -136,7 +154,7 @@ export function RateAxis({ scale, label }: { scale: NiceScale; label: string }) 
             y="15"
             fontSize="14"
             fill="var(--color-soft)"
-            textAnchor={index === 0 ? "start" : index === shown.length - 1 ? "end" : "middle"}
+            textAnchor={index === 0 ? "start" : tick === scale.max ? "end" : "middle"}
           >
             {formatTick(tick)}
           </text>

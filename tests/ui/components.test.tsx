@@ -13,6 +13,7 @@ import {
   SpotMark,
   StrokeTally,
 } from "~/ui";
+import { labelledTicks } from "~/ui/rate-bar";
 
 const render = (node: ReactNode, at = "/") =>
   renderToStaticMarkup(<MemoryRouter initialEntries={[at]}>{node}</MemoryRouter>);
@@ -100,6 +101,15 @@ describe("RateBar", () => {
         )?.[0],
     );
     expect(new Set(marks).size).toBe(4);
+  });
+
+  test.each([
+    [niceScale(9.3), [0, 2, 4, 6, 8, 10]],
+    [niceScale(80, 4), [0, 20, 40, 60, 80]],
+    [niceScale(1000, 4), [0, 400, 800]],
+    [niceScale(400, 4), [0, 200, 400]],
+  ])("the figures on an axis are evenly apart and never touch", (scale, written) => {
+    expect(labelledTicks(scale)).toEqual(written);
   });
 
   test("the axis writes its first and last figure", () => {

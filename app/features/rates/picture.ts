@@ -51,6 +51,12 @@ export function pictureGroups(rows: readonly RateRow[], by: RatesFilters["by"]):
   }));
 }
 
+/** The middle of the upper limits: what an axis is made for where no figure is stable; 0 without any. */
+export function medianUpper(uppers: readonly number[]): number {
+  const finite = uppers.filter((upper) => upper > 0 && Number.isFinite(upper)).sort((a, b) => a - b);
+  return finite[Math.floor(finite.length / 2)] ?? 0;
+}
+
 /**
  * The end of the axis. One injury in a handful of sessions has an interval many times longer than the others', so the
  * axis is made for groups of two injuries or more, and never beyond four times the stable ones.
@@ -59,7 +65,7 @@ export function axisEnd(rows: readonly RateRow[]): number {
   const reach = (list: readonly RateRow[]) => Math.max(0, ...list.map(({ rate }) => rate?.upper ?? 0));
   const stable = reach(rows.filter(({ unstable }) => !unstable));
   const several = reach(rows.filter(({ injuries: count }) => (count ?? 0) >= 2));
-  if (several === 0) return reach(rows);
+  if (several === 0) return Math.min(reach(rows), 2 * medianUpper(rows.map(({ rate }) => rate?.upper ?? 0)));
   return stable === 0 ? several : Math.min(several, stable * 4);
 }
 

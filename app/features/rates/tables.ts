@@ -28,8 +28,19 @@ export type TableColumn =
    * is not complete never reads 100 %.
    */
   | { id: string; header: string; kind: "percent"; down?: boolean }
-  /** An estimate with its interval; `bar` draws it on the column's own axis. `unit`: "per 1000 hours". */
-  | { id: string; header: string; kind: "figure"; form: FigureForm; unit: string; bar?: boolean };
+  /**
+   * An estimate with its interval; `bar` draws it on the column's own axis. `unit`: "per 1000 hours". `decimals`: on
+   * the page, where its form would write fewer than the figure can bear.
+   */
+  | {
+      id: string;
+      header: string;
+      kind: "figure";
+      form: FigureForm;
+      unit: string;
+      bar?: boolean;
+      decimals?: number;
+    };
 
 export type TableRow = {
   key: string;

@@ -1,9 +1,10 @@
 import { useMemo } from "react";
-import { formatTick, niceScale, RateAxis, RateBar, Region } from "~/ui";
+import { formatTick, type NiceScale, RateAxis, RateBar, Region } from "~/ui";
 import { type Column, DataTable } from "~/ui/data-table";
 import type { TeamWarmUps } from "../rates.server";
 
-const scale = niceScale(100, 4);
+/** Halves and quarters are lines. */
+const scale: NiceScale = { max: 100, ticks: [0, 25, 50, 75, 100] };
 
 const percentOf = (value: number) => Math.round(value * 100);
 
@@ -48,7 +49,7 @@ const columns: Column<TeamWarmUps>[] = [
       <RateAxis scale={scale} label={`Per cent of held sessions, from 0 to ${formatTick(scale.max)}`} />
     ),
     cell: ({ ofHeld }) => (
-      <div className="min-w-[9rem]">
+      <div>
         {ofHeld.estimate ? (
           <RateBar
             rate={{

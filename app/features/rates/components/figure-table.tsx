@@ -3,6 +3,7 @@ import { Link, useLocation } from "react-router";
 import { formatTick, type NiceScale, niceScale, RateAxis, RateBar } from "~/ui";
 import { type Column, DataTable } from "~/ui/data-table";
 import { decimalsFor, formatCount, formatRate, formatRatio } from "../figures";
+import { medianUpper } from "../picture";
 import {
   type Cell,
   type Figure,
@@ -18,9 +19,12 @@ type FigureColumn = Extract<TableColumn, { kind: "figure" }>;
 
 const dash = <span className="text-soft">–</span>;
 const totalSeries = 5;
+/** Shares on an axis whose halves and quarters are lines. */
+const shareScale: NiceScale = { max: 100, ticks: [0, 25, 50, 75, 100] };
 
 /** How the figures of a column are written: their decimals are those of its largest estimate. */
-function writerOf({ form }: FigureColumn, figures: readonly Figure[]) {
+function writerOf({ form, decimals: own }: FigureColumn, figures: readonly Figure[]) {
+  if (own !== undefined) return (value: number) => value.toFixed(own);
   if (form === "ratio") return formatRatio;
   if (form === "share") return (value: number) => `${Math.round(value * 100)} %`;
   const decimals = decimalsFor(figures.map(({ estimate }) => Math.abs(estimate)));
@@ -39,7 +43,8 @@ function scaleOf(figures: readonly Figure[]): NiceScale {
     Math.max(0, ...list.flatMap(({ upper }) => (upper !== null && Number.isFinite(upper) ? upper : [])));
   const stable = reach(figures.filter(({ unstable }) => !unstable));
   const all = reach(figures);
-  return niceScale(stable === 0 ? all : Math.min(all, stable * 2), 4);
+  const fit = stable > 0 ? stable : medianUpper(figures.map(({ upper }) => upper ?? 0));
+  return niceScale(Math.min(all, fit * 2), 4);
 }
 
 function intervalText({ lower, upper }: Figure, write: (value: number) => string) {
@@ -47,11 +52,14 @@ function intervalText({ lower, upper }: Figure, write: (value: number) => string
   return upper === Infinity ? `${write(lower)}, no upper limit` : `${write(lower)} to ${write(upper)}`;
 }
 
+/** A sign of per cent stays with its number. */
+const unbroken = (words: string) => words.replaceAll(" %", "\u00a0%");
+
 function plainCell(column: TableColumn, cell: Cell | undefined) {
   const reason = reasonOf(cell);
-  if (reason) return <span className="text-soft">{reason}</span>;
+  if (reason) return <span className="text-soft">{unbroken(reason)}</span>;
   if (cell === null || cell === undefined || typeof cell === "object") return dash;
-  if (typeof cell === "string") return cell;
+  if (typeof cell === "string") return unbroken(cell);
   if (column.kind === "number") return cell.toFixed(column.decimals);
   if (column.kind === "percent") return `${(column.down ? Math.floor : Math.round)(cell * 100)} %`;
   return formatCount(cell);
@@ -91,23 +99,22 @@ function figureColumns(column: FigureColumn, rows: readonly TableRow[]): Column<
     { id: `${column.id}-interval`, header: "95 % interval", cell: interval },
   ];
   if (!column.bar) return columns;
-  const scale = column.form === "share" ? niceScale(100, 4) : scaleOf(figures);
+  const scale = column.form === "share" ? shareScale : scaleOf(figures);
   return [
     ...columns,
     {
       id: `${column.id}-bar`,
       header: column.unit,
       axis: true,
-      headerPicture: (
-        <RateAxis
-          scale={scale}
-          label={`${column.header} ${column.unit}, from 0 to ${formatTick(scale.max)}`}
-        />
-      ),
+      headerPicture: <RateAxis scale={scale} label={axisWords(column, scale)} />,
       cell: (row) => <BarCell row={row} cell={at(row)} scale={scale} column={column} />,
     },
   ];
 }
+
+/** What the axis measures, its unit once: "Rate, per 1000 hours, from 0 to 80". */
+const axisWords = ({ header, unit }: FigureColumn, scale: NiceScale) =>
+  `${header.replace(/, %$/, "")}, ${unit}, from 0 to ${formatTick(scale.max)}`;
 
 function BarCell({
   row,
@@ -120,21 +127,18 @@ function BarCell({
   scale: NiceScale;
   column: FigureColumn;
 }) {
-  if (!isFigure(cell) || cell.lower === null || cell.upper === null)
-    return <div className="min-w-[9rem] sm:min-w-[11rem]" />;
+  if (!isFigure(cell) || cell.lower === null || cell.upper === null) return null;
   const times = form === "share" ? 100 : 1;
   const upper = Number.isFinite(cell.upper) ? cell.upper * times : scale.max * 2;
   return (
-    <div className="min-w-[9rem] sm:min-w-[11rem]">
-      <RateBar
-        rate={{ estimate: cell.estimate * times, lower: cell.lower * times, upper }}
-        scale={scale}
-        series={row.total ? totalSeries : (row.series ?? 1)}
-        unstable={cell.unstable ?? false}
-        decimals={form === "share" ? 0 : decimalsFor([cell.estimate])}
-        unit={unit}
-      />
-    </div>
+    <RateBar
+      rate={{ estimate: cell.estimate * times, lower: cell.lower * times, upper }}
+      scale={scale}
+      series={row.total ? totalSeries : (row.series ?? 1)}
+      unstable={cell.unstable ?? false}
+      decimals={form === "share" ? 0 : decimalsFor([cell.estimate])}
+      unit={unit}
+    />
   );
 }
 

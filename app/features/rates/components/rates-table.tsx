@@ -116,7 +116,7 @@ function columnsOf(lines: readonly Line[], unit: RateUnit, recordsOf: Props["rec
         <RateAxis scale={scale} label={`Rates ${unitWords}, from 0 to ${formatTick(scale.max)}`} />
       ),
       cell: (line) => (
-        <div className="min-w-[11rem]">
+        <div>
           {line.rate ? (
             <RateBar
               rate={line.rate}

@@ -72,7 +72,8 @@ export function trendTable(trend: Trend | NoTrend, kinds: KindTrend | null): Tab
     caption: "The trend over the finished months, as a rate ratio from one to the next",
     columns: [
       text("trend", "Trend"),
-      ratio("ratio", "Rate ratio"),
+      // A month's ratio lies so near to 1 that two figures would not tell it from no change.
+      { id: "ratio", header: "Rate ratio", kind: "figure", form: "ratio", unit: "times", decimals: 3 },
       text("method", "How its limits are made"),
     ],
     rows: rows.map(({ key, label, value }) => ({

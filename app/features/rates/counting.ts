@@ -194,7 +194,7 @@ export function reasonLeftOut(injury: InjuryRow, rules: CountingRules): LeftOutR
 }
 
 /** Whether an injury belongs to the sessions looked at: one of a training does when only matches are not asked for. */
-function isInView({ sessionKind }: InjuryRow, { sessions }: CountingRules) {
+export function isInView({ sessionKind }: InjuryRow, { sessions }: CountingRules) {
   const kinds: readonly string[] = kindsOf[sessions];
   return !isCountedKind(sessionKind) || kinds.includes(sessionKind);
 }

@@ -2,11 +2,13 @@ import { notFound } from "~/platform/errors";
 import type { Tx } from "~db/client.server";
 import { bodyAreasViewOf } from "./body-areas/body-areas-view.server";
 import { comparisonsViewOf } from "./comparisons/comparisons-view.server";
+import { kindsOf } from "./counting";
 import { coverageOf } from "./coverage";
 import { coverageViewOf } from "./coverage/coverage-view.server";
+import { seasonOf } from "./periods";
 import { prevalenceViewOf } from "./prevalence/prevalence-view.server";
 import { programmeViewOf } from "./programme/programme-view.server";
-import { tallySessions } from "./rates.queries.server";
+import { listRatedTeams, tallySessions } from "./rates.queries.server";
 import { recentWeeksViewOf } from "./recent-weeks/recent-weeks-view.server";
 import { severityViewOf } from "./severity/severity-view.server";
 import { type TableData, writeTableCsv } from "./tables";
@@ -63,6 +65,21 @@ export function allSeasons({ viewing, period }: RatesView, today: string): Perio
   };
 }
 
+/** Coverage of the sessions that a view's filters ask for, as its page shows it. */
+async function coverageOfView(tx: Tx, { filters, teamIds, viewing }: RatesView, { from, to }: Period) {
+  const kinds: readonly string[] = kindsOf[filters.sessions];
+  const sportOf = new Map((await listRatedTeams(tx, teamIds)).map(({ id, sport }) => [id, sport]));
+  const tallies = await tallySessions(tx, { from, to, teamIds });
+  return coverageOf(
+    tallies.filter(
+      ({ day, kind, teamId }) =>
+        kinds.includes(kind) &&
+        (filters.sport === "any" || sportOf.get(teamId) === filters.sport) &&
+        seasonOf(day, viewing.seasons) !== undefined,
+    ),
+  );
+}
+
 /**
  * One table of a view as a file: its name and its text.
  * @throws DomainError not_found for a view or a table that there is not
@@ -83,7 +100,7 @@ export async function tableFileOf(
     organisation,
     filters,
     team: viewing.team?.name ?? (tx.scope.teams === "all" ? "all teams" : "own teams"),
-    coverage: coverageOf(await tallySessions(tx, { ...period, teamIds: view.teamIds })),
+    coverage: await coverageOfView(tx, view, period),
   });
   const file = [name.view, name.table, period.season].join("-").replace(/[^A-Za-z0-9]+/g, "-");
   return { name: `${file}.csv`, text };

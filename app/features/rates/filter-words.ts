@@ -131,7 +131,9 @@ export function countedInWords(count: number, filters: Narrowing): string {
   const [one, many] =
     filters.occurrence === "recurrent" ? ["re-injury", "re-injuries"] : ["injury", "injuries"];
   const number = count === 0 ? "no" : formatCount(count);
-  return [number, adjectives(filters), count === 1 ? one : many].filter(Boolean).join(" ");
+  // One injury is of one kind, and none is of either.
+  const kind = count > 1 ? adjectives(filters) : adjectives(filters).replace(" and ", " or ");
+  return [number, kind, count === 1 ? one : many].filter(Boolean).join(" ");
 }
 
 /** The injuries that a view counts, in words: "non-contact knee injuries with time loss". */

@@ -9,15 +9,22 @@ import { computeRates, type RateRow } from "./rates";
 import { listExposedAthletes } from "./rollups/exposure.queries.server";
 import { reportedWeeks } from "./silence";
 import { countSeasons, countView, type Period, periodOf, type RatesView } from "./view.server";
+import { hidesOtherTeams } from "./whole";
 
-/** The whole club's rate, to stand beside a part of it: its sums alone leave this function. */
-async function countClub(tx: Tx, view: RatesView): Promise<RateRow> {
+/**
+ * The whole club's rate, to stand beside a part of it: its sums alone leave this function. Null where they would give
+ * another team's numbers away to a person of listed teams.
+ */
+async function countClub(tx: Tx, view: RatesView): Promise<RateRow | null> {
+  const { teams } = tx.scope;
   const counts = await countView(tx, { ...view, teamIds: null }, { all: view.filters.by === "season" });
+  if (teams !== "all" && !hidesOtherTeams(counts, view.filters, teams)) return null;
   return { ...computeRates(counts, view.filters).total, key: "club", label: "All teams" };
 }
 
 /**
- * Incidence in the view of an address, for clinical roles: their own teams and, beside them, the club's total.
+ * Incidence in the view of an address, for clinical roles: their own teams and, beside them, the club's total where
+ * it gives no other team away.
  * By season all seasons are looked at, whichever the address names.
  */
 export async function incidenceOf(tx: Tx, view: RatesView) {

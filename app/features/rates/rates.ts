@@ -126,14 +126,13 @@ export type { Counts } from "./selection";
 
 export type Rates = Omit<ReturnType<typeof computeRates>, "counted">;
 
-/** The sessions that say how much of a group's exposure is recorded: those of its team or of its days. */
+/** The sessions that say how much of a group's exposure is recorded: those of its team, its sport or its days. */
 function sessionsOf(group: Group, by: RatesFilters["by"], counts: Counts, sessions: readonly SessionTally[]) {
-  if (by === "team") return sessions.filter(({ teamId }) => teamId === group.teamId);
   if (by === "kind") return sessions.filter(({ kind }) => kind === group.key || group.key === "none");
-  if (by !== "month" && by !== "season") return sessions;
+  if (by !== "team" && by !== "sport" && by !== "month" && by !== "season") return sessions;
   const keyOf = groupKey(by, counts);
-  const place = { sex: "unknown", age: null, teamId: null, kind: null } as const;
-  return sessions.filter(({ day }) => keyOf({ ...place, day }) === group.key);
+  const place = { sex: "unknown", age: null, kind: null } as const;
+  return sessions.filter(({ day, teamId }) => keyOf({ ...place, day, teamId }) === group.key);
 }
 
 /** The rows of one grouping; groups with neither exposure nor injuries drop out. */

@@ -63,10 +63,19 @@ export function readRatio({ lower, upper }: Interval) {
     : "the whole interval lies below no difference";
 }
 
+/** What both intervals say; where they differ, which of them says it. */
+function readBoth(ratio: Interval, robust: Interval | null) {
+  const words = readRatio(wider(ratio, robust));
+  const agree = !robust || readRatio(ratio) === readRatio(robust);
+  return agree ? words : words.replace("the interval", "the wider interval");
+}
+
 /** The interval of a ratio, and beside it the one that allows for teams. */
 function ratioInterval(ratio: Interval, robust: Interval | null) {
   const limits = ({ lower, upper }: Interval) => `${formatRatio(lower)} to ${formatRatio(upper)}`;
-  return interval(`(${limits(ratio)}${robust ? `; allowing for teams ${limits(robust)}` : ""})`);
+  if (!robust) return interval(`(${limits(ratio)})`);
+  if (limits(ratio) === limits(robust)) return interval(`(${limits(ratio)}, allowing for teams as well)`);
+  return interval(`(${limits(ratio)}; allowing for teams ${limits(robust)})`);
 }
 
 function comparisonParts(
@@ -92,7 +101,7 @@ function comparisonParts(
     strong(`${formatRatio(ratio.estimate)} times`),
     plain(` ${before}${after} `),
     ratioInterval(ratio, robust),
-    plain(`; ${readRatio(wider(ratio, robust))}.`),
+    plain(`; ${readBoth(ratio, robust)}.`),
   ];
 }
 
@@ -166,7 +175,7 @@ export function writeNote(rates: Rates, filters: RatesFilters, weeks?: ReportedW
     ...(weeks && weeks.all > 0
       ? [
           plain(
-            `In ${formatCount(weeks.reported)} of ${formatCount(weeks.all)} team-weeks an injury was entered or none confirmed. `,
+            `In ${formatCount(weeks.reported)} of ${formatCount(weeks.all)} team-weeks an injury was entered or it was confirmed that there was none. `,
           ),
         ]
       : []),

@@ -150,7 +150,7 @@ describe("body areas", () => {
 
   it("name the one long injury only where several stand beside it", () => {
     const note = textOf(bodyAreasNote(bodyAreasOf(club, attended), attended, "2026-12-01"));
-    expect(note).toContain("One injury makes up more than half of the days: ankle.");
+    expect(note).toContain("One of the ankle injuries makes up more than half of their days.");
     expect(note).toContain("counted to 1 Dec 2026");
   });
 

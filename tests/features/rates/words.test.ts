@@ -19,7 +19,7 @@ describe("the words of a view", () => {
     expect(
       injuriesInWords({ ...defaultFilters, injuries: "medical-attention", occurrence: "recurrent" }),
     ).toBe("re-injuries that needed attention");
-    expect(countedInWords(1, narrowed)).toBe("1 non-contact and indirect contact knee injury");
+    expect(countedInWords(1, narrowed)).toBe("1 non-contact or indirect contact knee injury");
     expect(countedInWords(0, { ...defaultFilters, occurrence: "recurrent" })).toBe("no re-injuries");
     expect(peopleInWords({ ...narrowed, sex: "female", age: "15-16" })).toBe(
       "girls and women aged 15 to 16 in soccer",

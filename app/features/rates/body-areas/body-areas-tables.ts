@@ -76,8 +76,8 @@ function sideTable({ areas }: BodyAreas, unit: RatesFilters["per"], href: Record
   };
 }
 
-function ratioCell({ ratio, left, right }: AreaWithSides): Cell {
-  if (!ratio) return { reason: left && right ? "too few to compare" : "no side" };
+function ratioCell({ ratio, left, right, reason }: AreaWithSides): Cell {
+  if (!ratio) return { reason: reason ?? (left && right ? "too few to compare" : "no side") };
   return ratio.estimate === Infinity ? { reason: "none on the right" } : figure(ratio);
 }
 

@@ -14,7 +14,8 @@ export async function bodyAreasViewOf(tx: Tx, view: RatesView, url: URL) {
     `/${tx.scope.slug}/rates/records${searchWith(url.search, { by, ...(group ? { group } : {}) })}`;
   // The knee unless the view is narrowed to another area.
   const compared = areas.areas.find(({ area }) => area === (filters.area === "any" ? "knee" : filters.area));
-  const hasSides = Boolean(compared?.left && compared.right) && !["left", "right"].includes(filters.side);
+  const hasSides =
+    Boolean(compared?.rate && compared.left && compared.right) && !["left", "right"].includes(filters.side);
   const rows = pictureRows(areas);
   return {
     coverage: areas.coverage,

@@ -113,12 +113,16 @@ export function bodyAreasNote({ areas, total }: BodyAreas, filters: RatesFilters
   const unstable = areas.filter((row) => row.unstable).length;
   return [
     plain(
-      `${scopeOf(filters)}. Days are counted to ${dayWords(asOf, true)}; those of an ongoing injury are the least it can end with. `,
+      areas.length === 0
+        ? `${scopeOf(filters)}. `
+        : `${scopeOf(filters)}. Days are counted to ${dayWords(asOf, true)}; those of an ongoing injury are the least it can end with. `,
     ),
     ...(dominated.length > 0
       ? [
           attention(
-            `One injury makes up more than half of the days: ${listWords(dominated.map(({ area }) => bodyAreaWords[area]))}`,
+            dominated.length === 1
+              ? `One of the ${listWords(dominated.map(({ area }) => areaInjuries(area)))} makes up more than half of their days`
+              : `One injury makes up more than half of the days in each of ${listWords(dominated.map(({ area }) => bodyAreaWords[area]))}`,
           ),
           plain(". "),
         ]

@@ -28,7 +28,7 @@ export type AreaWithSides = AreaRow & {
   right: SideRow | null;
   /** What has both sides, none, or one that is not known. */
   middle: SideRow[];
-  /** Left against right over the same exposure; null with fewer than 5 injuries of both together. */
+  /** Left against right over the same exposure; null with fewer than 5 injuries of both, or withheld. */
   ratio: RateRatio | null;
 };
 
@@ -76,6 +76,7 @@ export function bodyAreasOf(counts: Counts, filters: RatesFilters): BodyAreas {
   const allDays = sumDays(select(counts, { ...filters, area: "any", side: "any" }).counted);
   const make = rowMaker(selection, filters.per, allDays);
   const amount = denominator(exposure, filters.per);
+  const isWithheld = coverage.state === "withheld";
   const areas = [...groupBy(counted, ({ bodyArea }) => bodyArea)].map(([area, injuries]): AreaWithSides => {
     const words = bodyAreaWords[area];
     const ofSide = (side: Side) => injuries.filter((injury) => injury.side === side);
@@ -92,7 +93,7 @@ export function bodyAreasOf(counts: Counts, filters: RatesFilters): BodyAreas {
       left: hasSides ? left : null,
       right: hasSides ? right : null,
       middle: middleSides.map(sideRow).filter((row) => row.injuries > 0),
-      ratio: isOneSided ? null : compareSides(left.injuries, right.injuries, amount),
+      ratio: isOneSided || isWithheld ? null : compareSides(left.injuries, right.injuries, amount),
     };
   });
   return {

@@ -29,9 +29,13 @@ export function groupWords({ key, label }: Pick<RateRow, "key" | "label">, dimen
   return key === "unknown" ? "athletes of unknown age" : `athletes aged ${words}`;
 }
 
-const exposureWords: Record<RateUnit, string> = { aes: "exposures", hours: "hours" };
+const exposureWords: Record<RateUnit, [one: string, many: string]> = {
+  aes: ["exposure", "exposures"],
+  hours: ["hour", "hours"],
+};
 
-const several = (amount: number, unit: RateUnit) => `${formatCount(amount)} ${exposureWords[unit]}`;
+const several = (amount: number, unit: RateUnit) =>
+  `${formatCount(amount)} ${exposureWords[unit][Math.round(amount) === 1 ? 0 : 1]}`;
 
 /** Counts, rate and interval of one side; the second is said without naming the injuries again. */
 function sideParts(row: RateRow, subject: string, counts: string, decimals: number): Part[] {
@@ -112,7 +116,7 @@ export function pairSentence(pair: Pair, filters: RatesFilters): Part[] {
   const decimals = decimalsFor([first, second].flatMap(({ rate }) => rate?.estimate ?? []));
   const thin = pair.ratio && (first.unstable || second.unstable);
   const own = `${countedInWords(first.injuries ?? 0, filters)} in ${several(first.denominator ?? 0, filters.per)}`;
-  const others = `${formatCount(second.injuries ?? 0)} in ${formatCount(second.denominator ?? 0)}`;
+  const others = `${second.injuries ? formatCount(second.injuries) : "none"} in ${formatCount(second.denominator ?? 0)}`;
   return [
     ...sideParts(first, capital(groupWords(first, dimension)), own, decimals),
     plain("; "),
@@ -141,7 +145,7 @@ export function heterogeneityWords({ adjusted, held }: Pair): string {
 const sumWords = ({ events, exposure }: { events: number; exposure: number }, unit: RateUnit) => {
   const parts = [
     ...(events > 0 ? [`${formatCount(events)} ${events === 1 ? "injury" : "injuries"}`] : []),
-    ...(exposure > 0 ? [`${formatCount(exposure)} ${exposureWords[unit]}`] : []),
+    ...(exposure > 0 ? [`${several(exposure, unit)}`] : []),
   ];
   return parts.join(" and ");
 };
@@ -177,6 +181,10 @@ export function teamsWords({ ratio, reason, dropped }: Robust): string {
   return `With ${ratio.clusters} teams, fewer than 40, even the interval that allows for teams is optimistic.${corrected}${out}`;
 }
 
+/** What no adjustment mends. */
+const notByLot =
+  "This is not a randomised comparison: the two differ in other ways as well, and that may explain a difference or hide one.";
+
 /** The smaller lines under the sentence. */
 export function pairNote(pair: Pair, filters: RatesFilters): Part[] {
   const { difference, adjusted, notAdjusted, robust } = pair;
@@ -190,6 +198,7 @@ export function pairNote(pair: Pair, filters: RatesFilters): Part[] {
     heterogeneityWords(pair),
     setAsideWords(pair, filters.per),
     pair.ratio ? teamsWords(adjusted?.robust.ratio ? adjusted.robust : robust) : "",
+    pair.ratio ? notByLot : "",
   ];
   return texts.filter(Boolean).map((text, index) => plain(index === 0 ? text : ` ${text}`));
 }

@@ -123,13 +123,13 @@ function weekTable(counts: Counts, sessions: readonly SessionTally[]): TableData
 /** Coverage of a view: the whole, by team and week, and its tables. */
 export async function coverageViewOf(tx: Tx, view: RatesView) {
   const counts = await countView(tx, view);
-  const { sessions, coverage } = select(counts, view.filters);
+  const { sessions, coverage, cells, silent } = select(counts, view.filters);
   const rows = coverageRows(counts, sessions);
   return {
     coverage,
     rows,
     weeks: weeksOf(counts.from, counts.to),
-    reported: reportedWeeks([...counts.cells, ...counts.silent], counts.injuries, counts.confirmedWeeks),
+    reported: reportedWeeks([...cells, ...silent], counts.injuries, counts.confirmedWeeks),
     tables: [teamTable(rows), weekTable(counts, sessions)],
   };
 }

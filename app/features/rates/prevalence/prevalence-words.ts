@@ -81,7 +81,7 @@ export function prevalenceNote({ whole, weeks }: PrevalenceParts, filters: Rates
   const thin = weeks.filter(({ unstable }) => unstable).length;
   return [
     plain(
-      "Every cause counts, injury, illness or other, so that the case definition and the sessions above change nothing here. ",
+      "Every cause counts: injury, illness or other. A case definition or a choice of sessions therefore changes nothing here. ",
     ),
     ...(hasInjuryNarrowing(filters)
       ? [

@@ -87,9 +87,9 @@ function Smallest({ result: { injuries } }: Props) {
           ])}
         />
       </p>
-      {thirds.contrast ? (
+      {thirds.contrast && (thirds.contrast.smallest || classes.contrast.smallest) ? (
         <p className="mb-3 max-w-prose">
-          By thirds:{" "}
+          <strong>By thirds of compliance.</strong>{" "}
           <SentenceParts
             parts={smallestSentence(thirds.contrast.smallest, thirds.contrast, [
               "of the highest third",

@@ -104,7 +104,8 @@ export function RecentWeeksView({ frame: { slug, filters }, data }: Props) {
         <Region heading="Weeks">
           <p className="mb-4 max-w-prose text-soft">
             In {formatCount(reported.reported)} of the {formatCount(reported.all)}{" "}
-            {several ? "team-weeks" : "weeks"} with exposure an injury was entered or none confirmed.{" "}
+            {several ? "team-weeks" : "weeks"} with exposure an injury was entered or it was confirmed that
+            there was none.{" "}
             {reported.reported === reported.all
               ? ""
               : several

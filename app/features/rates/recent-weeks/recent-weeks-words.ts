@@ -79,7 +79,7 @@ export function lookingOften({ probability }: Surprise, teams: readonly TeamSurp
   const [first] = judged;
   const aYear = (p: number, count: number) => amountWords(Math.min(52 * p * count, 52 * count));
   const texts = [
-    probability === null
+    probability === null || probability > 0.5
       ? ""
       : `Looking often finds something: with one look a week, a surprise of this size or larger comes by luck at about ${aYear(probability, 1)} of a year's 52 looks.`,
     judged.length > 1 && first && first.probability !== null
@@ -91,19 +91,23 @@ export function lookingOften({ probability }: Surprise, teams: readonly TeamSurp
 
 /** Where the expected number comes from, and how many team-weeks were reported on. */
 export function recentNote(
-  { baseline, expected, probabilityAtUpper, reported }: Surprise,
+  { observed, baseline, expected, probabilityAtUpper, reported }: Surprise,
   teams: number,
 ): Part[] {
   const team = teams === 1;
   const texts = [
     expected
-      ? `Expected: the rates by session kind of all ${formatCount(baseline.weeks)} earlier weeks with exposure, ${formatCount(baseline.injuries)} injuries, times the exposure of these four weeks. They are themselves uncertain; at the upper limit of what they let expect the probability is ${chanceWords(probabilityAtUpper ?? 1)}.`
+      ? `Expected: the rates by session kind of all ${formatCount(baseline.weeks)} earlier weeks with exposure, ${formatCount(baseline.injuries)} injuries, times the exposure of these four weeks.${
+          observed === 0
+            ? ""
+            : ` They are themselves uncertain; at the upper limit of what they let expect the probability is ${chanceWords(probabilityAtUpper ?? 1)}.`
+        }`
       : "",
     reported.all === 0
       ? ""
       : team
         ? `${formatCount(reported.reported)} of ${formatCount(reported.all)} weeks were reported on.`
-        : `In ${formatCount(reported.reported)} of ${formatCount(reported.all)} team-weeks an injury was entered or none confirmed.`,
+        : `In ${formatCount(reported.reported)} of ${formatCount(reported.all)} team-weeks an injury was entered or it was confirmed that there was none.`,
     "An injury counts here once its time loss is entered, so the last days may still grow.",
   ];
   return texts.filter(Boolean).map((text, index) => plain(index === 0 ? text : ` ${text}`));

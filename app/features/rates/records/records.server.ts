@@ -1,6 +1,6 @@
 import { audit } from "~/platform/audit.server";
 import type { Tx } from "~db/client.server";
-import { numeratorRules, reasonLeftOut } from "../counting";
+import { isInView, numeratorRules, reasonLeftOut } from "../counting";
 import { isOfKind, peopleOf, select } from "../selection";
 import { countView, type RatesView } from "../view.server";
 import { exposureBehind, figurePartOf, groupLabel, injuriesBehind } from "./records";
@@ -24,7 +24,8 @@ export async function recordsBehind(tx: Tx, view: RatesView, url: URL) {
   const rules = { definition: filters.injuries, sessions: filters.sessions, unit: filters.per };
   const isWhose = peopleOf(counts, filters);
   const others = counts.injuries.flatMap((injury) => {
-    const reason = isWhose(injury) && isOfKind(injury, filters) ? reasonLeftOut(injury, rules) : null;
+    const isAsked = isInView(injury, rules) && isWhose(injury) && isOfKind(injury, filters);
+    const reason = isAsked ? reasonLeftOut(injury, rules) : null;
     return reason ? [{ injury, reason: wordsOf.get(reason) ?? reason }] : [];
   });
   const leftOut = others.filter(
@@ -34,7 +35,9 @@ export async function recordsBehind(tx: Tx, view: RatesView, url: URL) {
     tx,
     [...counted, ...leftOut.map(({ injury }) => injury)].map(({ athleteId }) => athleteId),
   );
-  await audit(tx, { action: "injury.list", fields: { count: counted.length, purpose: "rates" } });
+  // Both lists name athletes.
+  const count = counted.length + leftOut.length;
+  await audit(tx, { action: "injury.list", fields: { count, purpose: "rates" } });
   const teams = new Map(counts.teams.map(({ id, name }) => [id, name]));
   const line = (injury: (typeof counted)[number], reason: string | null) => {
     const { id, onsetDay, bodyArea, side, contact, daysLost, ongoing, teamId, sessionId } = injury;

@@ -1,4 +1,5 @@
 import { openDoor, sweeperScope } from "~/features/accounts/doors.server";
+import { describeFault } from "~/platform/fault.server";
 import { log } from "~/platform/log.server";
 import { read, type Scope, sqlState, type Tx, write } from "~db/client.server";
 import {
@@ -48,8 +49,20 @@ export async function rollUp(job: Scope): Promise<boolean> {
   }
 }
 
-/** The job: one organisation, where something big was written; else every one in which anything was. */
+/**
+ * The job: one organisation, where something big was written; else every one in which anything was. One that fails
+ * keeps no other waiting.
+ * @throws the first failure, once all had their turn
+ */
 export async function rollUpMarked({ organisationId }: Record<string, string> = {}) {
   const all = organisationId ? [organisationId] : await read(sweeperScope, listMarkedOrganisations);
-  for (const each of all) await rollUp(await openDoor("job", each));
+  const faults: unknown[] = [];
+  for (const each of all)
+    try {
+      await rollUp(await openDoor("job", each));
+    } catch (error) {
+      faults.push(error);
+      log.error({ organisationId: each, ...describeFault(error) }, "roll-up failed");
+    }
+  if (faults.length > 0) throw faults[0];
 }

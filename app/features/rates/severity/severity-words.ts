@@ -5,7 +5,7 @@ import { countedInWords, peopleInWords } from "../filter-words";
 import type { RatesFilters } from "../filters";
 import { dayWords } from "../periods";
 import { type Part, sessionsNote } from "../sentence";
-import { attention, chanceWords, interval, listWords, plain, strong } from "../wording";
+import { attention, chanceWords, interval, plain, strong } from "../wording";
 import type { ReturnComparison, ReturnCurve, Severity, SeverityRow } from "./severity";
 
 /** The words of severity and burden: the sentence of the page, its note, and what its pictures say. Pure. */
@@ -136,8 +136,10 @@ export function severityNote({ total, rows }: Severity, filters: RatesFilters, a
     ...((total.injuries ?? 0) > 0 ? [plain(open)] : []),
     ...(dominated.length > 0
       ? [
-          attention(`One injury makes up more than half of the days of ${listWords(dominated)}`),
-          plain(": such a burden rests on that one. "),
+          attention(
+            `${dominated.length === 1 ? "In one group" : `In each of ${dominated.length} groups`} a single injury makes up more than half of the days`,
+          ),
+          plain(`, and the burden rests on it: ${dominated.join("; ")}. `),
         ]
       : []),
     ...(unstable > 0

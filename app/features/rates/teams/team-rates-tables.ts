@@ -20,7 +20,7 @@ const rateCell = ({ rate, reason, unstable }: RateRow): Cell =>
 
 /** Teams with their crude and shrunken rates, and the whole below. */
 export function teamsTable(
-  { teams, whole, injuries, exposure }: TeamRates,
+  { teams, whole, wholeHidden, injuries, exposure }: TeamRates,
   unit: RateUnit,
   wholeName: string,
 ): TableData {
@@ -56,9 +56,11 @@ export function teamsTable(
         total: true,
         cells: {
           team: wholeName,
-          injuries,
-          exposure,
-          rate: whole ? figure(whole, injuries < stableFrom) : { reason: "no rate" },
+          injuries: wholeHidden ? null : injuries,
+          exposure: wholeHidden ? null : exposure,
+          rate: whole
+            ? figure(whole, injuries < stableFrom)
+            : { reason: wholeHidden ? "hidden: it would tell a single other team's" : "no rate" },
           ...{ outside: null, shrunken: null },
         },
       },
@@ -67,7 +69,7 @@ export function teamsTable(
 }
 
 /** What each team had over what the whole's rates let expect at its ages and in its kinds of session. */
-export function expectedTable({ teams }: TeamRates): TableData {
+export function expectedTable({ teams, wholeHidden }: TeamRates): TableData {
   return {
     id: "expected",
     caption: "Injuries over those expected at the whole's rates by age band and session kind",
@@ -88,7 +90,11 @@ export function expectedTable({ teams }: TeamRates): TableData {
         expected: expected?.estimate ?? null,
         ratio: ratio
           ? figure(ratio, row.unstable)
-          : { reason: expected ? "nothing expected" : (row.reason ?? "needs three teams") },
+          : {
+              reason: expected
+                ? "nothing expected"
+                : (row.reason ?? (wholeHidden ? "the whole is hidden" : "needs three teams")),
+            },
       },
     })),
   };

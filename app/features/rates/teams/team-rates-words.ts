@@ -23,6 +23,12 @@ function named(teams: readonly TeamRate[], decimals: number): Part[] {
 export function teamsSentence(rates: TeamRates, filters: RatesFilters, wholeName: string): Part[] {
   const { whole, teams, rated } = rates;
   const silent = teams.filter(({ row }) => row.injuries === null).length;
+  if (rates.wholeHidden)
+    return [
+      plain(
+        "Your teams stand here alone. The whole is not shown: narrowed like this, or with one other team in it, it would tell the numbers of a team that is not yours.",
+      ),
+    ];
   if (!whole) return [plain("There is no rate of the whole to hold teams against.")];
   const decimals = decimalsFor([whole.estimate, ...teams.flatMap(({ row }) => row.rate?.estimate ?? [])]);
   const [estimate, lower, upper] = [whole.estimate, whole.lower, whole.upper].map((value) =>
@@ -91,6 +97,7 @@ export function teamsNote(rates: TeamRates): Part[] {
   const standardised = outside.flatMap(({ row, ratio }) =>
     ratio ? [`${row.label} ${formatRatio(ratio.estimate)} ${ratioLimits(ratio)}`] : [],
   );
+  if (rates.injuries === 0) return silent.length > 0 ? [plain(`Not reported: ${listWords(silent)}.`)] : [];
   const texts = [
     spread === "more than luck"
       ? "Between the teams the rates differ by more than luck alone would make them; the shrunken rate moves each towards the whole by as much as its exposure leaves open."

@@ -37,6 +37,8 @@ export type TeamRate = {
 
 export type TeamRates = {
   whole: Estimate | null;
+  /** The whole may not be shown: it would give another team's numbers away. */
+  wholeHidden: boolean;
   injuries: number;
   exposure: number;
   teams: TeamRate[];
@@ -83,14 +85,16 @@ function limitCurve(rate: number, most: number, level: number) {
  * Teams against the whole.
  * @param counts of every team of the whole
  * @param shown ids of the teams that may be shown; null for all. Nothing of the others leaves but the whole's sums
+ * @param wholeHidden nothing of the whole leaves either: teams have their own rates alone
  */
 export function teamRates(
   { counts, selection, unit }: { counts: Counts; selection: Selection; unit: RateUnit },
   shown: readonly string[] | null,
+  wholeHidden = false,
 ): TeamRates {
   const rows = tabulate("team", counts, selection, unit).filter(({ teamId }) => teamId !== null);
-  const exposure = selection.cells.reduce((sum, cell) => sum + cell[unit], 0);
-  const injuries = selection.counted.length;
+  const exposure = wholeHidden ? 0 : selection.cells.reduce((sum, cell) => sum + cell[unit], 0);
+  const injuries = wholeHidden ? 0 : selection.counted.length;
   const isRated = exposure > 0 && selection.coverage.state !== "withheld";
   const whole = isRated ? incidenceRate({ events: injuries, exposure }) : null;
   const rated = rows.filter(({ rate }) => rate !== null);
@@ -103,7 +107,7 @@ export function teamRates(
   const visible = rows.filter(({ teamId }) => shown === null || (teamId !== null && shown.includes(teamId)));
   const most = Math.max(0, ...visible.map(({ denominator }) => denominator ?? 0));
   return {
-    ...{ whole, injuries, exposure },
+    ...{ whole, wholeHidden, injuries, exposure },
     teams: visible.map((row): TeamRate => {
       const index = rated.indexOf(row);
       const at = isEnough && index >= 0 ? whole : null;
@@ -123,7 +127,7 @@ export function teamRates(
         luck: at ? chanceOutside(at.estimate, row.denominator ?? 0, funnelLevels[0]) : 0,
       };
     }),
-    rated: rated.length,
+    rated: wholeHidden ? 0 : rated.length,
     spread: shrunk ? (shrunk.shape === Infinity ? "no more than luck" : "more than luck") : null,
     limits:
       isEnough && most > 0

@@ -99,7 +99,7 @@ const anyNarrowing: Parameters<typeof countedInWords>[1] = {
   ...{ contact: "any", onset: "gradual", occurrence: "all" },
 };
 
-const exposureWords = { aes: "exposures", hours: "hours" } as const;
+const exposureWords = { aes: ["exposure", "exposures"], hours: ["hour", "hours"] } as const;
 
 /** The season so far against the same days of the season before it, in words. */
 export function soFarSentence(rows: readonly SoFarRow[], filters: RatesFilters): Part[] {
@@ -107,7 +107,7 @@ export function soFarSentence(rows: readonly SoFarRow[], filters: RatesFilters):
   if (!own) return [];
   const { row } = own;
   const decimals = decimalsFor(rows.flatMap((each) => each.row.rate?.estimate ?? []));
-  const counts = `${countedInWords(row.injuries ?? 0, filters)} in ${formatCount(row.denominator ?? 0)} ${exposureWords[filters.per]}`;
+  const counts = `${countedInWords(row.injuries ?? 0, filters)} in ${formatCount(row.denominator ?? 0)} ${exposureWords[filters.per][Math.round(row.denominator ?? 0) === 1 ? 0 : 1]}`;
   const start = [plain(`In its first ${own.days} days season ${own.season.name} had `), strong(counts)];
   if (!row.rate) return [...start, plain(`: ${row.reason}.`)];
   const [rate, lower, upper] = [row.rate.estimate, row.rate.lower, row.rate.upper].map((value) =>

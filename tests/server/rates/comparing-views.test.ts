@@ -223,6 +223,28 @@ describe("teams against the whole", () => {
   });
 });
 
+describe("teams against a whole that would give one of them away", () => {
+  it.each(["?sport=handball", "?sex=female", "?sport=soccer&sex=male"])(
+    "hide it under %s",
+    async (search) => {
+      const of = async (scope: typeof club.trainer) =>
+        (await loadRates(scope, address("teams", search), teamRatesViewOf)).data;
+      const data = await of(club.trainer);
+      expect(rowOf(tableOf(data?.tables ?? [], "teams"), "whole")).toMatchObject({
+        injuries: null,
+        exposure: null,
+        rate: { reason: expect.stringMatching(/hidden/) },
+      });
+      expect(data).toMatchObject({ whole: null, limits: [] });
+      expect(data?.sentence.map(({ text }) => text).join("")).toMatch(/not shown/);
+      // The lead sees it.
+      expect(rowOf(tableOf((await of(club.lead))?.tables ?? [], "teams"), "whole").injuries).toBeGreaterThan(
+        0,
+      );
+    },
+  );
+});
+
 /** P(X >= count) of a Poisson, summed by hand. */
 function atLeast(count: number, mean: number) {
   let [chance, below] = [Math.exp(-mean), 0];

@@ -136,14 +136,15 @@ describe("an organisation with nothing yet", () => {
   });
 });
 
-/** Two teams with sessions: the first with six injured of eight, the second with two injured of six. */
-async function makeInjuredClub() {
+/** Teams with sessions: the first with six injured of eight, the second with two of six, a third with one of five. */
+async function makeInjuredClub({ third = false } = {}) {
   const club = await makeClub();
   const { staff, team, otherTeam } = club;
   const day = addDays(staff.today, -40);
   for (const { teamId, sex, size, hurt } of [
     { teamId: team.id, sex: "female", size: 8, hurt: 6 },
     { teamId: otherTeam.id, sex: "male", size: 6, hurt: 2 },
+    ...(third ? [{ teamId: (await makeTeam(staff)).id, sex: "male", size: 5, hurt: 1 }] : []),
   ]) {
     const ids: string[] = [];
     for (let n = 0; n < size; n++) ids.push((await makeAthlete(staff, { teamId, sex })).id);
@@ -165,16 +166,30 @@ async function makeInjuredClub() {
 
 describe("who sees what", () => {
   it("gives a trainer of listed teams those teams and the club's total", async () => {
-    const club = await makeInjuredClub();
+    const club = await makeInjuredClub({ third: true });
     const own = await incidence(club.scopes.trainer, "", { ...filters, by: "team" });
     expect(own.rates?.rows.map(({ key }) => key)).toEqual([club.team.id]);
     expect(own.rates?.total).toMatchObject({ injuries: 6, denominator: 8 });
-    expect(own.club).toMatchObject({ injuries: 8, denominator: 14 });
-    expect(own.club?.rate).toEqual(incidenceRate({ events: 8, exposure: 14 }));
+    expect(own.club).toMatchObject({ injuries: 9, denominator: 19 });
+    expect(own.club?.rate).toEqual(incidenceRate({ events: 9, exposure: 19 }));
     await expect(incidence(club.scopes.trainer, `?team=${club.otherTeam.id}`)).rejects.toThrow(/not found/);
     const whole = await incidence(club.scopes.lead, "", { ...filters, by: "team" });
     expect(whole.club).toBeNull();
-    expect(whole.rates?.total).toMatchObject({ injuries: 8, denominator: 14 });
+    expect(whole.rates?.total).toMatchObject({ injuries: 9, denominator: 19 });
+  });
+
+  it("gives no total from which a single other team's injuries could be taken", async () => {
+    const two = await makeInjuredClub();
+    expect(await incidence(two.scopes.trainer)).toMatchObject({
+      rates: { total: { injuries: 6 } },
+      club: null,
+    });
+    const three = await makeInjuredClub({ third: true });
+    for (const narrowed of [{ sex: "female" }, { sport: "soccer" }, { age: "unknown" }] as const)
+      expect((await incidence(three.scopes.trainer, "", { ...filters, ...narrowed })).club).toBeNull();
+    // Who covers every team keeps the whole beside a part of it.
+    const part = await incidence(two.scopes.lead, `?team=${two.team.id}`, { ...filters, sex: "male" });
+    expect(part.club).toMatchObject({ injuries: 2 });
   });
 
   it("counts for the administrator, whose own rights do not reach injuries, and hides small cells", async () => {

@@ -88,6 +88,13 @@ describe("the records behind a figure", () => {
     expect(found.exposure).toMatchObject([{ teamId: club.team.id, day, aes: 3, grade: "recorded" }]);
   });
 
+  it("leave out nothing that belongs to sessions which were not asked for", async () => {
+    const { records: found, incidence } = await records(club.scopes.lead, "?sessions=match");
+    const said = incidence.rates.leftOut.reduce((sum, { count }) => sum + count, 0);
+    expect(said).toBe(1);
+    expect(found.leftOut).toHaveLength(said);
+  });
+
   it("are those of one group alone", async () => {
     const { records: found } = await records(club.scopes.lead, "?by=area&group=ankle");
     expect(found).toMatchObject({ injuries: 2, group: "Ankle", leftOut: [] });

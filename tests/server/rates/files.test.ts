@@ -1,6 +1,7 @@
 import Papa from "papaparse";
 import { beforeAll, describe, expect, it } from "vitest";
 import type { MemberScope } from "~/features/accounts/scope.server";
+import { bodyAreasViewOf } from "~/features/rates/body-areas/body-areas-view.server";
 import { tableFileOf, tablesOf, viewNames } from "~/features/rates/csv-views.server";
 import { loadRates } from "~/features/rates/view.server";
 import { addDays } from "~/platform/clock";
@@ -61,6 +62,27 @@ describe("the files of the views", () => {
         }
       }
     }
+  });
+
+  it("carry the coverage of the sessions that they are of, as the page does", async () => {
+    const heldOf = async (search: string) => {
+      const url = new URL(`http://localhost/club/rates/csv/body-areas/areas${search}`);
+      const { data } = await loadRates(scope, url, async (tx, view) => {
+        const { tables } = (await tablesOf(tx, view, url, "body-areas")) ?? { tables: [] };
+        const file = await tableFileOf(tx, view, url, { view: "body-areas", table: tables[0]?.id ?? "" });
+        return { file, page: (await bodyAreasViewOf(tx, view, url)).coverage };
+      });
+      const [row] = Papa.parse<Record<string, string>>(data?.file.text ?? "", { header: true }).data;
+      expect([row?.held_sessions, row?.held_sessions_with_recorded_exposure]).toEqual([
+        String(data?.page.held),
+        String(data?.page.recorded),
+      ]);
+      return data?.page.held ?? 0;
+    };
+    const [all, matches] = [await heldOf(""), await heldOf("?sessions=match")];
+    expect(matches).toBeGreaterThan(0);
+    expect(matches).toBeLessThan(all);
+    await heldOf("?sport=soccer");
   });
 
   it("of a view or a table that there is not are not found", async () => {

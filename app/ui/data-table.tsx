@@ -105,7 +105,7 @@ function SortLink<Row>(props: { column: Column<Row>; sort: ReturnType<typeof rea
 const pad = (column: { axis?: boolean }) =>
   column.axis
     ? "axis-cell"
-    : "px-3 first:pl-0 last:pr-0 lg:max-xl:px-2 lg:max-xl:first:pl-0 lg:max-xl:last:pr-0";
+    : "px-3 first:pl-0 last:pr-0 lg:max-xl:px-2 lg:max-xl:first:pl-0 lg:max-xl:last:pr-0 print:px-1.5 print:first:pl-0 print:last:pr-0";
 
 /**
  * A table with its caption, sortable by links and, on a narrow screen, scrolled sideways by finger or keys while
@@ -217,7 +217,7 @@ function BodyCell<Row>({ column, row }: { column: Column<Row>; row: Row }) {
       scope="row"
       className={joinClasses(
         classes,
-        "sticky left-0 max-w-[46vw] min-w-[8.5rem] bg-chalk font-normal lg:static lg:max-w-none",
+        "sticky left-0 max-w-[46vw] min-w-[8.5rem] bg-chalk font-normal lg:static lg:max-w-none print:min-w-[6rem]",
       )}
     >
       {content}

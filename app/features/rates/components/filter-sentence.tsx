@@ -9,6 +9,8 @@ export type FilterPart = keyof typeof partWords;
 type Choices = { filters: RatesFilters; bands: readonly string[]; sports: readonly string[] };
 
 const summaryClasses = "inline-flex min-h-target cursor-pointer list-none items-center";
+/** On a narrow page the choices open at its left edge, below their line; on a wide one below their word. */
+const anchor = "inline-block xl:relative";
 const floating =
   "absolute left-0 z-30 w-72 max-w-[calc(100vw-3rem)] rounded-md border border-line bg-paper p-1 font-normal text-ink shadow-float";
 
@@ -20,7 +22,7 @@ function Part({ name, filters, label }: { name: FilterPart; filters: RatesFilter
   const to = (value: string) =>
     pathname + searchWith(search, { [name]: value === defaultFilters[name] ? undefined : value });
   return (
-    <details key={current} name="rates-filter" className="relative inline-block">
+    <details key={current} name="rates-filter" className={anchor}>
       <summary className={summaryClasses}>
         <span className="sr-only">{label}: </span>
         <span className="editable-word font-semibold">{options[current]}</span>
@@ -70,11 +72,7 @@ function Narrow({ filters, bands, sports }: Choices) {
   const kept = [...new URLSearchParams(searchWith(search))].filter(([name]) => !(name in noNarrowing));
   const isNarrowed = narrowingNames.some((name) => filters[name] !== noNarrowing[name]);
   return (
-    <details
-      key={narrowingNames.map((name) => filters[name]).join()}
-      name="rates-filter"
-      className="relative inline-block"
-    >
+    <details key={narrowingNames.map((name) => filters[name]).join()} name="rates-filter" className={anchor}>
       <summary className={summaryClasses}>
         <span className="editable-word font-semibold">{isNarrowed ? "narrowed" : "narrow further"}</span>
       </summary>
@@ -140,7 +138,7 @@ export function FilterSentence({
   const { filters } = choices;
   const part = (name: FilterPart) => <Part name={name} filters={filters} label={labels[name]} />;
   return (
-    <div className="mb-3 text-soft max-sm:leading-tight print:mb-1" data-filters>
+    <div className="relative mb-3 text-soft max-sm:leading-tight print:mb-1" data-filters>
       <Narrowed filters={filters} />
       Showing{" "}
       {shows ?? (

@@ -161,6 +161,9 @@ describe("PeriodGrid on the server", () => {
 
   test("a month is named where it begins", () => {
     expect(headings(periods)).toEqual([0, 4]);
+    const weeks = (short: string, count: number) => Array.from({ length: count }, () => ({ short }));
+    expect(headings([...weeks("Jul", 1), ...weeks("Aug", 5), ...weeks("Sep", 4)])).toEqual([1, 6]);
+    expect(headings([...weeks("Jul", 4), ...weeks("Aug", 1)])).toEqual([0, 4]);
     expect(headings([{ short: "Aug" }, { short: "Sep" }, { short: "Oct" }, { short: "Nov" }])).toEqual([
       0, 3,
     ]);

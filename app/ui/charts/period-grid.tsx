@@ -26,14 +26,22 @@ const slot = 15;
 const rowHeight = 40;
 const stroke = { top: 7, length: 26, width: 8 };
 
-/** Indexes of the periods whose short names are written, none touching the next. */
+/**
+ * Indexes of the periods whose short names are written, none touching the next. A name that its own periods are too
+ * short for (the last week of July, before August) gives way to the next.
+ */
 export function headings(periods: { short: string }[]): number[] {
+  const starts = [...periods.keys()].filter((index) => periods[index]?.short !== periods[index - 1]?.short);
+  const room = (index: number) => textWidth(periods[index]?.short ?? "") + 6;
+  const fits = (place: number) =>
+    ((starts[place + 1] ?? Infinity) - (starts[place] ?? 0)) * slot >= room(starts[place] ?? 0);
   const shown: number[] = [];
   let free = 0;
-  for (const [index, { short }] of periods.entries()) {
-    if (short === periods[index - 1]?.short || index * slot < free) continue;
+  for (const [place, index] of starts.entries()) {
+    const givesWay = place === 0 && !fits(0) && fits(1);
+    if (index * slot < free || givesWay) continue;
     shown.push(index);
-    free = index * slot + textWidth(short) + 6;
+    free = index * slot + room(index);
   }
   return shown;
 }

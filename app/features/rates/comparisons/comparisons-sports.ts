@@ -1,4 +1,5 @@
 import { type RateRatio, rateRatio } from "~/statistics";
+import { sentenceCase } from "../../vocabulary";
 import type { RateUnit } from "../filters";
 import { type RateRow, tabulate } from "../rates";
 import type { Selection } from "../selection";
@@ -141,7 +142,10 @@ export function sportsSentence(
     const shown = robust.ratio ?? ratio;
     return shown && (shown.lower > 1 || shown.upper < 1);
   });
-  const only = oneSided.length > 0 ? ` ${listWords(oneSided)}: one sex only.` : "";
+  const only =
+    oneSided.length > 0
+      ? ` ${sentenceCase(listWords(oneSided.map((sport) => sport.toLowerCase())))}: one sex only.`
+      : "";
   if (rated.length === 0) return [plain(`No sport has injuries and exposure of both.${only}`)];
   const words = clear.map(({ label, ratio }) =>
     ratio && ratio.estimate > 1 ? `${label.toLowerCase()} (higher)` : `${label.toLowerCase()} (lower)`,

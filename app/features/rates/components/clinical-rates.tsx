@@ -72,8 +72,12 @@ export function ClinicalRates({ frame, incidence }: { frame: Frame; incidence: I
       </LinkRow>
       {rates.ongoing > 0 ? (
         <p className="max-w-prose text-soft">
-          {rates.ongoing === 1 ? "One of them is" : `${rates.ongoing} of them are`} ongoing: time loss is
-          counted to today.
+          {counted === 1
+            ? "It is"
+            : rates.ongoing === 1
+              ? "One of them is"
+              : `${rates.ongoing.toLocaleString("en-GB")} of them are`}{" "}
+          ongoing: time loss is counted to today.
         </p>
       ) : null}
       <HowComputed filters={filters} />

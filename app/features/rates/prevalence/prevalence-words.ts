@@ -93,7 +93,7 @@ export function prevalenceNote({ whole, weeks }: PrevalenceParts, filters: Rates
     ...(whole
       ? [
           plain(
-            `${formatCount(whole.affected)} different athletes were not fully available on a day or more. `,
+            `${whole.affected === 1 ? "1 athlete was" : `${formatCount(whole.affected)} different athletes were`} not fully available on a day or more. `,
           ),
         ]
       : []),

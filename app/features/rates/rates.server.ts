@@ -7,7 +7,6 @@ import { read, type Scope, type Tx } from "~db/client.server";
 import { fixTables } from "./fixed/fixed-tables";
 import { computeRates, type RateRow } from "./rates";
 import { listExposedAthletes } from "./rollups/exposure.queries.server";
-import { reportedWeeks } from "./silence";
 import { countSeasons, countView, type Period, periodOf, type RatesView } from "./view.server";
 import { hidesOtherTeams } from "./whole";
 
@@ -31,11 +30,11 @@ export async function incidenceOf(tx: Tx, view: RatesView) {
   const { filters, teamIds } = view;
   const counts = await countView(tx, view, { all: filters.by === "season" });
   // The injuries themselves stay here: a page of rates needs their counts alone.
-  const { counted: _counted, ...rates } = computeRates(counts, filters);
+  const { counted: _counted, reportedWeeks, ...rates } = computeRates(counts, filters);
   return {
     rates,
     club: teamIds === null ? null : await countClub(tx, view),
-    reportedWeeks: reportedWeeks(counts.cells, counts.injuries, counts.confirmedWeeks),
+    reportedWeeks,
   };
 }
 

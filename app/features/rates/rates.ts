@@ -6,11 +6,13 @@ import {
   type RateRatio,
   rateRatio,
 } from "~/statistics";
+import { attempt } from "./attempt";
 import { denominator, type ExposureByUnit, sumExposure } from "./counting";
 import { type Coverage, coverageOf, percent, type SessionTally, stableFrom } from "./coverage";
 import { type RatesFilters, type RateUnit, splitsExposure } from "./filters";
 import { type Group, groupKey, listGroups, placeCell, placeInjury } from "./groups";
 import { type Counts, type Selection, select } from "./selection";
+import { reportedWeeks } from "./silence";
 
 /** Rates of a view from its counts. Pure; every figure comes from ~/statistics. */
 
@@ -118,13 +120,14 @@ function allowForTeams(
       exposure: denominator(sumExposure(own), unit),
     }));
   });
-  const ratio = clusterRobustRateRatio(rows.filter(({ exposure }) => exposure > 0));
-  return ratio.varianceInflation === null ? null : ratio;
+  // An injury may be of a team that has no exposure in its group: where all are, no event is left.
+  const ratio = attempt(() => clusterRobustRateRatio(rows.filter(({ exposure }) => exposure > 0)));
+  return ratio?.varianceInflation == null ? null : ratio;
 }
 
 export type { Counts } from "./selection";
 
-export type Rates = Omit<ReturnType<typeof computeRates>, "counted">;
+export type Rates = Omit<ReturnType<typeof computeRates>, "counted" | "reportedWeeks">;
 
 /** The sessions that say how much of a group's exposure is recorded: those of its team, its sport or its days. */
 function sessionsOf(group: Group, by: RatesFilters["by"], counts: Counts, sessions: readonly SessionTally[]) {
@@ -188,6 +191,8 @@ export function computeRates(counts: Counts, filters: RatesFilters) {
     single: only(compared.filter(({ denominator: amount }) => (amount ?? 0) > 0)) ?? null,
     coverage,
     counted,
+    /** Of the exposure looked at. */
+    reportedWeeks: reportedWeeks(cells, counts.injuries, counts.confirmedWeeks),
     leftOut,
     /** Counted injuries whose time loss still runs. */
     ongoing: counted.filter(({ ongoing }) => ongoing).length,

@@ -7,7 +7,7 @@ import { recordAttendance } from "~/features/sessions/attendance.server";
 import { addDays } from "~/platform/clock";
 import { read, type Scope, sqlState, type Tx, write } from "~db/client.server";
 import { athletes, participations, sessions } from "~db/schema";
-import { makeAthlete, makeClub, makeInjury, makeSession, scopeOf } from "../../harness";
+import { makeAthlete, makeClub, makeInjury, makeSession, owner, scopeOf } from "../../harness";
 import { countMarks, expectAgreement, type Range } from "./rollups-agreement";
 
 /** Writers, readers and the job at the same moment. */
@@ -140,6 +140,24 @@ describe("the job", () => {
     expect([await countMarks(one.organisation.id), await countMarks(two.organisation.id)]).toEqual([0, 1]);
     await rollUpMarked();
     expect(await countMarks(two.organisation.id)).toBe(0);
+  });
+});
+
+describe("an organisation whose roll-up fails", () => {
+  it("keeps no other waiting, whichever comes first", async () => {
+    const clubs = [await open(), await open()];
+    for (const [failing, other] of [clubs, clubs.toReversed()]) {
+      if (!failing || !other) throw new Error("both are there");
+      for (const { staff, team, athlete, day } of clubs)
+        await makeSession(staff, { teamId: team.id, day, minutes: { [athlete.id]: 60 } });
+      await owner().unsafe(`alter table exposure_rollup
+        add constraint refuses_one check (organisation_id <> '${failing.organisation.id}') not valid`);
+      await expect(rollUpMarked()).rejects.toThrow();
+      await owner().unsafe("alter table exposure_rollup drop constraint refuses_one");
+      expect(await countMarks(failing.organisation.id)).toBeGreaterThan(0);
+      expect(await countMarks(other.organisation.id)).toBe(0);
+      await rollUpMarked();
+    }
   });
 });
 

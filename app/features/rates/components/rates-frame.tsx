@@ -2,6 +2,7 @@ import type { ReactNode } from "react";
 import { NavLink, useLocation } from "react-router";
 import { joinClasses, Page } from "~/ui";
 import type { RatesFilters } from "../filters";
+import { dayWords } from "../periods";
 import { type RateViewPath, rateViews, searchWith } from "../views";
 import { type FilterPart, FilterSentence } from "./filter-sentence";
 
@@ -71,9 +72,16 @@ export function RatesFrame({ frame, current, heading, parts = [], narrow = true,
   const { slug, filters, bands, sports } = frame;
   return (
     <Page>
-      <h1 className="sr-only">
+      {/* On the screen the bar above says all this; a sheet of paper has to say it by itself. */}
+      <h1 className="sr-only print:not-sr-only print:text-lg print:font-semibold">
         {heading}, {frame.season}
       </h1>
+      <p className="hidden print:mb-1 print:block">
+        {frame.scopeName === frame.organisation
+          ? frame.organisation
+          : `${frame.organisation}: ${frame.scopeName}`}
+        , {dayWords(frame.from, true)} to {dayWords(frame.to, true)}
+      </p>
       <RatesNav slug={slug} current={current} />
       <FilterSentence {...{ filters, bands, sports, parts, narrow, shows }} />
       {children}

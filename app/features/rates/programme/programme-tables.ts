@@ -67,7 +67,7 @@ export function rateTable<G extends string>(given: RateTable<G>): TableData {
       text("group", head),
       text("sessions", "Sessions"),
       count("injuries", "Injuries"),
-      count("aes", "AEs"),
+      count("aes", "Exposures"),
       {
         id: "rate",
         header: "Rate",

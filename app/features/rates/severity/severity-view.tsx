@@ -5,6 +5,7 @@ import { FigureTable } from "../components/figure-table";
 import { HowComputed } from "../components/how-computed";
 import type { Frame } from "../components/rates-frame";
 import { SentenceParts } from "../components/sentence-parts";
+import { stableFrom } from "../coverage";
 import type { TableData } from "../tables";
 import type { SeverityView as View } from "./severity-view.server";
 import { injuriesOf } from "./severity-words";
@@ -19,16 +20,22 @@ const room = { burden: 528, curve: 448 };
 function BurdenPicture({ points, equalBurdens }: Pick<View, "points" | "equalBurdens">) {
   if (points.length === 0) return null;
   return (
-    <Suspense fallback={<div style={{ height: room.burden }} />}>
-      <BurdenChart
-        points={points}
-        curves={equalBurdens}
-        xUnit="injuries per 1000 hours"
-        yUnit="days lost per injury"
-        caption="How often against how long: along each line the days lost per 1000 hours are the same"
-        title="Mean days lost per injury against injuries per 1000 hours, by group, with lines of equal burden; the tables below hold the numbers."
-      />
-    </Suspense>
+    <>
+      <Suspense fallback={<div style={{ height: room.burden }} />}>
+        <BurdenChart
+          points={points}
+          curves={equalBurdens}
+          xUnit="injuries per 1000 hours"
+          yUnit="days lost per injury"
+          caption="How often against how long: along each line the days lost per 1000 hours are the same"
+          title="Mean days lost per injury against injuries per 1000 hours, by group, with lines of equal burden; the tables below hold the numbers."
+        />
+      </Suspense>
+      <p className="max-w-prose text-soft">
+        The larger the spot, the more injuries; a hollow one rests on fewer than {stableFrom}. Groups without
+        a day lost stand in the tables only.
+      </p>
+    </>
   );
 }
 

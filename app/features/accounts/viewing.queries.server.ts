@@ -10,14 +10,15 @@ export function findSeasons(tx: Tx) {
     .orderBy(desc(seasons.startsOn));
 }
 
-export function findTeamsOf(tx: Tx, scope: Scope) {
+/** @param archived archived teams as well */
+export function findTeamsOf(tx: Tx, scope: Scope, archived: boolean) {
   return tx
     .select({ id: teams.id, name: teams.name, sport: teams.sport, sex: teams.sex, underAge: teams.underAge })
     .from(teams)
     .where(
       and(
         eq(teams.organisationId, scope.organisationId),
-        isNull(teams.archivedAt),
+        archived ? undefined : isNull(teams.archivedAt),
         scope.teams === "all" ? undefined : inArray(teams.id, [...scope.teams]),
       ),
     )

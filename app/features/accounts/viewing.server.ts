@@ -15,9 +15,9 @@ export type Viewing = {
   team: TeamChoice | null;
 };
 
-/** The teams a member covers, archived ones left out. */
-export async function findOwnTeams(tx: Tx, scope: Scope): Promise<TeamChoice[]> {
-  return scope.teams !== "all" && scope.teams.length === 0 ? [] : findTeamsOf(tx, scope);
+/** The teams a member covers; archived ones only where asked for. */
+export async function findOwnTeams(tx: Tx, scope: Scope, { archived = false } = {}): Promise<TeamChoice[]> {
+  return scope.teams !== "all" && scope.teams.length === 0 ? [] : findTeamsOf(tx, scope, archived);
 }
 
 /**

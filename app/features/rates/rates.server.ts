@@ -1,13 +1,13 @@
 import { openDoor } from "~/features/accounts/doors.server";
 import { may } from "~/features/accounts/permissions";
 import type { MemberScope } from "~/features/accounts/scope.server";
-import { resolveViewing, type Viewing, viewedTeamIds } from "~/features/accounts/viewing.server";
+import { resolveViewing, type Viewing } from "~/features/accounts/viewing.server";
 import { complianceByTeam } from "~/features/warm-ups/warm-ups.server";
 import { read, type Scope, type Tx } from "~db/client.server";
 import { fixTables } from "./fixed/fixed-tables";
 import { computeRates, type RateRow } from "./rates";
 import { listExposedAthletes } from "./rollups/exposure.queries.server";
-import { countSeasons, countView, type Period, periodOf, type RatesView } from "./view.server";
+import { countSeasons, countView, type Period, periodOf, type RatesView, teamsOf } from "./view.server";
 import { hidesOtherTeams } from "./whole";
 
 /**
@@ -66,7 +66,7 @@ function withoutTeam(url: URL) {
 
 /** Warm-up session compliance of the viewed teams over the same days; the sessions themselves stay behind. */
 export async function warmUpsBeside(tx: Tx, viewing: Viewing, period: Period) {
-  const teams = await complianceByTeam(tx, { ...period, teamIds: viewedTeamIds(viewing) });
+  const teams = await complianceByTeam(tx, { ...period, teamIds: teamsOf(viewing, tx.scope) });
   return teams.map(({ teamId, teamName, compliance: { ofHeld, ofRecorded } }) => ({
     id: teamId,
     name: teamName,

@@ -50,15 +50,20 @@ export type TeamCompliance = {
 
 /**
  * The four measures by team over some days, for own teams only. Each session is judged by the targets of its day.
- * @param range days inclusive; sessions after today are never counted
+ * @param range days inclusive; sessions after today are never counted. Teams null: every own team, and archived ones
+ *   that had a session then
  */
 export async function complianceByTeam(
   tx: Tx,
-  range: { from: string; to: string; teamIds: readonly string[] },
+  range: { from: string; to: string; teamIds: readonly string[] | null },
 ): Promise<TeamCompliance[]> {
-  const teams = (await findOwnTeams(tx, tx.scope)).filter(({ id }) => range.teamIds.includes(id));
+  const { teamIds: wanted } = range;
+  const current = new Set((await findOwnTeams(tx, tx.scope)).map(({ id }) => id));
+  const own = await findOwnTeams(tx, tx.scope, { archived: wanted === null });
+  const asked = own.filter(({ id }) => wanted === null || wanted.includes(id));
+  const rows = await findHeldSessions(tx, { ...range, teamIds: asked.map(({ id }) => id) });
+  const teams = asked.filter(({ id }) => current.has(id) || rows.some(({ teamId }) => teamId === id));
   const teamIds = teams.map(({ id }) => id);
-  const rows = await findHeldSessions(tx, { ...range, teamIds });
   const assignments = await findAssignments(tx, teamIds);
   const lastDay = earlierDay(range.to, tx.scope.today);
   return teams.map(({ id, name, sport, sex }) => {

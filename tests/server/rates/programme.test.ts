@@ -1,4 +1,5 @@
 import { describe, expect, it } from "vitest";
+import { archiveTeam } from "~/features/accounts/settings.server";
 import type { PlanInput } from "~/features/rates/programme/programme.schema";
 import { listPlans, recordPlan } from "~/features/rates/programme/programme-plans.server";
 import { programmeViewOf } from "~/features/rates/programme/programme-view.server";
@@ -156,6 +157,24 @@ async function makeWarmedClub() {
     });
   return { ...club, ids, day, train, hurt };
 }
+
+describe("a team that was archived since", () => {
+  it("keeps its warm-ups in the season's compliance, as its exposure stays in the rates", async () => {
+    const { staff, scopes, team, otherTeam, ids, train } = await makeWarmedClub();
+    const session = await train(1);
+    await makeWarmUp(staff, { sessionId: session.id, outcome: "full", athleteIds: ids });
+    await archiveTeam(scopes.admin, team.id, true);
+    const { result, tables } = await viewOf(scopes.lead);
+    expect(result?.compliance.together).toEqual({ notRecorded: 0, held: 1 });
+    const skipped = tables.find(({ id }) => id === "skipped");
+    expect(skipped?.rows.map(({ key, cells }) => [key, cells.done])).toEqual(
+      expect.arrayContaining([
+        [team.id, 1],
+        [otherTeam.id, 0],
+      ]),
+    );
+  });
+});
 
 describe("who had warmed up", () => {
   it("is told by the session's record, the moment of the onset and the injury's own answer", async () => {

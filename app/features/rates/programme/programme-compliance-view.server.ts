@@ -1,4 +1,3 @@
-import { viewedTeamIds } from "~/features/accounts/viewing.server";
 import { complianceOf, isCompliant } from "~/features/warm-ups/compliance";
 import { complianceByTeam, type TallySession } from "~/features/warm-ups/warm-ups.server";
 import type { Tx } from "~db/client.server";
@@ -21,7 +20,7 @@ export async function complianceViewOf(
   starts: ReadonlyMap<string, string>,
 ) {
   const { from, to } = view.period;
-  const all = await complianceByTeam(tx, { from, to, teamIds: viewedTeamIds(view.viewing) });
+  const all = await complianceByTeam(tx, { from, to, teamIds: view.teamIds });
   const ofSport = all.filter(({ sport }) => filters.sport === "any" || sport === filters.sport);
   const teams = fromStartOn(ofSport, starts, kindsOf[filters.sessions]);
   const sessions = teams.flatMap((team) => team.sessions);

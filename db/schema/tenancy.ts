@@ -206,8 +206,9 @@ export const tenancy: readonly Access[] = [
   { table: rollups.injuryRollup, allow: { select: clinical, insert: ["job"], delete: ["job"] } },
   {
     table: rollups.rollupMarks,
-    // Whoever may write a record marks it, by the triggers of its table.
-    allow: { select: staff, insert: everyone, delete: ["job"] },
+    // Whoever may write a record marks it, by the triggers of its table. A mark says which athlete or session an injury
+    // or an availability was of, so it is read by those who read injuries.
+    allow: { select: clinical, insert: everyone, delete: ["job"] },
     sweeperSees: true,
   },
   { table: platform.auditSeals, allow: { select: ["admin", "lead", "job"], insert: ["job"] } },

@@ -161,6 +161,23 @@ describe("an organisation whose roll-up fails", () => {
   });
 });
 
+describe("an administrator", () => {
+  it("reads neither rolled-up injuries nor what was marked, and counts exposure from the records", async () => {
+    const { scopes, staff, team, athlete, day, job } = await open();
+    await makeInjury(staff, { athleteId: athlete.id, onset: "gradual", onsetDay: day });
+    await rollUp(job);
+    await makeSession(staff, { teamId: team.id, day: addDays(day, 1), minutes: { [athlete.id]: 30 } });
+    await makeInjury(staff, { athleteId: athlete.id, onset: "gradual", onsetDay: day });
+    const rowsOf = (scope: Scope, table: string) =>
+      read(scope, async (tx) => (await tx.execute(sql`select 1 from ${sql.identifier(table)}`)).length);
+    for (const table of ["rollup_marks", "injury_rollup"]) {
+      expect(await rowsOf(scopes.lead, table), table).toBeGreaterThan(0);
+      expect(await rowsOf(scopes.admin, table), table).toBe(0);
+    }
+    expect(await hours(scopes.admin)).toBeCloseTo(2, 9);
+  });
+});
+
 describe("a coach", () => {
   it("ticks attendance, which marks the session and nothing more, and reads no roll-up", async () => {
     const { scopes, session, athlete, job } = await open();

@@ -7,9 +7,9 @@ import type { Actor } from "~db/schema/tenancy";
  * into slices, looked up in the reader's own snapshot: exposure is rolled up by team and day, injuries by week.
  */
 
-const readers: readonly Actor[] = ["admin", "lead", "trainer", "job"];
+const readers: readonly Actor[] = ["lead", "trainer", "job"];
 
-/** Whether this transaction sees the roll-ups and their marks. Who does not must count live. */
+/** Whether this transaction sees the marks of roll-ups. Who does not cannot know what is current, and counts live. */
 export const readsRollups = (tx: Tx) => readers.some((actor) => tx.scope.actors.includes(actor));
 
 const org = (tx: Tx) => sql`${tx.scope.organisationId}::uuid`;

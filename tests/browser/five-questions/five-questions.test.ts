@@ -140,7 +140,7 @@ describe("the medical lead asks", () => {
       });
       expect(text).toContain(`${Math.round(girls.exposure).toLocaleString("en-GB")} exposures`);
       expect(text).toContain(
-        `${boys.events === 0 ? "0" : boys.events} in ${Math.round(boys.exposure).toLocaleString("en-GB")}`,
+        `${boys.events === 0 ? "none" : boys.events} in ${Math.round(boys.exposure).toLocaleString("en-GB")}`,
       );
       if (girls.events === 0 || boys.events === 0) continue;
       compared += 1;

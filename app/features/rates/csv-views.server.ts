@@ -5,8 +5,10 @@ import { comparisonsViewOf } from "./comparisons/comparisons-view.server";
 import { kindsOf } from "./counting";
 import { coverageOf } from "./coverage";
 import { coverageViewOf } from "./coverage/coverage-view.server";
+import { noNarrowing, type RatesFilters } from "./filters";
 import { seasonOf } from "./periods";
 import { prevalenceViewOf } from "./prevalence/prevalence-view.server";
+import { outcomeColumn } from "./programme/programme-tables";
 import { programmeViewOf } from "./programme/programme-view.server";
 import { listRatedTeams, tallySessions } from "./rates.queries.server";
 import { recentWeeksViewOf } from "./recent-weeks/recent-weeks-view.server";
@@ -16,8 +18,13 @@ import { teamRatesViewOf } from "./teams/team-rates-view.server";
 import { trendsViewOf } from "./trends/trends-view.server";
 import type { Period, RatesView } from "./view.server";
 
-/** The tables of a view, and whether they are of all seasons whichever the address names. */
-type Tables = { tables: readonly TableData[]; all?: boolean };
+type Tables = {
+  tables: readonly TableData[];
+  /** They are of all seasons whichever the address names. */
+  all?: boolean;
+  /** What a table is narrowed to, where that is not what the address says. */
+  filtersOf?: (table: TableData) => RatesFilters;
+};
 type TablesOf = (tx: Tx, view: RatesView, url: URL) => Promise<Tables>;
 
 /** The tables of each view, for their files: the same functions as the pages', so that both say the same. */
@@ -39,7 +46,19 @@ const views: Record<string, TablesOf> = {
   },
   trends: async (tx, view) => ({ tables: (await trendsViewOf(tx, view)).tables, all: true }),
   teams: teamRatesViewOf,
-  programme: programmeViewOf,
+  programme: async (tx, view, url) => {
+    const { tables, result } = await programmeViewOf(tx, view, url);
+    const ofPlan = result?.filters ?? view.filters;
+    // Warm-ups are of people and sessions, not of injuries.
+    const ofWarmUps = {
+      ...ofPlan,
+      area: noNarrowing.area,
+      contact: noNarrowing.contact,
+      onset: noNarrowing.onset,
+    };
+    const isOfInjuries = ({ columns }: TableData) => columns.some(({ id }) => id === outcomeColumn);
+    return { tables, filtersOf: (table) => (isOfInjuries(table) ? ofPlan : ofWarmUps) };
+  },
   "recent-weeks": async (tx, view) => ({ tables: (await recentWeeksViewOf(tx, view)).tables, all: true }),
 };
 
@@ -93,7 +112,8 @@ export async function tableFileOf(
   const found = await tablesOf(tx, view, url, name.view);
   const table = found?.tables.find(({ id }) => id === name.table);
   if (!table) throw notFound("That table");
-  const { filters, viewing, organisation } = view;
+  const { viewing, organisation } = view;
+  const filters = found?.filtersOf?.(table) ?? view.filters;
   const period = found?.all ? allSeasons(view, tx.scope.today) : view.period;
   const text = writeTableCsv(table, {
     ...period,

@@ -1,5 +1,7 @@
+import Papa from "papaparse";
 import { describe, expect, it } from "vitest";
 import { archiveTeam } from "~/features/accounts/settings.server";
+import { tableFileOf } from "~/features/rates/csv-views.server";
 import type { PlanInput } from "~/features/rates/programme/programme.schema";
 import { listPlans, recordPlan } from "~/features/rates/programme/programme-plans.server";
 import { programmeViewOf } from "~/features/rates/programme/programme-view.server";
@@ -157,6 +159,28 @@ async function makeWarmedClub() {
     });
   return { ...club, ids, day, train, hurt };
 }
+
+describe("the files", () => {
+  it("say that they are narrowed to the plan's injuries, and warm-ups to none, whatever the address says", async () => {
+    const { staff, scopes, ids, train } = await makeWarmedClub();
+    const session = await train(1);
+    await makeWarmUp(staff, { sessionId: session.id, outcome: "full", athleteIds: ids });
+    const url = new URL("http://x/club/rates/csv/programme/x?area=ankle&sex=female");
+    const narrowedTo = (table: string) =>
+      read(scopes.lead, async (tx) => {
+        const view = await openView(tx, url, parseRatesQuery(url.searchParams));
+        if (!view) throw new Error("No season.");
+        const { text } = await tableFileOf(tx, view, url, { view: "programme", table });
+        const [row] = Papa.parse<Record<string, string>>(text.replace(/^\uFEFF/, ""), {
+          header: true,
+          delimiter: ",",
+        }).data;
+        return row?.narrowed_to;
+      });
+    expect(await narrowedTo("warmed-up-ratios")).toBe("sex=female; area=knee; contact=without; onset=sudden");
+    expect(await narrowedTo("measures")).toBe("sex=female");
+  });
+});
 
 describe("a team that was archived since", () => {
   it("keeps its warm-ups in the season's compliance, as its exposure stays in the rates", async () => {

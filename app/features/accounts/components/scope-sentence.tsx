@@ -32,11 +32,12 @@ function Choice({
   options: { to: string; text: string; current: boolean }[];
 }) {
   return (
-    <details className="relative inline-block" name="scope">
+    <details className="inline-block md:relative" name="scope">
       <summary className="inline-flex min-h-target cursor-pointer list-none items-center">
         <span className="editable-word">{label}</span>
       </summary>
-      <ul className="on-light absolute left-0 z-30 max-h-[60vh] w-64 overflow-y-auto rounded-md border border-line bg-paper p-1 text-ink shadow-float">
+      {/* On a phone it opens below the bar, so that no word of it lies beyond the screen. */}
+      <ul className="on-light absolute top-full left-4 z-30 max-h-[60vh] w-64 overflow-y-auto rounded-md border border-line bg-paper p-1 text-ink shadow-float md:top-auto md:left-0">
         {options.map(({ to, text, current }) => (
           <li key={to}>
             <Link

@@ -275,6 +275,7 @@ describe("recent weeks", () => {
         injuriesOf((row) => earlier(row) && is(row) && row.kind === null)) /
         exposuresOf((row) => earlier(row) && is(row));
     const teams = tableOf(data.tables, "teams");
+    let judged = 0;
     for (const { id } of club.teams) {
       const own: Is = ({ teamId }) => teamId === id;
       const cells = rowOf(teams, id);
@@ -282,9 +283,11 @@ describe("recent weeks", () => {
       // A team of which nobody said anything in these weeks has no number.
       if (observed > 0) expect(cells.observed).toBe(observed);
       if (typeof cells.observed !== "number") continue;
+      judged += 1;
       expect(estimateOf(cells.expected)).toBeCloseTo(expectedOf(own), 8);
       expect(cells.probability).toBeCloseTo(atLeast(observed, expectedOf(own)), 8);
     }
+    expect(judged).toBeGreaterThan(1);
     const all = data.sentence.map(({ text }) => text).join("");
     expect(all).toContain(`${injuriesOf(recent)} injur`);
     const weeks = tableOf(data.tables, "weeks");

@@ -41,7 +41,7 @@ export function RatesNav({ slug, current }: { slug: string; current: RateViewPat
   ));
   return (
     <nav aria-label="Views of the rates" className="mb-4 print:hidden">
-      <ul className="hidden flex-wrap gap-x-6 md:flex">{links}</ul>
+      <ul className="hidden flex-wrap gap-x-5 md:flex">{links}</ul>
       <details key={current} className="border-y border-line md:hidden">
         <summary className="flex min-h-target cursor-pointer list-none items-center">
           <span className="editable-word font-semibold">

@@ -123,8 +123,9 @@ describe.each([1, 2])("counts of a generated club (seed %i)", (seed) => {
       const view = await openView(tx, new URL("http://x/rates"), query);
       return view && incidenceOf(tx, view);
     });
-    const { counted: _counted, ...expected } = computeRates(counts, query);
+    const { counted: _counted, reportedWeeks, ...expected } = computeRates(counts, query);
     expect(found?.rates).toEqual(expected);
+    expect(found?.reportedWeeks).toEqual(reportedWeeks);
   });
 
   it("hold the days lost that a walk from day to day finds, as the injury's own page says them", () => {

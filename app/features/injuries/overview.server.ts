@@ -55,7 +55,8 @@ export type InjuryOverview = InjuryRow & {
 function knownUntil({ timeZone }: Tx["scope"], { athlete, revision }: InjuryRow, asOf: string) {
   const left = athlete.archivedAt && dayIn(timeZone, athlete.archivedAt);
   if (!left || left >= asOf) return asOf;
-  return left < revision.onsetDay ? revision.onsetDay : left;
+  const days = [left, revision.onsetDay].sort();
+  return days[1] ?? asOf;
 }
 
 /** Adds what follows from the rules to rows of injuries: time loss to today, severity, gaps, teams. */

@@ -1,7 +1,7 @@
 import { group } from "d3-array";
 import { addDays, weekStart } from "~/platform/clock";
 import type { Tx } from "~db/client.server";
-import { type Coverage, coverageOf, type SessionTally } from ".";
+import { type Coverage, coverageOf, type SessionTally } from "../coverage";
 import { dayWords } from "../periods";
 import { type Counts, select } from "../selection";
 import { type ReportedWeeks, reportedWeeks } from "../silence";

@@ -1,11 +1,11 @@
 import { lazy, Suspense } from "react";
 import { Attention, Lede, Region } from "~/ui";
-import { coverageFloor, coverageWarning, percent } from ".";
-import type { CoverageRow, CoverageView as View } from "./coverage-view.server";
-import { formatCount } from "../figures";
-import { dayWords, monthWords } from "../periods";
 import { CoverageNote } from "../components/coverage-note";
 import { FigureTable } from "../components/figure-table";
+import { coverageFloor, coverageWarning, percent } from "../coverage";
+import { formatCount } from "../figures";
+import { dayWords, monthWords } from "../periods";
+import type { CoverageRow, CoverageView as View } from "./coverage-view.server";
 
 // Charts reach the browser only where one shows.
 const PeriodGrid = lazy(() => import("~/ui/charts/period-grid"));

@@ -74,3 +74,12 @@ export function picturedRows(rows: readonly RateRow[]): RateRow[] {
   const end = axisEnd(rows);
   return rows.filter(({ rate, denominator: exposure }) => (rate ? rate.upper <= end : (exposure ?? 0) > 0));
 }
+
+/**
+ * The name of the rate that groups are held against. Of some teams, without the club's own rate beside it, it must not
+ * go by the name of all.
+ */
+export const referenceNameOf = (
+  { isPart, club }: { isPart: boolean; club: RateRow | null },
+  scopeName: string,
+) => (isPart && !club ? scopeName : "all teams");

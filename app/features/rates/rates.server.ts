@@ -33,6 +33,8 @@ export async function incidenceOf(tx: Tx, view: RatesView) {
   const { counted: _counted, reportedWeeks, ...rates } = computeRates(counts, filters);
   return {
     rates,
+    /** Whether the view is of some of the teams alone. */
+    isPart: teamIds !== null,
     club: teamIds === null ? null : await countClub(tx, view),
     reportedWeeks,
   };

@@ -2,6 +2,7 @@ import { randomUUID } from "node:crypto";
 import { readFileSync } from "node:fs";
 import Papa from "papaparse";
 import { describe, expect, it } from "vitest";
+import { referenceNameOf } from "~/features/rates/picture";
 import { ratesQuery } from "~/features/rates/rates.schema";
 import { fixedTablesOf, incidenceOf } from "~/features/rates/rates.server";
 import { incidenceJson } from "~/features/rates/rates-json";
@@ -30,7 +31,9 @@ const incidence = (scope: Scope, search = "", given = filters) =>
     const view = await openView(tx, address(search), given);
     return {
       view,
-      ...(view ? await incidenceOf(tx, view) : { rates: null, club: null, reportedWeeks: null }),
+      ...(view
+        ? await incidenceOf(tx, view)
+        : { rates: null, club: null, isPart: false, reportedWeeks: null }),
     };
   });
 
@@ -125,9 +128,9 @@ describe("an organisation with nothing yet", () => {
     await makeSeason(staffScope(organisation));
     const empty = await incidence(scope);
     expect(empty.rates?.total).toMatchObject({ injuries: 0, rate: null, reason: "no athlete-exposures" });
-    const { view, rates, club, reportedWeeks } = empty;
+    const { view, rates, club, isPart, reportedWeeks } = empty;
     if (!rates || !reportedWeeks) throw new Error("a season is there");
-    const json = JSON.stringify(incidenceJson(view, { rates, club, reportedWeeks }, filters));
+    const json = JSON.stringify(incidenceJson(view, { rates, club, isPart, reportedWeeks }, filters));
     expect(json).not.toMatch(/NaN|Infinity/);
     expect(JSON.parse(json)).toMatchObject({ groups: [], total: { rate: null }, coverage: { share: null } });
     const admin = await memberScope(await makePerson(organisation, { roles: ["admin"] }), organisation);
@@ -175,6 +178,15 @@ describe("who sees what", () => {
     await expect(incidence(club.scopes.trainer, `?team=${club.otherTeam.id}`)).rejects.toThrow(/not found/);
     const whole = await incidence(club.scopes.lead, "", { ...filters, by: "team" });
     expect(whole.club).toBeNull();
+    // What stands as the yardstick in the picture goes by its own name.
+    expect([own.isPart, whole.isPart]).toEqual([true, false]);
+    const named = ({ isPart, club: total }: typeof own) =>
+      referenceNameOf({ isPart, club: total }, "My teams");
+    expect([named(own), named(whole), named({ ...own, club: null })]).toEqual([
+      "all teams",
+      "all teams",
+      "My teams",
+    ]);
     expect(whole.rates?.total).toMatchObject({ injuries: 9, denominator: 19 });
   });
 

@@ -2,6 +2,7 @@ import { useLocation } from "react-router";
 import { Lede, LinkRow, Region, TextLink } from "~/ui";
 import { injuriesInWords } from "../filter-words";
 import { splitsExposure } from "../filters";
+import { referenceNameOf } from "../picture";
 import type { RateRow } from "../rates";
 import type { Incidence } from "../rates.server";
 import { unitWords, writeNote, writeSentence } from "../sentence";
@@ -19,7 +20,7 @@ const capital = (words: string) => words.charAt(0).toUpperCase() + words.slice(1
 /** The incidence of the clinical roles: the sentence, the picture, the table, and what is left out. */
 export function ClinicalRates({ frame, incidence }: { frame: Frame; incidence: Incidence }) {
   const { search } = useLocation();
-  const { rates, club, reportedWeeks } = incidence;
+  const { rates, club, isPart, reportedWeeks } = incidence;
   const { filters, scopeName, slug } = frame;
   const season = filters.by === "season" ? "all seasons" : frame.season;
   const title = `${capital(injuriesInWords(filters))} per ${unitWords[filters.per]}, ${season}`;
@@ -42,7 +43,7 @@ export function ClinicalRates({ frame, incidence }: { frame: Frame; incidence: I
             by={filters.by}
             // Groups of injuries share one exposure: the whole's rate is their sum, not a yardstick.
             reference={splitsExposure(filters.by) ? reference : null}
-            referenceName="all teams"
+            referenceName={referenceNameOf(incidence, scopeName)}
             title={`${title}: rates with their 95 % intervals; the table below holds the numbers.`}
           />
         </div>
@@ -54,6 +55,12 @@ export function ClinicalRates({ frame, incidence }: { frame: Frame; incidence: I
         unit={filters.per}
         recordsOf={(row) => recordsOf({ group: row.key })}
       />
+      {isPart && !club ? (
+        <p className="max-w-prose text-soft">
+          The rate of all teams is not shown here: with your own teams taken off, it would give one other
+          team's numbers away.
+        </p>
+      ) : null}
       <LinkRow>
         <a
           href={`/${slug}/rates.csv${searchWith(search)}`}

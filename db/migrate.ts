@@ -1,6 +1,6 @@
 /**
  * Brings a database to the newest schema, as the owner: Drizzle's migrations, then the policies and grants that
- * db/schema/tenancy.ts generates, then the job queue's own schema. Running it again changes nothing.
+ * db/schema/tenancy-sql.ts generates, then the job queue's own schema. Running it again changes nothing.
  * Run by `npm run migrate` with DATABASE_OWNER_URL (and DATABASE_MAINTENANCE_URL for the key check).
  */
 import { fileURLToPath } from "node:url";
@@ -9,7 +9,8 @@ import { migrate } from "drizzle-orm/postgres-js/migrator";
 import postgres from "postgres";
 import { keyOpens, makeKeyCheck } from "~/platform/crypto/sealing.server";
 import { migrateQueue } from "~/platform/jobs/queue-schema.server";
-import { platformSql, tenancy, tenancySql } from "./schema/tenancy";
+import { tenancy } from "./schema/tenancy";
+import { platformSql, tenancySql } from "./schema/tenancy-sql";
 
 const migrationsFolder = fileURLToPath(new URL("./migrations", import.meta.url));
 

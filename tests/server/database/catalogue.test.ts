@@ -1,6 +1,7 @@
 import { getTableName } from "drizzle-orm";
 import { beforeAll, describe, expect, it } from "vitest";
-import { tenancy, tenancySql } from "~db/schema/tenancy";
+import { tenancy } from "~db/schema/tenancy";
+import { tenancySql } from "~db/schema/tenancy-sql";
 import { owner } from "../../harness";
 import {
   listForeignKeys,

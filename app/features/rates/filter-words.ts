@@ -157,3 +157,15 @@ export function peopleInWords({ sex, age, sport }: RatesFilters): string {
   const where = sport === "any" ? "" : `in ${sportWords[sport as Sport] ?? sport}`;
   return [who, aged, where].filter(Boolean).join(" ");
 }
+
+const otherSides: Record<string, string> = { both: "both sides", none: "no side", unknown: "side not known" };
+
+/** All that a view is narrowed to, in words: "knee injuries, girls and women in soccer"; null for nothing. */
+export function narrowingInWords(filters: RatesFilters): string | null {
+  const injuries = injuriesInWords({ ...filters, injuries: "time-loss" }).replace(" with time loss", "");
+  const side = otherSides[filters.side] ?? "";
+  const who = peopleInWords(filters);
+  const isOnlyWho = injuries === "injuries" && !side;
+  const parts = [isOnlyWho ? "" : injuries, side, who].filter(Boolean);
+  return parts.length > 0 ? parts.join(", ") : null;
+}

@@ -1,7 +1,12 @@
 import Papa from "papaparse";
 import { describe, expect, it } from "vitest";
-import { countedInWords, injuriesInWords, peopleInWords } from "~/features/rates/filter-words";
-import { changedFilters, defaultFilters } from "~/features/rates/filters";
+import {
+  countedInWords,
+  injuriesInWords,
+  narrowingInWords,
+  peopleInWords,
+} from "~/features/rates/filter-words";
+import { changedFilters, defaultFilters, type RatesFilters } from "~/features/rates/filters";
 import { dayWords, monthsOf, monthWords } from "~/features/rates/periods";
 import { computeRates } from "~/features/rates/rates";
 import { textOf, writeSentence } from "~/features/rates/sentence";
@@ -25,6 +30,18 @@ describe("the words of a view", () => {
       "girls and women aged 15 to 16 in soccer",
     );
     expect(peopleInWords(defaultFilters)).toBe("");
+  });
+
+  it("say all that is narrowed, and nothing twice", () => {
+    const words = (given: Partial<RatesFilters>) => narrowingInWords({ ...defaultFilters, ...given });
+    expect(words({})).toBeNull();
+    expect(words({ sex: "female" })).toBe("girls and women");
+    expect(words({ side: "both" })).toBe("injuries, both sides");
+    expect(words({ area: "knee", side: "left" })).toBe("left knee injuries");
+    expect(words({ ...narrowed, side: "unknown", age: "unknown" })).toBe(
+      `${injuriesInWords(narrowed).replace(" with time loss", "")}, side not known, age not known in soccer`,
+    );
+    expect(words({ occurrence: "recurrent", contact: "unknown" })).toBe("re-injuries, contact not known");
   });
 
   it("stand in the sentence, with the interval that allows for teams", () => {

@@ -57,7 +57,7 @@ export function ClinicalRates({ frame, incidence }: { frame: Frame; incidence: I
       />
       {isPart && !club ? (
         <p className="max-w-prose text-soft">
-          The rate of all teams is not shown here: with your own teams taken off, it would give one other
+          The rate of all teams is not shown here: with your own teams taken off, it could give one other
           team's numbers away.
         </p>
       ) : null}

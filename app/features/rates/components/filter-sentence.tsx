@@ -1,6 +1,6 @@
 import { Form, Link, useLocation } from "react-router";
 import { Button } from "~/ui";
-import { injuriesInWords, narrowingChoices, partWords, peopleInWords } from "../filter-words";
+import { narrowingChoices, narrowingInWords, partWords } from "../filter-words";
 import { defaultFilters, type Narrowing, narrowingNames, noNarrowing, type RatesFilters } from "../filters";
 import { searchWith } from "../views";
 
@@ -111,18 +111,8 @@ const labels: Record<FilterPart, string> = {
 
 /** The narrowing in words, before the parts that every view has: "Only non-contact knee injuries, girls in soccer." */
 function Narrowed({ filters }: { filters: RatesFilters }) {
-  const what = injuriesInWords({ ...filters, injuries: "time-loss" }).replace(" with time loss", "");
-  const who = peopleInWords(filters);
-  const side =
-    filters.side === "any" || ["left", "right"].includes(filters.side) ? "" : `, ${filters.side} side`;
-  if (what === "injuries" && !who && !side) return null;
-  return (
-    <span className="text-ink">
-      Only {what}
-      {side}
-      {who ? `, ${who}` : ""}.{" "}
-    </span>
-  );
+  const words = narrowingInWords(filters);
+  return words ? <span className="text-ink">Only {words}. </span> : null;
 }
 
 /**
